@@ -76,7 +76,14 @@ export default ts.config(
     // Scripts, worker and tests load the server library without the framework.
     files: ['src/lib/server/**/*.ts'],
     rules: {
-      'no-restricted-imports': ['error', { patterns: [{ group: ['$env/*', '$app/*'], message: 'configuration comes through src/lib/server/config.ts' }] }]
+      'no-restricted-imports': [
+        'error',
+        {
+          patterns: [
+            { group: ['$env/*', '$app/*'], message: 'configuration comes through src/lib/server/config.ts' }
+          ]
+        }
+      ]
     }
   }
 );
