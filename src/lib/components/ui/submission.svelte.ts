@@ -1,0 +1,39 @@
+import type { SubmitFunction } from '@sveltejs/kit';
+
+type Answered = Exclude<Awaited<ReturnType<SubmitFunction>>, void>;
+
+export interface Submission {
+  readonly busy: boolean;
+  readonly submit: SubmitFunction;
+}
+
+/**
+ * State of one form while `use:enhance` sends it: `<form use:enhance={saving.submit}>` and
+ * `<Button busy={saving.busy}>`. A second submission while the first is under way is cancelled.
+ *
+ * @param after runs once the answer is in; without it the form is updated the usual way, and a form that
+ *   came back with errors keeps what was typed.
+ */
+export function submission(after?: Answered): Submission {
+  let busy = $state(false);
+  return {
+    get busy() {
+      return busy;
+    },
+    submit: ({ cancel }) => {
+      if (busy) {
+        cancel();
+        return;
+      }
+      busy = true;
+      return async (options) => {
+        try {
+          if (after) await after(options);
+          else await options.update({ reset: false });
+        } finally {
+          busy = false;
+        }
+      };
+    }
+  };
+}
