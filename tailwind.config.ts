@@ -81,7 +81,7 @@ export default {
     },
     borderRadius: { none: '0', DEFAULT: '4px', full: '9999px' },
     extend: {
-      maxWidth: { prose: '68ch', page: '76rem' },
+      maxWidth: { prose: '74ch', page: '76rem' },
       // A finger needs 44 px; a mouse does with less.
       minHeight: { touch: '2.75rem' },
       minWidth: { touch: '2.75rem' }
