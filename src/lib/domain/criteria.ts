@@ -30,3 +30,8 @@ export interface RecoveryCriteria {
   readonly rsdMax: number | null;
   readonly nMin: number;
 }
+
+/** Criteria of one analyte in place of the set's, with the reason that they differ. */
+export interface CriteriaOverride extends RecoveryCriteria {
+  readonly reason: string;
+}

@@ -1,0 +1,289 @@
+import type { PoolClient } from 'pg';
+import type { MeasurementState, ReportedBasis } from '../../domain/vocabulary';
+import { withReadingClient } from './reading-client';
+
+/** An import that counts: stored, in the order of storing. */
+export interface CountingImport {
+  readonly id: string;
+  readonly order: number;
+}
+
+export interface MeasuredExtract {
+  readonly id: string;
+  readonly experimentId: string;
+  readonly replicateId: string;
+  /** null: a standard that is injected as it is. */
+  readonly fractionId: string | null;
+  readonly finalVolumeMl: number | null;
+  readonly aliquotShare: number;
+}
+
+interface MeasuredInjection {
+  readonly id: string;
+  readonly importId: string;
+  /** Repeated injections of one extract or level count up from 1. */
+  readonly number: number;
+  readonly dilution: number;
+  readonly runAt: Date | null;
+}
+
+export interface ExtractInjection extends MeasuredInjection {
+  readonly extract: MeasuredExtract;
+}
+
+export interface LevelInjection extends MeasuredInjection {
+  readonly levelId: string;
+}
+
+/** One counting number with the cell it stood in, joined with its injection. */
+export interface CountingMeasurement<Injection> {
+  /** Within the lab. */
+  readonly id: string;
+  readonly analyteId: string;
+  readonly basis: ReportedBasis;
+  readonly state: MeasurementState;
+  /** Area, or amount or concentration in the unit of its basis. */
+  readonly reported: number | null;
+  readonly internalArea: number | null;
+  readonly internalAnalyteId: string | null;
+  readonly limitValue: number | null;
+  readonly rawText: string;
+  /** 1-based into the import's sheet names; row and column 1-based. */
+  readonly sheet: number;
+  readonly sheetRow: number;
+  readonly sheetColumn: number;
+  readonly importId: string;
+  readonly injection: Injection;
+}
+
+type Cells = [
+  id: string,
+  analyteId: string,
+  basis: ReportedBasis,
+  state: MeasurementState,
+  reported: number | null,
+  internalArea: number | null,
+  internalAnalyteId: string | null,
+  limitValue: number | null,
+  rawText: string,
+  sheet: number,
+  sheetRow: number,
+  sheetColumn: number,
+  importId: string,
+  injectionId: string
+];
+
+const selected = `SELECT id, analyte_id, basis, state, reported, internal_area, internal_analyte_id, limit_value, raw_text, sheet,
+  sheet_row, sheet_column, import_id, injection_id FROM measurements`;
+
+async function arrays<Row extends unknown[]>(
+  client: PoolClient,
+  text: string,
+  values: unknown[]
+): Promise<Row[]> {
+  return (await client.query<Row>({ text, values, rowMode: 'array' })).rows;
+}
+
+/**
+ * Joins numbers with their injections and keeps those that count: of several stored imports with rows for the same place and
+ * analyte, the one stored last.
+ */
+function counting<Injection extends MeasuredInjection>(
+  rows: readonly Cells[],
+  injections: ReadonlyMap<string, Injection>,
+  imports: ReadonlyMap<string, number>,
+  placeOf: (injection: Injection) => string
+): CountingMeasurement<Injection>[] {
+  const joined: CountingMeasurement<Injection>[] = [];
+  for (const [
+    id,
+    analyteId,
+    basis,
+    state,
+    reported,
+    internalArea,
+    internalAnalyteId,
+    limitValue,
+    rawText,
+    sheet,
+    sheetRow,
+    sheetColumn,
+    importId,
+    injectionId
+  ] of rows) {
+    const injection = injections.get(injectionId);
+    if (!injection || !imports.has(importId)) continue;
+    joined.push({
+      id,
+      analyteId,
+      basis,
+      state,
+      reported,
+      internalArea,
+      internalAnalyteId,
+      limitValue,
+      rawText,
+      sheet,
+      sheetRow,
+      sheetColumn,
+      importId,
+      injection
+    });
+  }
+  if (imports.size < 2) return joined;
+
+  const latest = new Map<string, number>();
+  const orderOf = (row: CountingMeasurement<Injection>): number => imports.get(row.importId) ?? 0;
+  const keyOf = (row: CountingMeasurement<Injection>): string => `${placeOf(row.injection)} ${row.analyteId}`;
+  for (const row of joined) {
+    const key = keyOf(row);
+    latest.set(key, Math.max(latest.get(key) ?? 0, orderOf(row)));
+  }
+  return joined.filter((row) => orderOf(row) === latest.get(keyOf(row)));
+}
+
+async function storedImports(
+  client: PoolClient,
+  labId: string,
+  studyId: string
+): Promise<Map<string, number>> {
+  const rows = await arrays<[string, string]>(
+    client,
+    `SELECT id, stored_order FROM imports WHERE lab_id = $1 AND study_id = $2 AND state = 'stored'`,
+    [labId, studyId]
+  );
+  return new Map(rows.map(([id, order]) => [id, Number(order)]));
+}
+
+type ExtractCells = [
+  id: string,
+  importId: string,
+  number: number,
+  dilution: number,
+  runAt: Date | null,
+  extractId: string,
+  experimentId: string,
+  replicateId: string,
+  fractionId: string | null,
+  finalVolumeMl: number | null,
+  aliquotShare: number
+];
+
+async function extractInjections(
+  client: PoolClient,
+  labId: string,
+  studyId: string,
+  experimentIds: readonly string[]
+): Promise<Map<string, ExtractInjection>> {
+  const rows = await arrays<ExtractCells>(
+    client,
+    `SELECT i.id, i.import_id, i.number, i.dilution, i.run_at, e.id, e.experiment_id, e.replicate_id, e.fraction_id,
+        e.final_volume_ml, e.aliquot_share
+      FROM extracts e JOIN injections i ON i.extract_id = e.id
+      WHERE e.experiment_id = ANY ($3::uuid[]) AND e.lab_id = $1 AND e.study_id = $2`,
+    [labId, studyId, experimentIds]
+  );
+  const extracts = new Map<string, MeasuredExtract>();
+  const injections = new Map<string, ExtractInjection>();
+  for (const [
+    id,
+    importId,
+    number,
+    dilution,
+    runAt,
+    extractId,
+    experimentId,
+    replicateId,
+    fractionId,
+    finalVolumeMl,
+    aliquotShare
+  ] of rows) {
+    const extract = extracts.get(extractId) ?? {
+      id: extractId,
+      experimentId,
+      replicateId,
+      fractionId,
+      finalVolumeMl,
+      aliquotShare
+    };
+    extracts.set(extractId, extract);
+    injections.set(id, { id, importId, number, dilution, runAt, extract });
+  }
+  return injections;
+}
+
+/**
+ * The counting measurements of experiments of one study (all of a study's at once where all are named), injections and
+ * extracts joined, later stored imports covering earlier ones place by place (replicate, fraction, analyte).
+ * In no particular order. Exclusions are not applied here.
+ */
+export async function readExperimentMeasurements(
+  where: Readonly<{ labId: string; studyId: string; experimentIds: readonly string[] }>
+): Promise<CountingMeasurement<ExtractInjection>[]> {
+  const { labId, studyId, experimentIds } = where;
+  if (experimentIds.length === 0) return [];
+  return withReadingClient(async (client) => {
+    const imports = await storedImports(client, labId, studyId);
+    if (imports.size === 0) return [];
+    const injections = await extractInjections(client, labId, studyId, experimentIds);
+    const [only] = experimentIds;
+    const rows =
+      experimentIds.length === 1
+        ? await arrays<Cells>(client, `${selected} WHERE experiment_id = $2 AND lab_id = $1`, [labId, only])
+        : await arrays<Cells>(client, `${selected} WHERE experiment_id = ANY ($2::uuid[]) AND lab_id = $1`, [
+            labId,
+            experimentIds
+          ]);
+    return counting(
+      rows,
+      injections,
+      imports,
+      ({ extract }) => `${extract.replicateId} ${extract.fractionId}`
+    );
+  });
+}
+
+/** The counting measurements of every experiment of a study; see `readExperimentMeasurements`. */
+export async function readStudyMeasurements(
+  where: Readonly<{ labId: string; studyId: string }>
+): Promise<CountingMeasurement<ExtractInjection>[]> {
+  const experiments = await withReadingClient((client) =>
+    arrays<[string]>(client, 'SELECT id FROM experiments WHERE lab_id = $1 AND study_id = $2', [
+      where.labId,
+      where.studyId
+    ])
+  );
+  return readExperimentMeasurements({ ...where, experimentIds: experiments.map(([id]) => id) });
+}
+
+/**
+ * The counting measurements of one calibration set, later stored imports covering earlier ones level by level and analyte by
+ * analyte. In no particular order.
+ */
+export async function readCalibrationMeasurements(
+  where: Readonly<{ labId: string; studyId: string; calibrationSetId: string }>
+): Promise<CountingMeasurement<LevelInjection>[]> {
+  const { labId, studyId, calibrationSetId } = where;
+  return withReadingClient(async (client) => {
+    const imports = await storedImports(client, labId, studyId);
+    if (imports.size === 0) return [];
+    const found = await arrays<[string, string, number, number, Date | null, string]>(
+      client,
+      `SELECT i.id, i.import_id, i.number, i.dilution, i.run_at, i.level_id
+        FROM calibration_levels l JOIN injections i ON i.level_id = l.id
+        WHERE l.calibration_set_id = $3 AND l.lab_id = $1 AND l.study_id = $2`,
+      [labId, studyId, calibrationSetId]
+    );
+    const injections = new Map<string, LevelInjection>(
+      found.map(([id, importId, number, dilution, runAt, levelId]) => [
+        id,
+        { id, importId, number, dilution, runAt, levelId }
+      ])
+    );
+    const rows = await arrays<Cells>(client, `${selected} WHERE calibration_set_id = $2 AND lab_id = $1`, [
+      labId,
+      calibrationSetId
+    ]);
+    return counting(rows, injections, imports, ({ levelId }) => levelId);
+  });
+}
