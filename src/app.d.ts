@@ -1,4 +1,5 @@
 import type { Actor } from '$lib/domain/actor';
+import type { Problem } from '$lib/server/errors';
 
 declare global {
   namespace App {
@@ -10,7 +11,15 @@ declare global {
     }
     interface Error {
       message: string;
-      errorId?: string;
+      /** Set when nobody foresaw the failure: the log has the rest under this id. */
+      errorId?: string | undefined;
+      /** A stable word for programs. */
+      code?: string;
+      /** What is wrong with what was sent, and where. */
+      problems?: readonly Problem[];
+      /** What is stored now, when a save came too late. */
+      current?: unknown;
+      retryAfterSeconds?: number;
     }
   }
 }

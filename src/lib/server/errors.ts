@@ -54,12 +54,18 @@ export class Invalid extends ExpectedError {
   readonly problems: readonly Problem[];
   /** @param problems at least one; @param message defaults to the sentence of the only problem, or a count of them. */
   constructor(problems: readonly Problem[], message?: string) {
-    super(message ?? (problems.length === 1 ? problems[0]!.message : `${problems.length} entries need mending.`));
+    super(
+      message ?? (problems.length === 1 ? problems[0]!.message : `${problems.length} entries need mending.`)
+    );
     this.problems = problems;
   }
 
   /** One problem at one place. */
-  static at(path: string, message: string, detail: Readonly<{ found?: string; expected?: string }> = {}): Invalid {
+  static at(
+    path: string,
+    message: string,
+    detail: Readonly<{ found?: string; expected?: string }> = {}
+  ): Invalid {
     return new Invalid([{ path, message, ...detail }]);
   }
 }
@@ -85,7 +91,10 @@ export class TooManyRequests extends ExpectedError {
   readonly retryAfterSeconds: number;
   constructor(retryAfterSeconds: number, message?: string) {
     const seconds = Math.max(1, Math.ceil(retryAfterSeconds));
-    super(message ?? `Too many attempts. Try again in ${seconds < 90 ? `${seconds} s` : `${Math.ceil(seconds / 60)} min`}.`);
+    super(
+      message ??
+        `Too many attempts. Try again in ${seconds < 90 ? `${seconds} s` : `${Math.ceil(seconds / 60)} min`}.`
+    );
     this.retryAfterSeconds = seconds;
   }
 }

@@ -40,7 +40,8 @@ const textOf = (source: object, key: string): string | undefined => {
  * Statements, parameters and details are left out, since they repeat measured data and personal data.
  */
 export function describeError(error: unknown, depth = 0): LoggedError {
-  if (!(error instanceof Error)) return { type: typeof error, message: 'a value that is not an error was thrown' };
+  if (!(error instanceof Error))
+    return { type: typeof error, message: 'a value that is not an error was thrown' };
   const origin: unknown = Reflect.get(error, 'original') ?? Reflect.get(error, 'parent');
   const database = origin instanceof Error ? origin : error;
   const code = textOf(database, 'code');

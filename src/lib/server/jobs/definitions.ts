@@ -1,0 +1,4 @@
+import type { AnyJob } from './job';
+
+/** Every job of the program. Its handler stands in handlers.ts. */
+export const jobs: readonly AnyJob[] = [];
