@@ -1,6 +1,7 @@
 import { Sequelize, type Options } from 'sequelize';
 import { config } from '../config';
 import { logger } from '../logger';
+import { onShutdown } from '../shutdown';
 import { transactionStore } from './transaction-store';
 
 /** What Sequelize asks of a store that carries the running transaction: `get`, `set`, `run`, `bind`. */
@@ -59,6 +60,8 @@ const shared = globalThis as typeof globalThis & { headwaterSequelize?: Sequeliz
 
 /** The one connection pool of this process. */
 export const sequelize: Sequelize = (shared.headwaterSequelize ??= createSequelize());
+
+onShutdown('database', 'connection pool', closeDatabase);
 
 /** Closes the pool, last of all things; the process opens none again. */
 export async function closeDatabase(): Promise<void> {
