@@ -48,12 +48,15 @@ CREATE FUNCTION refuse_frozen_study() RETURNS trigger LANGUAGE plpgsql AS $$
 DECLARE
   frozen text;
 BEGIN
+  -- Both ends of a move count: the study that a row leaves and the one that it enters.
   SELECT state INTO frozen FROM studies
-    WHERE id = CASE TG_OP WHEN 'DELETE' THEN OLD.study_id ELSE NEW.study_id END;
-  IF frozen IN ('in review', 'reviewed', 'signed') THEN
+    WHERE id IN (CASE WHEN TG_OP <> 'INSERT' THEN OLD.study_id END, CASE WHEN TG_OP <> 'DELETE' THEN NEW.study_id END)
+      AND state IN ('in review', 'reviewed', 'signed') LIMIT 1;
+  IF frozen IS NOT NULL THEN
     RAISE EXCEPTION 'the study is %: its content cannot change', frozen USING ERRCODE = 'restrict_violation';
   END IF;
-  RETURN CASE TG_OP WHEN 'DELETE' THEN OLD ELSE NEW END;
+  IF TG_OP = 'DELETE' THEN RETURN OLD; END IF;
+  RETURN NEW;
 END $$;`);
   for (const table of studyContentTables) {
     await run(`
@@ -65,15 +68,21 @@ CREATE TRIGGER ${table}_frozen BEFORE INSERT OR UPDATE OR DELETE ON ${table}
 -- A study in review keeps its own content too; only its state, revision and clock may move.
 CREATE FUNCTION refuse_frozen_study_content() RETURNS trigger LANGUAGE plpgsql AS $$
 BEGIN
-  IF OLD.state IN ('in review', 'reviewed', 'signed') AND
-     (NEW.code, NEW.title, NEW.matrix, NEW.objective, NEW.sample_volume_ml, NEW.criteria_set_version_id, NEW.owner_id, NEW.data_version)
+  IF OLD.state NOT IN ('in review', 'reviewed', 'signed') THEN
+    IF TG_OP = 'DELETE' THEN RETURN OLD; END IF;
+    RETURN NEW;
+  END IF;
+  IF TG_OP = 'DELETE' OR
+     (NEW.id, NEW.lab_id, NEW.code, NEW.title, NEW.matrix, NEW.objective, NEW.sample_volume_ml, NEW.criteria_set_id,
+      NEW.criteria_set_version_id, NEW.owner_id, NEW.data_version)
      IS DISTINCT FROM
-     (OLD.code, OLD.title, OLD.matrix, OLD.objective, OLD.sample_volume_ml, OLD.criteria_set_version_id, OLD.owner_id, OLD.data_version) THEN
+     (OLD.id, OLD.lab_id, OLD.code, OLD.title, OLD.matrix, OLD.objective, OLD.sample_volume_ml, OLD.criteria_set_id,
+      OLD.criteria_set_version_id, OLD.owner_id, OLD.data_version) THEN
     RAISE EXCEPTION 'the study is %: its content cannot change', OLD.state USING ERRCODE = 'restrict_violation';
   END IF;
   RETURN NEW;
 END $$;
-CREATE TRIGGER studies_frozen BEFORE UPDATE ON studies FOR EACH ROW EXECUTE FUNCTION refuse_frozen_study_content();
+CREATE TRIGGER studies_frozen BEFORE UPDATE OR DELETE ON studies FOR EACH ROW EXECUTE FUNCTION refuse_frozen_study_content();
 
 -- Measurements enter only with an import that is being stored, into a study that is open.
 CREATE FUNCTION check_new_measurements() RETURNS trigger LANGUAGE plpgsql AS $$

@@ -12,6 +12,8 @@ interface Unit {
   readonly events: QueuedAuditEvent[];
   /** lab and study ids whose data version is raised before the commit */
   readonly studies: Map<string, string>;
+  /** False once it ended: what still runs then, started inside but not awaited, is no part of it. */
+  open: boolean;
 }
 
 interface Frame {
@@ -21,6 +23,11 @@ interface Frame {
 
 const shared = globalThis as typeof globalThis & { headwaterFrames?: AsyncLocalStorage<Frame> };
 const frames: AsyncLocalStorage<Frame> = (shared.headwaterFrames ??= new AsyncLocalStorage());
+
+function openFrame(): Frame | null {
+  const frame = frames.getStore();
+  return frame?.unit.open ? frame : null;
+}
 
 const frozen = (state: string): Conflict =>
   new Conflict(
@@ -79,7 +86,7 @@ export async function inTransaction<Result>(
   options: Readonly<{ study?: string | undefined }>,
   work: (transaction: Transaction) => Promise<Result>
 ): Promise<Result> {
-  const running = frames.getStore();
+  const running = openFrame();
   const enter = async (unit: Unit): Promise<Result> => {
     if (options.study !== undefined) {
       if (!writer) throw new Error('a study belongs to a lab: name the writer');
@@ -92,8 +99,8 @@ export async function inTransaction<Result>(
 
   try {
     return await sequelize.transaction(async (transaction) => {
-      const unit: Unit = { transaction, events: [], studies: new Map() };
-      const result = await enter(unit);
+      const unit: Unit = { transaction, events: [], studies: new Map(), open: true };
+      const result = await enter(unit).finally(() => (unit.open = false));
       // In one order everywhere, so that two transactions cannot wait for each other.
       for (const [studyId, labId] of [...unit.studies].sort(([a], [b]) => (a < b ? -1 : 1))) {
         await raiseDataVersion(labId, studyId);
@@ -111,7 +118,7 @@ export async function inTransaction<Result>(
  * @throws Error outside of `inTransaction`, or where that was given no writer
  */
 export function audit(entry: AuditEntry): void {
-  const frame = frames.getStore();
+  const frame = openFrame();
   if (!frame) throw new Error('audit events are written inside inTransaction');
   if (!frame.writer) throw new Error('an audit event needs a writer and a lab');
   const { labId, userId, name } = frame.writer;
@@ -120,7 +127,7 @@ export function audit(entry: AuditEntry): void {
 
 /** The running transaction, or null outside of one. */
 export function runningTransaction(): Transaction | null {
-  return frames.getStore()?.unit.transaction ?? null;
+  return openFrame()?.unit.transaction ?? null;
 }
 
 /**
