@@ -1,0 +1,76 @@
+import { permissions, type Permission } from '../../domain/permissions';
+
+/** Who gets in: anybody, any member of the lab, or the roles that hold a permission. */
+export type Access = 'public' | 'member' | Permission;
+
+export interface RouteRule {
+  /** For GET and HEAD, and for the data of a page. */
+  readonly read: Access;
+  /**
+   * For everything else: one access for all, or one for each form action (`default` where it has no name) or,
+   * at an endpoint, for each method. What is not listed is refused.
+   */
+  readonly write?: Access | Readonly<Record<string, Access>>;
+}
+
+/**
+ * Every route of the application by its id. A route that is not here answers nobody: the table is the one place
+ * where the way in is opened. Services check once more, with the lab and the study at hand.
+ */
+export const routeAccess: Readonly<Record<string, RouteRule>> = {
+  '/healthz': { read: 'public' },
+  '/readyz': { read: 'public' },
+
+  '/(public)/sign-in': { read: 'public', write: { default: 'public' } },
+  '/(public)/forgot-password': { read: 'public', write: { default: 'public' } },
+  '/(public)/reset-password/[token]': { read: 'public', write: { default: 'public' } },
+  '/(public)/invitations/[token]': { read: 'public', write: { create: 'public', join: 'public' } },
+  '/(public)/mailbox': { read: 'public' },
+
+  '/(app)': { read: 'member' },
+  '/(app)/account': { read: 'member', write: { name: 'member', password: 'member' } },
+  '/(app)/sign-out': { read: 'member', write: { default: 'member' } },
+  '/(app)/switch-lab': { read: 'member', write: { default: 'member' } },
+  '/(app)/lab': { read: 'member' },
+  '/(app)/lab/members': {
+    read: 'member',
+    write: {
+      invite: 'members.manage',
+      revoke: 'members.manage',
+      role: 'members.manage',
+      remove: 'members.manage'
+    }
+  },
+  '/(app)/lab/settings': { read: 'member', write: { default: 'lab.settings' } },
+  '/(app)/lab/history': { read: 'studies.see' },
+  '/(app)/studies/[study]/history': { read: 'studies.see' }
+};
+
+/** The name of the form action that an address means, as the framework reads it: the first parameter that begins with a slash. */
+export function actionName(parameters: URLSearchParams): string {
+  const named = [...parameters.keys()].find((key) => key.startsWith('/'));
+  return named ? named.slice(1) : 'default';
+}
+
+/**
+ * What a request needs, or null when the route, the method or the action is not listed.
+ * @param rules the table; another one in tests
+ */
+export function requiredAccess(
+  request: Readonly<{ routeId: string; method: string; parameters: URLSearchParams }>,
+  rules: Readonly<Record<string, RouteRule>> = routeAccess
+): Access | null {
+  if (!Object.hasOwn(rules, request.routeId)) return null;
+  const { read, write } = rules[request.routeId] as RouteRule;
+  if (request.method === 'GET' || request.method === 'HEAD') return read;
+  if (write === undefined) return null;
+  if (typeof write === 'string') return write;
+  const names = [request.method, ...(request.method === 'POST' ? [actionName(request.parameters)] : [])];
+  const listed = names.find((name) => Object.hasOwn(write, name));
+  return listed === undefined ? null : (write[listed] ?? null);
+}
+
+/** True for an access that only some roles have. */
+export function isPermission(access: Access): access is Permission {
+  return Object.hasOwn(permissions, access);
+}

@@ -1,0 +1,45 @@
+import { error, redirect, type Handle, type RequestEvent } from '@sveltejs/kit';
+import { isAllowed } from '../../domain/permissions';
+import { signInPath } from '../auth/next-path';
+import { refusalSentence } from '../auth/refusal';
+import { isPermission, requiredAccess } from '../auth/route-access';
+import { Forbidden, NotFound, Unauthenticated, type ExpectedError } from '../errors';
+import { logger } from '../logger';
+import { problemResponse } from './problem';
+
+const isApi = (routeId: string): boolean => routeId.startsWith('/api/');
+
+function refuse(routeId: string, refusal: ExpectedError): Response {
+  if (isApi(routeId)) return problemResponse(refusal);
+  error(refusal.status, refusal.message);
+}
+
+/** Sends a stranger to the sign-in page and back; programs get 401 and its reason. */
+function turnAway(routeId: string, { url, request }: RequestEvent): Response {
+  if (isApi(routeId)) return problemResponse(new Unauthenticated());
+  // After a form was sent, the way back is to the page that held it, not to its action.
+  const search = request.method === 'GET' ? url.search : '';
+  redirect(303, signInPath(url.pathname, search));
+}
+
+/** Denies by default, by route id: pages, their data, form actions and endpoints alike. */
+export const authorize: Handle = async ({ event, resolve }) => {
+  const routeId = event.route.id;
+  if (routeId === null) return resolve(event);
+  const { actor } = event.locals;
+  const access = requiredAccess({
+    routeId,
+    method: event.request.method,
+    parameters: event.url.searchParams
+  });
+  if (access === null) {
+    logger.warn({ routeId, method: event.request.method }, 'refused: the route table does not list this');
+    return refuse(routeId, new NotFound());
+  }
+  if (access === 'public') return resolve(event);
+  if (actor === null) return turnAway(routeId, event);
+  if (isPermission(access) && !isAllowed(actor.role, access)) {
+    return refuse(routeId, new Forbidden(refusalSentence(actor.role, access)));
+  }
+  return resolve(event);
+};
