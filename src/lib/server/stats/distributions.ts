@@ -48,7 +48,8 @@ export function logGamma(x: number): number {
 
 /** P(Z <= z) for a standard normal Z. */
 export function normalCdf(z: number): number {
-  return orZero(() => cephes.ndtr(z));
+  // Below this the result is smaller than the smallest double, where cephes throws.
+  return z < -37.5 ? 0 : cephes.ndtr(z);
 }
 
 /** z with P(Z > z) = `upper`, 0 < upper < 1. */
