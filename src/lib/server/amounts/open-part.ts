@@ -1,0 +1,94 @@
+import { openLoss, type Estimate, type Value } from '../stats';
+import { asZero } from './portions';
+import type { RecoveryInput } from './recovery-input';
+
+export type OpenPart =
+  | {
+      readonly available: true;
+      readonly found: Estimate;
+      readonly downstream: Estimate;
+      readonly open: Estimate;
+    }
+  | { readonly available: false; readonly reason: string };
+
+/**
+ * Of 100 spiked: what the fractions hold, what was lost between their collection and the instrument, and what is open.
+ *
+ * @param stepRecoveries by stage key, as far as they are known
+ * @param reference signal reference (percent); null: exactly 100
+ * @param stageName what a stage key is called, for the reason
+ */
+export function openPart(
+  input: RecoveryInput,
+  stepRecoveries: Readonly<Record<string, Estimate>>,
+  reference: Estimate | null,
+  stageName: (key: string) => string
+): OpenPart {
+  const passed = new Set(input.fractions.flatMap((fraction) => fraction.passedStages));
+  const unknown = [...passed].filter((key) => (stepRecoveries[key]?.estimate ?? null) === null);
+  if (unknown.length > 0) {
+    return {
+      available: false,
+      reason:
+        `What is lost on the way cannot be told from what is open: ${unknown.map(stageName).join(' and ')} ` +
+        `${unknown.length > 1 ? 'have' : 'has'} no step recovery of ${input.entry.name}.`
+    };
+  }
+  const complete = input.replicates.filter((record) => isComplete(record, input));
+  if (complete.length === 0) {
+    return { available: false, reason: `No portion of ${input.entry.name} is complete in every fraction.` };
+  }
+  const subtracted = input.subtracted;
+  const native = subtracted?.native.filter((record) => isComplete(record, input)) ?? null;
+  if (native?.length === 0) {
+    return {
+      available: false,
+      reason: `Nothing that could be subtracted from ${input.entry.name} is complete in every fraction.`
+    };
+  }
+  const result = openLoss({
+    replicates: native ? pooledForm(input, native) : complete,
+    fractions: input.fractions.map((fraction) => ({ name: fraction.id, passed: fraction.passedStages })),
+    stepRecoveries: Object.fromEntries([...passed].map((key) => [key, stepRecoveries[key]!])),
+    ...(reference ? { reference } : {}),
+    ...(native ? { native } : {})
+  });
+  return { available: true, ...result };
+}
+
+/**
+ * Replicates that lose the pooled native mean, written so that each ends up net of the mean of its own batch: the batch's
+ * deviation from the pool is taken off beforehand.
+ */
+function pooledForm(
+  input: RecoveryInput,
+  native: readonly Readonly<Record<string, Value>>[]
+): Readonly<Record<string, Value>>[] {
+  const batches = input.subtracted?.nativeBatches;
+  const allNative = input.subtracted?.native ?? [];
+  return input.replicates.flatMap((record, index) => {
+    if (!isComplete(record, input)) return [];
+    const batch = input.batches?.[index];
+    const own =
+      batches && batch !== undefined
+        ? native.filter((item) => batches[allNative.indexOf(item)] === batch)
+        : [];
+    if (own.length === 0) return [record];
+    return [
+      Object.fromEntries(
+        input.fractions.map(({ id }) => {
+          const deviation = meanOf(own, id) - meanOf(native, id);
+          return [id, asZero(record[id] ?? 0) - deviation];
+        })
+      )
+    ];
+  });
+}
+
+function isComplete(record: Readonly<Record<string, Value>>, input: RecoveryInput): boolean {
+  return input.fractions.every((fraction) => (record[fraction.id] ?? null) !== null);
+}
+
+function meanOf(records: readonly Readonly<Record<string, Value>>[], id: string): number {
+  return records.reduce((sum, record) => sum + asZero(record[id] ?? 0), 0) / records.length;
+}
