@@ -11,7 +11,7 @@ export const demoSeed = 26_104;
 export const standardNgPerMl = 50;
 export const standardNg = 50;
 export const calibrationNgPerMl: readonly number[] = [0.5, 2, 10, 50, 100, 250, 500];
-/** Below this there is no peak. */
+/** Below the lowest level there is no peak: "ND". Read against a standard, the level counts as a ratio to it. */
 export const leastNgPerMl = 0.5;
 
 /** One injection as the instrument reports it. */
@@ -114,7 +114,10 @@ function inject(
     areas: new Map(
       demoRecovered.map((analyte) => {
         const concentration = concentrations.get(analyte.name) ?? 0;
-        return [analyte.name, concentration < leastNgPerMl ? null : area(analyte, concentration)];
+        const least = analyte.internalStandard
+          ? (leastNgPerMl * standardConcentration) / standardNgPerMl
+          : leastNgPerMl;
+        return [analyte.name, concentration < least ? null : area(analyte, concentration)];
       })
     ),
     standardAreas: new Map(
