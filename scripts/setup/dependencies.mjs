@@ -142,3 +142,23 @@ export async function ensureChromium() {
   requireRoot('Chromium is not installed, and the tests need it', 'chromium');
   await installDebianPackages(['chromium', 'fonts-liberation'], 'Chromium');
 }
+
+/** Programs whose figures and files some tests compare with; without them those tests say that they are skipped. */
+const referencePrograms = [
+  { name: 'R', file: '/usr/bin/Rscript', debianPackage: 'r-base-core' },
+  { name: 'LibreOffice', file: '/usr/bin/soffice', debianPackage: 'libreoffice-calc' }
+];
+
+/** Installs what it may of them; nothing depends on its success. */
+export async function ensureReferencePrograms() {
+  for (const { name, file, debianPackage } of referencePrograms) {
+    if (fs.existsSync(file)) continue;
+    try {
+      requireRoot(`${name} is not installed`, debianPackage);
+      await installDebianPackages([debianPackage], name);
+    } catch (error) {
+      if (!(error instanceof Refusal)) throw error;
+      console.log(`${error.message} The checks against it will be skipped.`);
+    }
+  }
+}

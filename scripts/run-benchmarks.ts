@@ -1,0 +1,100 @@
+import { fork } from 'node:child_process';
+import { readdirSync } from 'node:fs';
+import { resolve } from 'node:path';
+import { pathToFileURL } from 'node:url';
+import { Client } from 'pg';
+import type { BenchContext, Benchmark, BenchResult } from '../tests/bench/benchmark';
+
+/** Runs the benchmarks one after the other and prints one table; ends with code 1 when one fails or misses its goal. */
+const folder = resolve('tests', 'bench');
+const words = process.argv.slice(2).map((word) => word.toLowerCase());
+const serverUrl = process.env.DATABASE_URL ?? '';
+const notes: string[] = [];
+let databases = 0;
+
+async function createDatabase({ demo }: Readonly<{ demo: boolean }>): Promise<string> {
+  databases += 1;
+  const name = `headwater_bench_${databases}`;
+  const client = new Client({ connectionString: serverUrl });
+  await client.connect();
+  await client.query(`CREATE DATABASE ${name}`);
+  await client.end();
+  const url = new URL(serverUrl);
+  url.pathname = `/${name}`;
+  await migrate(url.href, demo);
+  return url.href;
+}
+
+function migrate(databaseUrl: string, demo: boolean): Promise<void> {
+  return new Promise((done, fail) => {
+    const env = {
+      ...process.env,
+      DATABASE_URL: databaseUrl,
+      DEMO_LAB: demo ? 'yes' : 'no',
+      AUTH_SECRET: 'a-secret-that-guards-nothing-but-benchmarks'
+    };
+    const child = fork('scripts/migrate.ts', { execArgv: ['--import', 'tsx'], env });
+    child.once('error', fail);
+    child.once('exit', (code) => (code === 0 ? done() : fail(new Error('the migrations failed'))));
+  });
+}
+
+const digits = (value: number): string => (Number.isFinite(value) ? value.toPrecision(3) : String(value));
+
+interface Line {
+  readonly cells: readonly [string, string, string, string, string, string];
+  readonly met: boolean;
+}
+
+function line({ name, goal }: Benchmark, { figure, floor, unit }: BenchResult): Line {
+  const ratio = figure / floor;
+  const met = goal.is === 'at most' ? ratio <= goal.ratio : ratio >= goal.ratio;
+  const sign = goal.is === 'at most' ? '≤' : '≥';
+  return {
+    cells: [
+      name,
+      `${digits(figure)} ${unit}`,
+      `${digits(floor)} ${unit}`,
+      digits(ratio),
+      `${sign} ${goal.ratio}`,
+      met ? 'met' : 'missed'
+    ],
+    met
+  };
+}
+
+function table(lines: readonly Line[]): string {
+  const rows = [['work', 'figure', 'floor', 'ratio', 'goal', ''], ...lines.map(({ cells }) => [...cells])];
+  const widths = rows[0]!.map((_, column) => Math.max(...rows.map((row) => row[column]!.length)));
+  return rows
+    .map((row) =>
+      row
+        .map((cell, column) => (column === 0 ? cell.padEnd(widths[column]!) : cell.padStart(widths[column]!)))
+        .join('  ')
+    )
+    .join('\n');
+}
+
+const files = readdirSync(folder).filter((file) => file.endsWith('.bench.ts'));
+const context: BenchContext = { databaseUrl: serverUrl, createDatabase, note: (text) => notes.push(text) };
+const lines: Line[] = [];
+let failed = false;
+for (const file of files.sort()) {
+  const { benchmarks } = (await import(pathToFileURL(resolve(folder, file)).href)) as {
+    benchmarks: readonly Benchmark[];
+  };
+  for (const benchmark of benchmarks) {
+    const wanted = words.length === 0 || words.some((word) => benchmark.name.toLowerCase().includes(word));
+    if (!wanted) continue;
+    console.error(`measuring: ${benchmark.name}`);
+    try {
+      lines.push(line(benchmark, await benchmark.run(context)));
+    } catch (error) {
+      failed = true;
+      console.error(error);
+    }
+  }
+}
+console.log(`\n${table(lines)}`);
+for (const note of notes) console.log(`  ${note}`);
+process.exit(failed || lines.some(({ met }) => !met) ? 1 : 0);
