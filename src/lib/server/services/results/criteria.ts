@@ -1,0 +1,49 @@
+import type { CriterionRule, RecoveryCriteria } from '../../../domain/criteria';
+import type { StudyData, StudyPanelEntry } from './study-data';
+
+/** What one analyte is held against, and where that comes from. */
+export interface AppliedCriteria {
+  readonly criteria: RecoveryCriteria | null;
+  /** The rules used, each with its citation; empty where the analyte has criteria of its own. */
+  readonly rules: readonly CriterionRule[];
+  /** Why this analyte has criteria of its own; null: it has the study's. */
+  readonly overrideReason: string | null;
+}
+
+/** The study's criteria for mean recovery, RSD and preparations, or null when it has no rule for mean recovery. */
+export function studyCriteria(rules: readonly CriterionRule[]): RecoveryCriteria | null {
+  const mean = ruleOf(rules, 'mean recovery');
+  if (!mean) return null;
+  const rsd = ruleOf(rules, 'relative standard deviation');
+  const preparations = ruleOf(rules, 'minimum preparations');
+  return {
+    low: mean.low ?? 0,
+    // A rule without an upper end: no recovery reaches this.
+    high: mean.high ?? 1000,
+    rsdMax: rsd?.high ?? null,
+    nMin: preparations?.low ?? preparations?.high ?? 1
+  };
+}
+
+export function ruleOf(rules: readonly CriterionRule[], type: CriterionRule['type']): CriterionRule | null {
+  return rules.find((rule) => rule.type === type) ?? null;
+}
+
+/** The criteria of one panel entry: its own where it has some, else the study's. */
+export function criteriaFor(data: StudyData, entry: StudyPanelEntry): AppliedCriteria {
+  if (entry.criteriaOverride) {
+    const { reason, ...criteria } = entry.criteriaOverride;
+    return { criteria, rules: [], overrideReason: reason ?? 'set for this analyte' };
+  }
+  const types: readonly CriterionRule['type'][] = [
+    'mean recovery',
+    'relative standard deviation',
+    'minimum preparations'
+  ];
+  const { rules } = data.criteriaSet;
+  return {
+    criteria: studyCriteria(rules),
+    rules: types.map((type) => ruleOf(rules, type)).filter((rule) => rule !== null),
+    overrideReason: null
+  };
+}
