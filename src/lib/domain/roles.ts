@@ -9,6 +9,14 @@ export const roleLabels: Readonly<Record<Role, string>> = {
   reviewer: 'Reviewer'
 };
 
+/** What each role is for, in one sentence to the person who holds it. */
+export const roleTasks: Readonly<Record<Role, string>> = {
+  chemist: 'You plan studies, panels, variants and experiments, and read where the loss is.',
+  analyst: 'You bring the data in, and set aside with its cause what went wrong at the bench.',
+  manager: 'You look after the people and the settings of the lab, and decide which variant is chosen.',
+  reviewer: 'You read validation summaries down to the cells they rest on, and sign them or send them back.'
+};
+
 export function isRole(value: unknown): value is Role {
   return typeof value === 'string' && (roles as readonly string[]).includes(value);
 }

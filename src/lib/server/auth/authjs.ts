@@ -2,7 +2,7 @@ import { Auth, raw, skipCSRFCheck, type AuthConfig } from '@auth/core';
 import { AuthError, CallbackRouteError, CredentialsSignin } from '@auth/core/errors';
 import Credentials from '@auth/core/providers/credentials';
 import { SvelteKitAuth } from '@auth/sveltekit';
-import { isRedirect, type Cookies, type RequestEvent } from '@sveltejs/kit';
+import type { Cookies, RequestEvent } from '@sveltejs/kit';
 import type { Actor } from '../../domain/actor';
 import { config } from '../config';
 import { logger } from '../logger';
@@ -163,11 +163,6 @@ export async function useLab(caller: Caller, labId: string): Promise<void> {
 }
 
 /** Ends the session in this browser. */
-export async function endSession(event: RequestEvent): Promise<void> {
-  try {
-    await auth.signOut(event);
-  } catch (thrown) {
-    // It always leads somewhere; the page decides where.
-    if (!isRedirect(thrown)) throw thrown;
-  }
+export async function endSession(caller: Caller): Promise<void> {
+  await call(caller, 'signout', { type: 'application/x-www-form-urlencoded', content: '' });
 }

@@ -1,0 +1,9 @@
+const months = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
+
+/** An ISO 8601 moment in UTC, the same on the server and in every browser: "4 Mar 2026, 09:05 UTC". */
+export function momentText(at: string, dateOnly = false): string {
+  const moment = new Date(at);
+  const two = (value: number): string => String(value).padStart(2, '0');
+  const date = `${moment.getUTCDate()} ${months[moment.getUTCMonth()]} ${moment.getUTCFullYear()}`;
+  return dateOnly ? date : `${date}, ${two(moment.getUTCHours())}:${two(moment.getUTCMinutes())} UTC`;
+}
