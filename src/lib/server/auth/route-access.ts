@@ -43,7 +43,26 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   },
   '/(app)/lab/settings': { read: 'member', write: { default: 'lab.settings' } },
   '/(app)/lab/history': { read: 'studies.see' },
-  '/(app)/studies/[study]/history': { read: 'studies.see' }
+  '/(app)/studies/[study]/history': { read: 'studies.see' },
+  '/(public)/help': { read: 'public' },
+  '/(public)/help/figures': { read: 'public' },
+  '/(public)/help/data-files': { read: 'public' },
+
+  '/(app)/studies/[study]/data': {
+    read: 'studies.see',
+    write: { upload: 'data.enter', withdraw: 'imports.withdraw-own' }
+  },
+  '/(app)/studies/[study]/data/[import]': {
+    read: 'studies.see',
+    write: {
+      declare: 'data.enter',
+      store: 'data.enter',
+      drop: 'data.enter',
+      withdraw: 'imports.withdraw-own'
+    }
+  },
+  '/(app)/studies/[study]/data/[import]/file': { read: 'studies.see' },
+  '/(app)/studies/[study]/experiments/[experiment]/template.xlsx': { read: 'studies.see' }
 };
 
 /** The name of the form action that an address means, as the framework reads it: the first parameter that begins with a slash. */

@@ -1,0 +1,164 @@
+import { QueryTypes } from 'sequelize';
+import type { AdditionPoint, PanelRole, ReplicateKind, ReportedBasis } from '../../domain/vocabulary';
+import { sequelize } from '../db/sequelize';
+import type {
+  CalibrationSetExpectation,
+  DecimalMark,
+  Expectation,
+  ExperimentExpectation,
+  PanelExpectation
+} from '../imports/types';
+
+/** What a person declared about a file, often in answer to a question. */
+export interface Declared {
+  readonly basis: ReportedBasis | null;
+  readonly decimal: DecimalMark | null;
+  /** The experiment whose page the file was dropped on. */
+  readonly experimentId: string | null;
+}
+
+export const nothingDeclared: Declared = { basis: null, decimal: null, experimentId: null };
+
+interface ExperimentRow {
+  readonly id: string;
+  readonly number: number;
+  readonly title: string;
+  readonly final_volume_ml: number | null;
+}
+interface ReplicateRow {
+  readonly id: string;
+  readonly experiment_id: string;
+  readonly label: string;
+  readonly kind: ReplicateKind;
+}
+interface FractionRow {
+  readonly id: string;
+  readonly experiment_id: string;
+  readonly name: string;
+}
+interface PanelRow {
+  readonly id: string;
+  readonly name: string;
+  readonly synonyms: string[];
+  readonly cas: string | null;
+  readonly role: PanelRole;
+  readonly internal_standard_entry_id: string | null;
+  readonly has_level: boolean;
+}
+interface LevelRow {
+  readonly set_id: string;
+  readonly set_name: string;
+  readonly id: string | null;
+  readonly label: string | null;
+}
+interface PointRow {
+  readonly experiment_id: string;
+  readonly panel_entry_id: string;
+  readonly point: AdditionPoint;
+}
+
+/**
+ * Where the internal standard of an entry goes in. The reader needs to know whether a final volume is needed; where
+ * experiments of the study differ and none is named, the practice that needs more is assumed.
+ */
+function additionPoint(
+  points: readonly PointRow[],
+  standardId: string,
+  experimentId: string | null
+): AdditionPoint {
+  const own = points.filter((row) => row.panel_entry_id === standardId);
+  const here = own.find((row) => row.experiment_id === experimentId);
+  if (here) return here.point;
+  if (own.some((row) => row.point === 'vial')) return 'vial';
+  return own[0]?.point ?? 'vial';
+}
+
+/**
+ * What a study offers for a spreadsheet to be matched with: its experiments with their preparations and fractions, the
+ * panel with every name it goes by, and the calibration levels. Plain data.
+ */
+export async function loadExpectation(
+  where: Readonly<{ labId: string; studyId: string }>,
+  declared: Declared
+): Promise<Expectation> {
+  const select = <Row extends object>(sql: string): Promise<Row[]> =>
+    sequelize.query<Row>(sql, { bind: [where.labId, where.studyId], type: QueryTypes.SELECT });
+
+  const experiments = await select<ExperimentRow>(
+    `SELECT id, number, title, final_volume_ml FROM experiments WHERE lab_id = $1 AND study_id = $2 ORDER BY number`
+  );
+  const replicates = await select<ReplicateRow>(
+    `SELECT id, experiment_id, label, kind FROM replicates WHERE lab_id = $1 AND study_id = $2 ORDER BY kind, number`
+  );
+  const fractions = await select<FractionRow>(
+    `SELECT id, experiment_id, name FROM fractions WHERE lab_id = $1 AND study_id = $2 ORDER BY position`
+  );
+  const panel = await select<PanelRow>(
+    `SELECT p.id, v.name, v.synonyms, v.cas, p.role, p.internal_standard_entry_id,
+        EXISTS (SELECT 1 FROM calibration_level_concentrations c WHERE c.panel_entry_id = p.id) AS has_level
+      FROM panel_entries p JOIN analyte_versions v ON v.lab_id = p.lab_id AND v.id = p.analyte_version_id
+      WHERE p.lab_id = $1 AND p.study_id = $2 ORDER BY p.position`
+  );
+  const levels = await select<LevelRow>(
+    `SELECT s.id AS set_id, s.name AS set_name, l.id, l.label
+      FROM calibration_sets s LEFT JOIN calibration_levels l ON l.calibration_set_id = s.id
+      WHERE s.lab_id = $1 AND s.study_id = $2 ORDER BY s.created_at, s.id, l.number`
+  );
+  const points = await select<PointRow>(
+    `SELECT experiment_id, panel_entry_id, point FROM internal_standard_additions WHERE lab_id = $1 AND study_id = $2`
+  );
+
+  return {
+    experiments: experiments.map((row) => experimentExpectation(row, replicates, fractions)),
+    panel: panel.map((row): PanelExpectation => {
+      const standard = row.internal_standard_entry_id;
+      return {
+        id: row.id,
+        name: row.name,
+        synonyms: row.synonyms,
+        cas: row.cas,
+        role: row.role,
+        internalStandard:
+          standard === null
+            ? null
+            : { panelEntryId: standard, point: additionPoint(points, standard, declared.experimentId) },
+        hasLowestLevel: row.has_level
+      };
+    }),
+    calibrationSets: groupedLevels(levels),
+    experimentId: declared.experimentId,
+    declared: { basis: declared.basis, decimal: declared.decimal }
+  };
+}
+
+function experimentExpectation(
+  row: ExperimentRow,
+  replicates: readonly ReplicateRow[],
+  fractions: readonly FractionRow[]
+): ExperimentExpectation {
+  const own = fractions.filter((fraction) => fraction.experiment_id === row.id);
+  return {
+    id: row.id,
+    title: row.title,
+    replicates: replicates
+      .filter((replicate) => replicate.experiment_id === row.id)
+      .map(({ id, label, kind }) => ({
+        id,
+        label,
+        kind,
+        takesFraction: own.length > 0 && kind !== 'solvent standard',
+        finalVolumeMl: row.final_volume_ml
+      })),
+    fractions: own.map(({ id, name }) => ({ id, name }))
+  };
+}
+
+function groupedLevels(rows: readonly LevelRow[]): CalibrationSetExpectation[] {
+  const sets = new Map<string, { id: string; name: string; levels: { id: string; name: string }[] }>();
+  for (const { set_id, set_name, id, label } of rows) {
+    const set = sets.get(set_id) ?? { id: set_id, name: set_name, levels: [] };
+    sets.set(set_id, set);
+    if (id !== null && label !== null) set.levels.push({ id, name: label });
+  }
+  return [...sets.values()];
+}

@@ -1,0 +1,285 @@
+import { QueryTypes } from 'sequelize';
+import type { Actor } from '../../domain/actor';
+import { copyMeasurements, type NewMeasurement } from '../db/measurement-copy';
+import { newId } from '../db/entity-id';
+import { Extract } from '../db/models/extract';
+import { Import } from '../db/models/import';
+import { Injection } from '../db/models/injection';
+import { Sequence } from '../db/models/sequence';
+import type { Study } from '../db/models/study';
+import { sequelize } from '../db/sequelize';
+import { audit, inTransaction } from '../db/transaction';
+import { Conflict, Invalid, NotFound } from '../errors';
+import type { Expectation, MappedImport, MappedRecord } from '../imports/types';
+import { coveredPlaces } from './import-coverage';
+import { loadExpectation, nothingDeclared, type Declared } from './import-expectation';
+import { readKeptFile } from './import-reading';
+import { importOfStudy, studyForData } from './imports';
+import { require } from './permissions';
+
+export interface StoredImport {
+  readonly importId: string;
+  readonly recordCount: number;
+  readonly experimentNumbers: readonly number[];
+}
+
+/**
+ * Stores what a received file says: all of it or nothing. It is read once more against what the study offers now.
+ *
+ * @param input.questionsConfirmed the person read the open questions and takes the values as they stand
+ * @param input.reason why values that are on record are covered; needed when any are
+ * @throws Invalid naming every problem with sheet and cell; Conflict when it is not waiting, or the study changed meanwhile
+ */
+export async function storeImport(
+  actor: Actor,
+  studyCode: string,
+  importId: string,
+  input: Readonly<{ questionsConfirmed: boolean; reason: string }>
+): Promise<StoredImport> {
+  require(actor, 'data.enter');
+  const study = await studyForData(actor, studyCode);
+  const kept = await importOfStudy(actor, study, importId);
+  if (kept.state !== 'received') throw notWaiting(kept.state);
+  const reading = await readKeptFile(study, kept);
+  if (reading.kind === 'refused') throw Invalid.at('file', reading.sentence);
+  refuseProblems(reading.mapped, input.questionsConfirmed);
+  const { mapped, expectation } = reading;
+
+  return inTransaction(actor, { study: study.id }, async (transaction) => {
+    // The study's row first: every change of content ends with it, so what was read cannot change until the commit.
+    await sequelize.query('SELECT id FROM studies WHERE lab_id = $1 AND id = $2 FOR UPDATE', {
+      bind: [study.labId, study.id]
+    });
+    const locked = await Import.findOne({
+      where: { id: kept.id, labId: actor.labId },
+      attributes: { exclude: ['fileBytes'] },
+      lock: transaction.LOCK.UPDATE
+    });
+    if (!locked) throw new NotFound();
+    if (locked.state !== 'received') throw notWaiting(locked.state);
+    await requireUnchanged(study, expectation, locked.declared);
+
+    const covered = await coveredPlaces(study, mapped.records, expectation);
+    const reason = input.reason.trim();
+    if (covered.count > 0 && reason.length < 3) {
+      throw Invalid.at(
+        'reason',
+        `${covered.count} values that are on record (${covered.fileNames.join(', ')}) would be covered by this file. Say why.`,
+        { expected: 'a few words' }
+      );
+    }
+
+    const rows = await storeInjections(study, locked, mapped.records, expectation);
+    await copyMeasurements(rows);
+    await markStored(actor, study, locked, mapped, reason);
+
+    const numbers = await experimentNumbers(study, mapped.records);
+    audit({
+      action: 'stored',
+      entity: 'import',
+      entityId: locked.id,
+      studyId: study.id,
+      sentence: `${mapped.records.length} values of ${locked.fileName} were stored${
+        covered.count > 0 ? `; ${covered.count} of them cover earlier ones` : ''
+      }.`,
+      after: {
+        sha256: locked.sha256,
+        values: mapped.records.length,
+        experiments: numbers,
+        covered: covered.count
+      },
+      reason: covered.count > 0 ? reason : null
+    });
+    return { importId: locked.id, recordCount: mapped.records.length, experimentNumbers: numbers };
+  });
+}
+
+const notWaiting = (state: string): Conflict =>
+  new Conflict(
+    state === 'stored'
+      ? 'This file is stored already. Nothing changed.'
+      : `This file is ${state}; it can be uploaded again.`
+  );
+
+function refuseProblems(mapped: MappedImport, questionsConfirmed: boolean): void {
+  const blocking = mapped.problems.filter(
+    ({ severity }) => severity === 'error' || (severity === 'question' && !questionsConfirmed)
+  );
+  if (blocking.length > 0) {
+    throw new Invalid(
+      blocking.map(({ sheet, cell, found, expected, message }) => ({
+        path: [sheet, cell].filter(Boolean).join('!') || 'file',
+        found,
+        expected,
+        message
+      }))
+    );
+  }
+  if (mapped.records.length === 0) {
+    throw Invalid.at('file', 'Nothing in this file belongs to the study, so there is nothing to store.');
+  }
+}
+
+async function requireUnchanged(study: Study, read: Expectation, declaredNow: unknown): Promise<void> {
+  const declared: Declared = { ...nothingDeclared, ...(declaredNow as Partial<Declared>) };
+  const now = await loadExpectation({ labId: study.labId, studyId: study.id }, declared);
+  if (JSON.stringify(now) !== JSON.stringify(read)) {
+    throw new Conflict(
+      'The panel, the experiments or the calibration of this study changed while the file was read. Look at it once more; nothing was stored.'
+    );
+  }
+}
+
+/** Creates the sequence, the extracts and the injections, and gives the measurements that hang off them. */
+async function storeInjections(
+  study: Study,
+  kept: Import,
+  records: readonly MappedRecord[],
+  expectation: Expectation
+): Promise<NewMeasurement[]> {
+  const ids = { labId: study.labId, studyId: study.id, importId: kept.id };
+  const sequence = await Sequence.create({
+    ...ids,
+    instrument: 'as reported',
+    runOn: earliestDay(records)
+  });
+
+  const volumes = new Map(
+    expectation.experiments.flatMap((experiment) =>
+      experiment.replicates.map((replicate) => [replicate.id, replicate.finalVolumeMl] as const)
+    )
+  );
+  const extracts = new Map<string, Parameters<typeof Extract.build>[0] & { id: string }>();
+  const injections = new Map<string, Parameters<typeof Injection.build>[0] & { id: string }>();
+  const injectionOf = (record: MappedRecord): string => {
+    const { place } = record;
+    let extractId: string | null = null;
+    if (place.kind === 'extract') {
+      const key = `${place.replicateId} ${place.fractionId}`;
+      const extract = extracts.get(key) ?? {
+        ...ids,
+        id: newId(),
+        experimentId: place.experimentId,
+        replicateId: place.replicateId,
+        fractionId: place.fractionId,
+        finalVolumeMl: record.finalVolumeMl ?? volumes.get(place.replicateId) ?? null,
+        aliquotShare: record.aliquotShare ?? 1
+      };
+      extracts.set(key, extract);
+      extractId = extract.id;
+    }
+    const levelId = place.kind === 'level' ? place.levelId : null;
+    const key = `${extractId} ${levelId} ${record.injection}`;
+    const injection = injections.get(key) ?? {
+      ...ids,
+      id: newId(),
+      sequenceId: sequence.id,
+      position: injections.size + 1,
+      kind: place.kind,
+      extractId,
+      levelId,
+      number: record.injection,
+      dilution: record.dilution ?? 1,
+      runAt: record.acquiredAt === null ? null : new Date(`${record.acquiredAt}Z`)
+    };
+    injections.set(key, injection);
+    return injection.id;
+  };
+
+  const analytes = await analyteIds(study);
+  const standards = new Map(
+    expectation.panel.map((entry) => [entry.id, entry.internalStandard?.panelEntryId ?? null])
+  );
+  const sheets = new Map(kept.sheetNames.map((name, index) => [name, index + 1]));
+  const sheetNames = [...kept.sheetNames];
+  const sheetNumber = (name: string): number => {
+    const known = sheets.get(name);
+    if (known !== undefined) return known;
+    sheetNames.push(name);
+    sheets.set(name, sheetNames.length);
+    return sheetNames.length;
+  };
+
+  const rows = records.map((record): NewMeasurement => {
+    const { place, reported } = record;
+    const standard = standards.get(record.panelEntryId) ?? null;
+    return {
+      labId: study.labId,
+      importId: kept.id,
+      injectionId: injectionOf(record),
+      experimentId: place.kind === 'extract' ? place.experimentId : null,
+      calibrationSetId: place.kind === 'level' ? place.calibrationSetId : null,
+      analyteId: known(analytes, record.panelEntryId),
+      basis: reported.kind,
+      state: record.state,
+      reported: reported.value,
+      internalArea: reported.internalArea,
+      internalAnalyteId:
+        reported.internalArea === null || standard === null ? null : known(analytes, standard),
+      limitValue: record.limit,
+      rawText: record.rawText,
+      sheet: sheetNumber(record.sheet),
+      sheetRow: record.row + 1,
+      sheetColumn: record.column + 1
+    };
+  });
+
+  kept.sheetNames = sheetNames;
+  await Extract.bulkCreate([...extracts.values()]);
+  await Injection.bulkCreate([...injections.values()]);
+  return rows;
+}
+
+function known(analytes: ReadonlyMap<string, string>, entryId: string): string {
+  const id = analytes.get(entryId);
+  if (id === undefined) throw new Error('a record names a panel entry that the study does not have');
+  return id;
+}
+
+async function analyteIds(study: Study): Promise<ReadonlyMap<string, string>> {
+  const rows = await sequelize.query<{ id: string; analyte_id: string }>(
+    'SELECT id, analyte_id FROM panel_entries WHERE lab_id = $1 AND study_id = $2',
+    { bind: [study.labId, study.id], type: QueryTypes.SELECT }
+  );
+  return new Map(rows.map((row) => [row.id, row.analyte_id]));
+}
+
+function earliestDay(records: readonly MappedRecord[]): string | null {
+  const days = records.flatMap(({ acquiredAt }) => (acquiredAt === null ? [] : [acquiredAt.slice(0, 10)]));
+  return days.length === 0 ? null : days.reduce((first, day) => (day < first ? day : first));
+}
+
+async function markStored(
+  actor: Actor,
+  study: Study,
+  kept: Import,
+  mapped: MappedImport,
+  reason: string
+): Promise<void> {
+  await sequelize.query(
+    `UPDATE imports SET state = 'stored', stored_order = nextval('imports_stored_order'), stored_by = $3, stored_at = now(),
+        reading = $4::jsonb, counts = $5::jsonb, sheet_names = $6::text[],
+        declared = declared || $7::jsonb, updated_at = now()
+      WHERE lab_id = $1 AND id = $2`,
+    {
+      bind: [
+        study.labId,
+        kept.id,
+        actor.userId,
+        JSON.stringify(mapped.reading),
+        JSON.stringify({ records: mapped.records.length }),
+        [...kept.sheetNames],
+        JSON.stringify(reason === '' ? {} : { reason })
+      ]
+    }
+  );
+}
+
+async function experimentNumbers(study: Study, records: readonly MappedRecord[]): Promise<number[]> {
+  const ids = new Set(records.flatMap(({ place }) => (place.kind === 'extract' ? [place.experimentId] : [])));
+  const rows = await sequelize.query<{ number: number }>(
+    'SELECT number FROM experiments WHERE lab_id = $1 AND study_id = $2 AND id = ANY ($3::uuid[]) ORDER BY number',
+    { bind: [study.labId, study.id, [...ids]], type: QueryTypes.SELECT }
+  );
+  return rows.map((row) => row.number);
+}

@@ -1,0 +1,49 @@
+import type { ImportState, MeasurementState } from '$lib/domain/vocabulary';
+
+export const importStateWords: Readonly<Record<ImportState, string>> = {
+  received: 'Received, not stored yet',
+  stored: 'Stored',
+  dropped: 'Left unstored',
+  superseded: 'Superseded',
+  withdrawn: 'Withdrawn'
+};
+
+export const measurementStateWords: Readonly<Record<MeasurementState, string>> = {
+  value: 'value',
+  'not detected': 'not detected',
+  below: 'below its limit',
+  above: 'above range',
+  missing: 'missing'
+};
+
+/** What a column of the sheet was taken for. */
+export const meaningWords: Readonly<Record<string, string>> = {
+  sample: 'sample',
+  experiment: 'experiment',
+  fraction: 'fraction',
+  analyte: 'analyte',
+  cas: 'CAS number',
+  value: 'value',
+  'internal area': 'area of the internal standard',
+  'final volume': 'final volume',
+  dilution: 'dilution',
+  'aliquot share': 'share of the fraction',
+  injection: 'injection',
+  'acquired at': 'acquired',
+  'not used': 'not used'
+};
+
+export function sizeText(bytes: number): string {
+  if (bytes < 1024) return `${bytes} bytes`;
+  if (bytes < 1024 * 1024) return `${Math.round(bytes / 1024)} kB`;
+  return `${(bytes / 1024 / 1024).toFixed(1)} MB`;
+}
+
+const months = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
+
+/** "14 Oct 2026, 09:12 UTC": the same on the server and in every browser. */
+export function whenText(iso: string): string {
+  const at = new Date(iso);
+  const two = (value: number): string => String(value).padStart(2, '0');
+  return `${at.getUTCDate()} ${months[at.getUTCMonth()]} ${at.getUTCFullYear()}, ${two(at.getUTCHours())}:${two(at.getUTCMinutes())} UTC`;
+}
