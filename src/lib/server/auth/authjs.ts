@@ -23,6 +23,11 @@ export const authPath = '/auth';
 /** A session ends after half a day without a request: benches share computers. */
 const idleSeconds = 12 * 60 * 60;
 
+/** True for the cookie of a session, or a piece of it. Auth.js has others, for ways of signing in that are not offered here. */
+export function isSessionCookie(name: string): boolean {
+  return name.includes('session-token');
+}
+
 type Claims = Readonly<Record<string, unknown>>;
 
 function claimsIn(token: Claims): SessionClaims | null {
@@ -122,6 +127,7 @@ async function call(
   });
   const answer = await Auth(request, { ...(await settings(caller)), raw, skipCSRFCheck });
   for (const { name, value, options } of answer.cookies ?? []) {
+    if (!isSessionCookie(name)) continue;
     caller.cookies.set(name, value, { path: '/', ...options } as Parameters<Cookies['set']>[2]);
   }
 }

@@ -1,5 +1,5 @@
 import { error, type Cookies, type Handle } from '@sveltejs/kit';
-import { auth, authPath } from '../auth/authjs';
+import { auth, authPath, isSessionCookie } from '../auth/authjs';
 import { noteActor } from '../request-context';
 
 /** The session's cookie is written anew after this time, not with every answer. */
@@ -42,7 +42,9 @@ export const authenticate: Handle = ({ event, resolve }) => {
 async function readActor(event: Parameters<Handle>[0]['event']): Promise<App.Locals['actor']> {
   const offered: Parameters<SetCookie>[] = [];
   const set = event.cookies.set;
-  event.cookies.set = (...cookie) => void offered.push(cookie);
+  event.cookies.set = (...cookie) => {
+    if (isSessionCookie(cookie[0])) offered.push(cookie);
+  };
   const session = await event.locals.auth().finally(() => (event.cookies.set = set));
   const age = Date.now() / 1000 - (session?.writtenAt ?? 0);
   if (!session?.actor || age > renewAfterSeconds) for (const cookie of offered) event.cookies.set(...cookie);

@@ -90,7 +90,7 @@ export async function removeMember(actor: Actor, input: Readonly<{ userId: strin
   });
 }
 
-/** Changes one's own name; what was signed or noted under the old one keeps it. */
+/** Changes one's own name; the history keeps the old one beside what was done under it. */
 export async function changeOwnName(actor: Actor, input: Readonly<{ name: string }>): Promise<void> {
   await inTransaction(actor, {}, async (transaction) => {
     const user = await User.findByPk(actor.userId, { lock: transaction.LOCK.UPDATE });
