@@ -4,12 +4,11 @@ import { hashPassword } from '../../src/lib/server/auth/passwords';
 import { newId } from '../../src/lib/server/db/entity-id';
 import { Analyte } from '../../src/lib/server/db/models/analyte';
 import { AnalyteVersion } from '../../src/lib/server/db/models/analyte-version';
-import { CriteriaSet } from '../../src/lib/server/db/models/criteria-set';
-import { CriteriaSetVersion } from '../../src/lib/server/db/models/criteria-set-version';
 import { Lab } from '../../src/lib/server/db/models/lab';
 import { Membership } from '../../src/lib/server/db/models/membership';
 import { User } from '../../src/lib/server/db/models/user';
 import { audit, inTransaction } from '../../src/lib/server/db/transaction';
+import { createCriteriaSet } from '../../src/lib/server/services/criteria-sets';
 import { demoAccounts } from '../demo-accounts';
 import { libraryAnalytes } from '../library/analytes';
 import { libraryCriteriaSets } from '../library/criteria-sets';
@@ -79,30 +78,6 @@ export async function addToLibrary(actor: Actor, analytes: readonly LibraryAnaly
   });
 }
 
-async function addCriteria(actor: Actor): Promise<void> {
-  await inTransaction(actor, {}, async () => {
-    for (const { name, rules } of libraryCriteriaSets) {
-      const [id, versionId] = [newId(), newId()];
-      await CriteriaSet.create({ id, labId: actor.labId, currentVersionId: versionId });
-      await CriteriaSetVersion.create({
-        id: versionId,
-        labId: actor.labId,
-        criteriaSetId: id,
-        version: 1,
-        name,
-        rules,
-        createdBy: actor.userId
-      });
-    }
-    audit({
-      action: 'created',
-      entity: 'library',
-      sentence: `${libraryCriteriaSets.length} sets of acceptance criteria came into the library.`,
-      after: { criteriaSets: libraryCriteriaSets.map(({ name }) => name) }
-    });
-  });
-}
-
 /** A lab of the demo with its people. */
 export interface SeededLab {
   readonly labId: string;
@@ -147,7 +122,9 @@ export async function createDemoLab(name: string): Promise<SeededLab> {
       after: { name, members: actors.map((actor) => ({ name: actor.name, role: actor.role })) }
     });
     await addToLibrary(manager, libraryAnalytes);
-    await addCriteria(manager);
+    for (const { name: setName, rules } of libraryCriteriaSets) {
+      await createCriteriaSet(manager, { name: setName, rules });
+    }
   });
   return { labId: manager.labId, as };
 }

@@ -92,7 +92,7 @@ export const demoPanel: readonly DemoAnalyte[] = [
   target('Diclofenac', phenols, 3450, 1.007, { nativeNgPerL: 81 }),
   target('Phenol', phenols, 1260, 1.012, { contaminationNg: 1.6, polymerExtra: 0.3 }),
   target('4-Nitrophenol', phenols, 2060, 0.992, { nativeNgPerL: 6, polymerExtra: 0.5 }),
-  target('Bisphenol A', phenols, 1640, 1.0, { nativeNgPerL: 31, contaminationNg: 4.5, unrest: 4.2 }),
+  target('Bisphenol A', phenols, 1640, 1.0, { nativeNgPerL: 31, contaminationNg: 4.5, unrest: 4.6 }),
   target('Naphthalene', volatiles, 4120, 0.999, { nativeNgPerL: 5, unrest: 1.2 }),
   target('N-Nitrosodimethylamine', null, 880, 1.006, { unrest: 1.2, carbonHeld: 0.93 }),
   surrogate('Propranolol-d7', bases, 6620, 0.998, 'Propranolol'),
