@@ -189,16 +189,21 @@ export type ProblemCode =
   | 'missing column'
   | 'column not used'
   | 'column twice'
+  | 'unit missing'
+  | 'unknown unit'
   | 'sheet not read'
   | 'text encoding'
   // names
   | 'unknown sample'
   | 'ambiguous sample'
   | 'missing sample'
+  | 'unknown experiment'
   | 'unknown fraction'
   | 'missing fraction'
   | 'fraction not expected'
   | 'unknown analyte'
+  | 'ambiguous analyte'
+  | 'ambiguous fraction'
   | 'missing analyte'
   // values
   | 'not a number'
@@ -219,6 +224,7 @@ export type ProblemCode =
   // records
   | 'same injection twice'
   | 'internal standard area missing'
+  | 'internal standard area twice'
   | 'final volume missing'
   | 'not taken by basis'
   | 'differs within extract';

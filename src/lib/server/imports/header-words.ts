@@ -1,0 +1,153 @@
+/**
+ * What a column can be called. Letter case, spaces, hyphens, brackets and units do not matter. To teach the reader
+ * another word, add it here.
+ */
+export const headerWords = {
+  sample: [
+    'sample',
+    'samples',
+    'sample name',
+    'sample label',
+    'sample id',
+    'sample or level',
+    'label',
+    'replicate',
+    'replicate label',
+    'preparation',
+    'portion',
+    'level',
+    'calibration level'
+  ],
+  experiment: ['experiment', 'experiment title', 'experiment name'],
+  fraction: ['fraction', 'fraction name', 'fractions', 'part of the sample'],
+  analyte: [
+    'analyte',
+    'analytes',
+    'analyte name',
+    'compound',
+    'compound name',
+    'substance',
+    'component',
+    'component name',
+    'peak',
+    'peak name',
+    'parameter'
+  ],
+  cas: ['cas', 'cas number', 'cas no', 'cas no.', 'cas rn'],
+  area: ['area', 'areas', 'peak area', 'peak areas', 'area counts', 'analyte area', 'response', 'signal'],
+  internalArea: [
+    'internal standard area',
+    'area of internal standard',
+    'area of the internal standard',
+    'internal standard peak area',
+    'internal standard response',
+    'internal area',
+    'is area',
+    'is peak area',
+    'is response',
+    'istd area',
+    'istd response',
+    'area is',
+    'area istd'
+  ],
+  /** A figure of which the unit, or the person, has to say more. */
+  result: [
+    'result',
+    'value',
+    'amount',
+    'mass',
+    'quantity',
+    'concentration',
+    'conc',
+    'conc.',
+    'calculated concentration',
+    'calculated amount',
+    'reported value'
+  ],
+  finalVolume: [
+    'final volume',
+    'final extract volume',
+    'extract volume',
+    'volume of extract',
+    'volume of the extract',
+    'final vol',
+    'final vol.'
+  ],
+  dilution: ['dilution', 'dilution factor', 'df', 'dilution df'],
+  aliquotShare: [
+    'aliquot share',
+    'share',
+    'aliquot',
+    'aliquot fraction',
+    'share of the fraction',
+    'share of fraction'
+  ],
+  injection: [
+    'injection',
+    'injection number',
+    'injection no',
+    'injection no.',
+    'inj',
+    'inj.',
+    'inj no',
+    'inj no.'
+  ],
+  acquiredAt: [
+    'acquired at',
+    'acquired',
+    'acquisition time',
+    'acquisition date',
+    'acquisition date and time',
+    'injected at',
+    'injection time',
+    'date and time',
+    'run at'
+  ],
+  /** Seen often, of no use here; mentioned as not used. */
+  ignored: [
+    'internal standard',
+    'internal standard name',
+    'calibrated with',
+    'comment',
+    'comments',
+    'remark',
+    'remarks',
+    'note',
+    'notes',
+    'vial',
+    'vial position',
+    'position',
+    'rack',
+    'method',
+    'operator',
+    'analyst',
+    'instrument',
+    'retention time',
+    'rt',
+    'ion ratio',
+    'signal to noise',
+    's/n',
+    'height',
+    'peak height',
+    'area ratio',
+    'response ratio',
+    'file',
+    'file name',
+    'data file',
+    'sequence',
+    'row',
+    'no',
+    'no.',
+    '#',
+    'type',
+    'sample type',
+    'sample volume',
+    'date'
+  ]
+} as const;
+
+/** Words in a concentration's header that tell of what it is. */
+export const vialWords = ['vial', 'extract', 'injected', 'in solution'] as const;
+export const sampleWords = ['sample', 'water', 'original'] as const;
+
+export type HeaderWord = keyof typeof headerWords;

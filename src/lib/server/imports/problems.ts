@@ -1,0 +1,78 @@
+import { cellAddress } from './cell-address';
+import type { Problem, ProblemCode, ProblemSeverity } from './types';
+
+export interface ProblemInput {
+  readonly code: ProblemCode;
+  readonly sheet: string | null;
+  readonly row?: number;
+  readonly column?: number;
+  readonly found: string;
+  readonly expected: string;
+  /** A whole sentence without the place: it is put in front. */
+  readonly what: string;
+  readonly fix: string;
+  readonly answer?: Problem['answer'];
+}
+
+/** Problems that say the same of many cells are reported once, with the first cell and how many more there are. */
+interface Grouped {
+  readonly severity: ProblemSeverity;
+  readonly input: ProblemInput;
+  count: number;
+}
+
+/** Collects all problems of a file. */
+export class ProblemList {
+  readonly #problems: (Problem | Grouped)[] = [];
+  readonly #groups = new Map<string, Grouped>();
+
+  error(input: ProblemInput): void {
+    this.#problems.push(toProblem('error', input, 1));
+  }
+
+  question(input: ProblemInput): void {
+    this.#problems.push(toProblem('question', input, 1));
+  }
+
+  note(input: ProblemInput): void {
+    this.#problems.push(toProblem('note', input, 1));
+  }
+
+  /** @param group what is the same in all the cells that share one problem */
+  oncePer(group: string, severity: ProblemSeverity, input: ProblemInput): void {
+    const key = `${input.code}\u0000${input.sheet}\u0000${group}`;
+    const known = this.#groups.get(key);
+    if (known) {
+      known.count++;
+      return;
+    }
+    const grouped: Grouped = { severity, input, count: 1 };
+    this.#groups.set(key, grouped);
+    this.#problems.push(grouped);
+  }
+
+  /** Errors first, then questions, then notes; within each in the order of the file. */
+  all(): readonly Problem[] {
+    const order: Readonly<Record<ProblemSeverity, number>> = { error: 0, question: 1, note: 2 };
+    return this.#problems
+      .map((entry) => ('input' in entry ? toProblem(entry.severity, entry.input, entry.count) : entry))
+      .sort((one, other) => order[one.severity] - order[other.severity]);
+  }
+}
+
+function toProblem(severity: ProblemSeverity, input: ProblemInput, count: number): Problem {
+  const cell = input.row === undefined ? null : cellAddress(input.row, input.column ?? 0);
+  const more = count > 1 ? ` The same goes for ${count - 1} more ${count === 2 ? 'cell' : 'cells'}.` : '';
+  const place = [input.sheet, cell].filter((part) => part !== null).join(', ');
+  return {
+    severity,
+    code: input.code,
+    sheet: input.sheet,
+    cell,
+    found: input.found,
+    expected: input.expected,
+    message: `${place === '' ? '' : `${place}: `}${input.what}${more}`,
+    fix: input.fix,
+    answer: severity === 'question' ? (input.answer ?? 'confirm') : null
+  };
+}

@@ -1,0 +1,133 @@
+import { nameKey } from '../../domain/name-key';
+import { headerWords, sampleWords, vialWords } from './header-words';
+import type { HeaderWord } from './header-words';
+import type { NameMatcher } from './name-matcher';
+import { isAmount, isConcentration, isUnit } from './units';
+
+/** What a value column holds, as far as its header says. */
+export type StatedKind = 'area' | 'vial' | 'ng_per_l' | 'ng' | 'concentration' | 'result';
+
+export type Header =
+  | {
+      readonly meaning: 'value';
+      readonly kind: StatedKind;
+      readonly unit: string | null;
+      readonly analyte: string | null;
+    }
+  | { readonly meaning: 'internal area'; readonly unit: null; readonly analyte: string | null }
+  | {
+      readonly meaning: Exclude<HeaderWord, 'area' | 'result' | 'internalArea'>;
+      readonly unit: string | null;
+    }
+  | { readonly meaning: 'unknown'; readonly unit: string | null };
+
+const wordByKey = new Map<string, HeaderWord>(
+  (Object.keys(headerWords) as HeaderWord[]).flatMap((word) =>
+    headerWords[word].map((text): [string, HeaderWord] => [nameKey(text) || text, word])
+  )
+);
+
+/** What may follow or precede an analyte's name in a header. Shortest first: the longest name that is on the panel is the one meant. */
+const qualifiers = [...wordByKey]
+  .filter(([, word]) => word === 'area' || word === 'internalArea' || word === 'result')
+  .sort(([one], [other]) => one.length - other.length);
+
+/**
+ * Reads one header: its unit (in brackets, or at its end after a comma or a space), then a word of `headerWords`, or an
+ * analyte, or an analyte with such a word ("Caffeine area", "Caffeine (ng/L)").
+ *
+ * @param analytes the panel's names
+ */
+export function readHeader(text: string, analytes: NameMatcher<string>): Header {
+  const { words, unit } = splitUnit(text);
+  const whole = wordOf(words) ?? wordOf(words.replace(/[([{][^)\]}]*[)\]}]/g, ' '));
+  if (words.trim() === '' && unit !== null)
+    return { meaning: 'value', kind: kindOf(text, unit), unit, analyte: null };
+  if (whole) return headerOf(whole, text, unit, null);
+
+  const named = analyteOf(words, analytes) ?? analyteOf(text, analytes);
+  if (named !== null)
+    return { meaning: 'value', kind: kindOf(withoutName(text, words), unit), unit, analyte: named };
+  const key = nameKey(words.replace(/[,;:|/]\s*$/, ''));
+  for (const [qualifier, word] of qualifiers) {
+    const rest = key.endsWith(qualifier)
+      ? key.slice(0, -qualifier.length)
+      : key.startsWith(qualifier)
+        ? key.slice(qualifier.length)
+        : '';
+    const analyte = analyteOf(rest.replace(/^[,:;\-.]+|[,:;\-.]+$/g, ''), analytes);
+    if (analyte !== null) return headerOf(word, text, unit, analyte);
+  }
+  const beforeWords = vialOrSample(words);
+  if (beforeWords) {
+    const analyte = analyteOf(beforeWords.rest, analytes);
+    if (analyte !== null) return { meaning: 'value', kind: kindOf(text, unit), unit, analyte };
+    const word = wordOf(beforeWords.rest);
+    if (word) return headerOf(word, text, unit, null);
+  }
+  return { meaning: 'unknown', unit };
+}
+
+function headerOf(word: HeaderWord, text: string, unit: string | null, analyte: string | null): Header {
+  if (word === 'area') return { meaning: 'value', kind: 'area', unit: null, analyte };
+  if (word === 'internalArea') return { meaning: 'internal area', unit: null, analyte };
+  if (word === 'result') return { meaning: 'value', kind: kindOf(text, unit), unit, analyte };
+  return { meaning: word, unit };
+}
+
+/** A concentration says by a word whether it is that of the vial or of the sample; many do not. */
+function kindOf(text: string, unit: string | null): StatedKind {
+  if (unit === null) return 'result';
+  if (isAmount(unit)) return 'ng';
+  if (!isConcentration(unit)) return 'result';
+  const key = nameKey(text);
+  if (vialWords.some((word) => key.includes(nameKey(word)))) return 'vial';
+  if (sampleWords.some((word) => key.includes(nameKey(word)))) return 'ng_per_l';
+  return 'concentration';
+}
+
+/** The rest of a header must not lend its words from an analyte's name ("Water blue (ng/mL)"). */
+function withoutName(text: string, words: string): string {
+  return text.replace(words, ' ');
+}
+
+/** "Caffeine in the vial": the part before the words that say of what a concentration is. */
+function vialOrSample(words: string): { readonly rest: string } | null {
+  const match =
+    /^(.*?)[\s,(]+(?:in|of)\s+(?:the\s+)?(?:[a-z]+\s+)?(?:vial|extract|sample|water|solution)\W*$/i.exec(
+      words
+    );
+  return match ? { rest: match[1] ?? '' } : null;
+}
+
+function wordOf(text: string): HeaderWord | null {
+  const trimmed = text.trim();
+  return wordByKey.get(nameKey(trimmed) || trimmed) ?? null;
+}
+
+function analyteOf(text: string, analytes: NameMatcher<string>): string | null {
+  if (text.trim() === '') return null;
+  const match = analytes.match(text);
+  return match.kind === 'one' ? match.value : null;
+}
+
+function splitUnit(text: string): { readonly words: string; readonly unit: string | null } {
+  const trimmed = text.trim();
+  if (isUnit(trimmed)) return { words: '', unit: trimmed };
+  const bracketed = /^(.*)[([]\s*(?:in\s+)?([^()[\]]+?)\s*[)\]]([^()[\]]*)$/su.exec(trimmed);
+  if (bracketed && isUnit(bracketed[2] ?? '')) {
+    return { words: `${bracketed[1]} ${bracketed[3]}`.trim(), unit: bracketed[2] ?? null };
+  }
+  // "ng/mL in the vial": the unit first.
+  const leading = /^(\S+)\s+(in|of)\s+(.+)$/su.exec(trimmed);
+  if (leading && isUnit(leading[1] ?? '')) return { words: '', unit: leading[1] ?? null };
+  const trailing = /^(.*?)(?:\s*[,;:]\s*|\s+in\s+|\s+)(\S+)$/su.exec(trimmed);
+  if (trailing && isUnit(trailing[2] ?? ''))
+    return { words: (trailing[1] ?? '').trim(), unit: trailing[2] ?? null };
+  return { words: trimmed, unit: null };
+}
+
+/** A unit that stands in brackets but is none of ours, to be named in a problem. */
+export function statedUnit(text: string): string | null {
+  return /[([]\s*([^()[\]]+?)\s*[)\]]\s*$/u.exec(text.trim())?.[1] ?? null;
+}
