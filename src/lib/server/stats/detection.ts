@@ -92,7 +92,7 @@ export type QuantitationConfirmation = {
  * interval for one further result (3.963 s at n = 7); bounds 100 (mean -+ halfRange)/fortified, to lie within 50 to 150 %.
  *
  * @throws StatsError for fewer than two results, one that is not finite, a fortified amount not above zero.
- * Source: EPA Method 539, 9.2.4 (half range of prediction).
+ * Source: EPA Method 539 (half range of prediction).
  */
 export function quantitationConfirmation(results: {
   readonly values: readonly number[];
