@@ -9,6 +9,7 @@ import { sequelize } from '../db/sequelize';
 import { audit, inTransaction } from '../db/transaction';
 import { NotFound } from '../errors';
 import { counted } from './changes';
+import { knownId } from './known-id';
 import { require } from './permissions';
 import { requireUnchanged } from './stale';
 
@@ -35,7 +36,7 @@ export async function listCriteriaSets(actor: Actor): Promise<readonly CriteriaS
 /** One set with its versions and the studies held against it. @throws NotFound */
 export async function getCriteriaSet(actor: Actor, id: string): Promise<CriteriaSetView> {
   require(actor, 'studies.see');
-  const bind = [actor.labId, id];
+  const bind = [actor.labId, knownId(id)];
   const rows = await sequelize.query<Row>(
     `SELECT ${columns} FROM criteria_set_versions v LEFT JOIN users u ON u.id = v.created_by
       WHERE v.lab_id = $1 AND v.criteria_set_id = $2 ORDER BY v.version DESC`,
@@ -91,7 +92,7 @@ export async function newCriteriaVersion(
   require(actor, 'library.edit');
   return inTransaction(actor, {}, async (transaction) => {
     const set = await CriteriaSet.findOne({
-      where: { labId: actor.labId, id },
+      where: { labId: actor.labId, id: knownId(id) },
       lock: transaction.LOCK.NO_KEY_UPDATE
     });
     const current = await CriteriaSetVersion.findOne({

@@ -11,6 +11,7 @@ import { sequelize } from '../db/sequelize';
 import { audit, inTransaction } from '../db/transaction';
 import { Invalid, NotFound } from '../errors';
 import { changesBetween, listed } from './changes';
+import { knownId } from './known-id';
 import { briefColumns, briefOf, currentAnalytes } from './library-rows';
 import { matchNames } from './name-matching';
 import { require } from './permissions';
@@ -62,7 +63,7 @@ type VersionRow = Omit<AnalyteVersionView, 'createdAt'> & { readonly createdAt: 
 /** One analyte with all its versions and the studies that use it. @throws NotFound */
 export async function getAnalyte(actor: Actor, id: string): Promise<AnalyteView> {
   require(actor, 'studies.see');
-  const bind = [actor.labId, id];
+  const bind = [actor.labId, knownId(id)];
   const rows = await sequelize.query<VersionRow>(
     `SELECT ${briefColumns}, v.id AS "versionId", v.synonyms, v.smiles, v.vapour_pressure_pa AS "vapourPressurePa",
         v.water_solubility_mg_l AS "waterSolubilityMgL", v.sources, v.note, u.name AS "createdBy", v.created_at AS "createdAt"
@@ -164,7 +165,7 @@ export async function newAnalyteVersion(actor: Actor, id: string, form: AnalyteV
   require(actor, 'library.edit');
   return inTransaction(actor, {}, async () => {
     await lockLibrary(actor);
-    const analyte = await Analyte.findOne({ where: { labId: actor.labId, id } });
+    const analyte = await Analyte.findOne({ where: { labId: actor.labId, id: knownId(id) } });
     const current = await AnalyteVersion.findOne({
       where: { labId: actor.labId, analyteId: id },
       order: [['version', 'DESC']]
