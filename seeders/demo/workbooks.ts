@@ -66,19 +66,20 @@ function wideRows(vials: readonly ReportedInjection[], substances: readonly Repo
 }
 
 /**
- * An instrument's spreadsheet as XLSX bytes: one sheet named `Areas`, in the long layout (one row per sample, fraction and
+ * An instrument's spreadsheet as XLSX bytes: one sheet named `Areas` with a title above the table, in the long layout (one row per sample, fraction and
  * analyte) or the wide one (analytes across).
  */
 export async function writeWorkbook(
+  title: string,
   layout: 'long' | 'wide',
   vials: readonly ReportedInjection[],
   substances: readonly ReportedSubstance[]
 ): Promise<Buffer> {
   const workbook = new ExcelJS.Workbook();
-  const sheet = workbook.addWorksheet('Areas', { views: [{ state: 'frozen', xSplit: 2, ySplit: 1 }] });
+  const sheet = workbook.addWorksheet('Areas', { views: [{ state: 'frozen', xSplit: 2, ySplit: 3 }] });
   const rows = layout === 'long' ? longRows(vials, substances) : wideRows(vials, substances);
-  sheet.addRows(rows.map((row) => [...row]));
-  sheet.getRow(1).font = { bold: true };
+  sheet.addRows([[title], [], ...rows.map((row) => [...row])]);
+  sheet.getRow(3).font = { bold: true };
   sheet.columns.forEach((column) => (column.width = 16));
   return Buffer.from(await workbook.xlsx.writeBuffer());
 }

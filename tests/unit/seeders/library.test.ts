@@ -1,6 +1,8 @@
 import { Molecule } from 'openchemlib';
 import { describe, expect, it } from 'vitest';
 import { nameKey, parseCas } from '../../../src/lib/domain/name-key';
+import { criteriaSetForm } from '../../../src/lib/schemas/criteria-set';
+import { libraryCriteriaSets } from '../../../seeders/library/criteria-sets';
 import { libraryAnalyte, libraryAnalytes } from '../../../seeders/library/analytes';
 
 const elements = (formula: string) =>
@@ -56,5 +58,16 @@ describe('the library a new lab begins with', () => {
     expect(libraryAnalyte('Phenol').vapourPressurePa?.value).toBeCloseTo(46.66, 2);
     expect(libraryAnalyte('Naphthalene').vapourPressurePa?.value).toBeCloseTo(11.33, 2);
     expect(libraryAnalyte('Naphthalene').henryPaM3Mol?.value).toBeCloseTo(44.58, 2);
+  });
+
+  it('has criteria that the forms of the program would take, each with its citation and standing', () => {
+    for (const set of libraryCriteriaSets) {
+      const typed = { ...set, rules: set.rules.map((rule) => ({ ...rule, note: rule.note ?? '' })) };
+      expect(criteriaSetForm.parse(typed)).toEqual(set);
+      for (const rule of set.rules) {
+        if (rule.standing === 'memory') expect(rule.note).toContain('From memory');
+        expect(rule.standing === 'own').toBe(rule.year === null);
+      }
+    }
   });
 });
