@@ -47,7 +47,7 @@ async function run() {
 
   const server = ownServer ? { url: ownServer, stop: () => {} } : await startThrowawayPostgres();
   closers.add(server.stop);
-  const env = { ...process.env, DATABASE_URL: server.url, NODE_ENV: 'test', FORCE_COLOR: '0' };
+  const env = { ...process.env, DATABASE_URL: server.url, NODE_ENV: 'test', NO_COLOR: '1' };
 
   const counts = [];
   const [checks, unit] = await Promise.all([staticChecks(env), vitest('unit', env)]);

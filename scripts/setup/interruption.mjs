@@ -16,7 +16,7 @@ export function closeInOrder({ exitCode = 0 } = {}) {
   const closers = [];
   /** @type {Promise<void> | null} */
   let closing = null;
-  let signals = 0;
+  let firstSignal = 0;
 
   const close = () => {
     closing ??= (async () => {
@@ -31,8 +31,12 @@ export function closeInOrder({ exitCode = 0 } = {}) {
     return closing;
   };
   const onSignal = async () => {
-    signals += 1;
-    if (signals > 1) process.exit(1);
+    if (firstSignal > 0) {
+      // npm passes on the Ctrl-C that the terminal has sent here already: that is not a second one.
+      if (Date.now() - firstSignal > 1500) process.exit(1);
+      return;
+    }
+    firstSignal = Date.now();
     console.log('\nStopping.');
     interruptSteps();
     await close();
@@ -42,6 +46,6 @@ export function closeInOrder({ exitCode = 0 } = {}) {
   return {
     add: (closer) => void closers.push(closer),
     close,
-    interrupted: () => signals > 0
+    interrupted: () => firstSignal > 0
   };
 }
