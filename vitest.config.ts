@@ -5,7 +5,14 @@ import { playwright } from '@vitest/browser-playwright';
 import { defineConfig } from 'vitest/config';
 import { chromium } from './tests/browser.ts';
 
-const alias = { $lib: fileURLToPath(new URL('./src/lib', import.meta.url)) };
+const file = (path: string): string => fileURLToPath(new URL(path, import.meta.url));
+const alias = { $lib: file('./src/lib') };
+/** Modules of the framework that exist only while it builds or serves, and that Auth.js asks for. */
+const framework = {
+  '$app/environment': file('./tests/integration/framework/environment.ts'),
+  '$app/paths': file('./tests/integration/framework/paths.ts'),
+  '$env/dynamic/private': file('./tests/integration/framework/private-env.ts')
+};
 
 export default defineConfig({
   test: {
@@ -20,9 +27,10 @@ export default defineConfig({
         }
       },
       {
-        resolve: { alias },
+        resolve: { alias: { ...alias, ...framework } },
         test: {
           name: 'integration',
+          server: { deps: { inline: ['@auth/sveltekit'] } },
           include: ['tests/integration/**/*.test.ts'],
           // A process a file, so that each file has a database and a pool of its own.
           pool: 'forks',

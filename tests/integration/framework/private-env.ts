@@ -1,0 +1,2 @@
+/** What `$env/dynamic/private` says. */
+export const env = process.env;
