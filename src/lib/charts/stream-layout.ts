@@ -7,6 +7,8 @@ export interface StreamSlice {
   /** The water, and the line of its deepest course; 0 to 100 in both directions. */
   readonly water: string;
   readonly course: string;
+  /** Its two banks alone, for a slice whose width is a guess. */
+  readonly banks: string;
   /** Middle of the stream at the lower end. */
   readonly mouth: number;
   /** The amount below is not known: the banks are drawn as a guess. */
@@ -42,8 +44,11 @@ export function streamSlices(remaining: readonly (number | null)[]): StreamSlice
     const water =
       `M${round(top - wide)} 0${bank(top - wide, bottom - narrow)}` +
       `L${round(bottom + narrow)} 100${back(bottom + narrow, top + wide)}Z`;
+    const banks =
+      `M${round(top - wide)} 0${bank(top - wide, bottom - narrow)}` +
+      `M${round(top + wide)} 0${bank(top + wide, bottom + narrow)}`;
     above = below;
-    return { water, course: `M${top} 0${bank(top, bottom)}`, mouth: bottom, guessed: amount === null };
+    return { water, banks, course: `M${top} 0${bank(top, bottom)}`, mouth: bottom, guessed: amount === null };
   });
 }
 

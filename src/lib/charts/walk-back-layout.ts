@@ -12,7 +12,9 @@ export interface WalkBackPanel {
 
 export interface WalkBackLayout {
   readonly ticks: readonly { readonly value: number; readonly at: number }[];
-  readonly zero: number;
+  /** Grid lines, and the line of no loss, down the whole panel or beside the dots only. */
+  readonly grid: string;
+  readonly zero: string;
   readonly panels: readonly WalkBackPanel[];
 }
 
@@ -26,16 +28,29 @@ export const standsOut = (pAdjusted: number | null): boolean => pAdjusted !== nu
  * analyte with its interval. Dots are strokes of no length with round ends, which stay round on any stretch.
  *
  * @param middle where in its row a dot lies, 0 (top) to 1 (bottom)
+ * @param guides lines run down the whole panel, or stay beside the dots where text stands between them
  */
-export function walkBackLayout(view: WalkBackView, middle = 0.5): WalkBackLayout {
+export function walkBackLayout(
+  view: WalkBackView,
+  middle = 0.5,
+  guides: 'whole' | 'rows' = 'whole'
+): WalkBackLayout {
   const ends = view.rows.flatMap(({ losses }) =>
     losses.flatMap((loss) => (loss ? [loss.lost, loss.interval?.lower ?? 0, loss.interval?.upper ?? 0] : []))
   );
   const x = scaleLinear([Math.min(0, ...ends), Math.max(20, ...ends)], [3, 97]).nice(4);
   const y = (index: number): number => round(((index + middle) / view.rows.length) * 100);
+  const beside = 16 / Math.max(1, view.rows.length);
+  const line = (value: number): string =>
+    guides === 'whole'
+      ? `M${round(x(value))} 0V100`
+      : view.rows
+          .map((_, row) => `M${round(x(value))} ${round(y(row) - beside)}V${round(y(row) + beside)}`)
+          .join('');
   return {
     ticks: x.ticks(4).map((value) => ({ value, at: round(x(value)) })),
-    zero: round(x(0)),
+    grid: x.ticks(4).map(line).join(''),
+    zero: line(0),
     panels: view.stages.map(({ key, name }, column) => {
       const losses = view.rows.map(({ losses }) => losses[column] ?? null);
       const dots = (clear: boolean): string =>

@@ -26,6 +26,7 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   '/(public)/reset-password/[token]': { read: 'public', write: { default: 'public' } },
   '/(public)/invitations/[token]': { read: 'public', write: { create: 'public', join: 'public' } },
   '/(public)/mailbox': { read: 'public' },
+  '/(public)/theme': { read: 'public', write: 'public' },
 
   '/(app)': { read: 'member' },
   '/(app)/account': { read: 'member', write: { name: 'member', password: 'member' } },
