@@ -1,6 +1,5 @@
 import type { Study } from '../db/models/study';
-import { readInChild } from '../imports/read-in-child';
-import { mapRecords } from '../imports/map-records';
+import { mapInChild } from '../imports/read-in-child';
 import { Refusal } from '../imports/refusal';
 import type { Expectation, MappedImport, Workbook } from '../imports/types';
 import { bytesOf } from './imports';
@@ -16,8 +15,8 @@ export type ImportReading =
     };
 
 /**
- * Reads a kept file against what the study offers now. The bytes are read in a process of their own, which can be ended;
- * nothing is written.
+ * Reads a kept file against what the study offers now. The bytes are read in a process of their own,
+ * which can be ended; nothing is written.
  */
 export async function readKeptFile(
   study: Pick<Study, 'id' | 'labId'>,
@@ -29,8 +28,7 @@ export async function readKeptFile(
     loadExpectation({ labId: study.labId, studyId: study.id }, declared)
   ]);
   try {
-    const workbook = await readInChild(bytes);
-    return { kind: 'read', workbook, expectation, mapped: mapRecords(workbook, expectation) };
+    return { kind: 'read', expectation, ...(await mapInChild(bytes, expectation)) };
   } catch (error) {
     if (error instanceof Refusal) return { kind: 'refused', sentence: error.message };
     throw error;

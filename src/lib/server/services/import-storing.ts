@@ -1,4 +1,4 @@
-import { QueryTypes } from 'sequelize';
+import { QueryTypes, type CreationAttributes } from 'sequelize';
 import type { Actor } from '../../domain/actor';
 import { copyMeasurements, type NewMeasurement } from '../db/measurement-copy';
 import { newId } from '../db/entity-id';
@@ -149,8 +149,8 @@ async function storeInjections(
       experiment.replicates.map((replicate) => [replicate.id, replicate.finalVolumeMl] as const)
     )
   );
-  const extracts = new Map<string, Parameters<typeof Extract.build>[0] & { id: string }>();
-  const injections = new Map<string, Parameters<typeof Injection.build>[0] & { id: string }>();
+  const extracts = new Map<string, CreationAttributes<Extract> & { id: string }>();
+  const injections = new Map<string, CreationAttributes<Injection> & { id: string }>();
   const injectionOf = (record: MappedRecord): string => {
     const { place } = record;
     let extractId: string | null = null;
