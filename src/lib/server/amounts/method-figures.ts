@@ -48,7 +48,7 @@ export function methodFigures(
   level = 0.95
 ): MethodFigures {
   const balance = balanceOf(input, 'zero', level);
-  const uncertain = [...input.replicates, ...(input.subtracted?.native ?? [])].some(hasNotDetected);
+  const uncertain = hasNotDetected(input);
   const low = uncertain ? balanceOf(input, 'low', level).method : null;
   const high = uncertain ? balanceOf(input, 'high', level).method : null;
   return {
@@ -153,8 +153,11 @@ function lacking(input: RecoveryInput, index: number, which: 'method' | 'all'): 
   return { portion, lacks };
 }
 
-function hasNotDetected(record: Readonly<Record<string, Value>>): boolean {
-  return Object.values(record).some((value) => value !== null && typeof value === 'object');
+/** True when anything that went into the figure, or is subtracted, was not detected. */
+export function hasNotDetected(input: RecoveryInput): boolean {
+  return [...input.replicates, ...(input.subtracted?.native ?? [])].some((record) =>
+    Object.values(record).some((value) => value !== null && typeof value === 'object')
+  );
 }
 
 function atLimit(record: Readonly<Record<string, Value>>): Record<string, Value> {

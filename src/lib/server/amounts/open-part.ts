@@ -1,4 +1,5 @@
 import { openLoss, type Estimate, type Value } from '../stats';
+import { atEnd, hasNotDetected } from './method-figures';
 import { asZero } from './portions';
 import type { RecoveryInput } from './recovery-input';
 
@@ -8,6 +9,8 @@ export type OpenPart =
       readonly found: Estimate;
       readonly downstream: Estimate;
       readonly open: Estimate;
+      /** The open part differs from zero, whatever not-detected stands for: only then is it one. */
+      readonly significant: boolean;
     }
   | { readonly available: false; readonly reason: string };
 
@@ -19,6 +22,34 @@ export type OpenPart =
  * @param stageName what a stage key is called, for the reason
  */
 export function openPart(
+  input: RecoveryInput,
+  stepRecoveries: Readonly<Record<string, Estimate>>,
+  reference: Estimate | null,
+  stageName: (key: string) => string
+): OpenPart {
+  const part = openPartOf(input, stepRecoveries, reference, stageName);
+  if (!part.available) return part;
+  if (!hasNotDetected(input)) return { ...part, significant: excludesZero(part.open) !== 0 };
+  const atLimits = openPartOf(
+    { ...input, replicates: atEnd(input, 'high').replicates },
+    stepRecoveries,
+    reference,
+    stageName
+  );
+  const differs = excludesZero(part.open);
+  return {
+    ...part,
+    significant: differs !== 0 && atLimits.available && Math.sign(atLimits.open.estimate ?? 0) === differs
+  };
+}
+
+/** -1 or 1 when the interval lies on one side of zero; 0 when it does not, or does not exist. */
+function excludesZero({ ci }: Estimate): number {
+  if (ci === null) return 0;
+  return ci.lower > 0 ? 1 : ci.upper < 0 ? -1 : 0;
+}
+
+function openPartOf(
   input: RecoveryInput,
   stepRecoveries: Readonly<Record<string, Estimate>>,
   reference: Estimate | null,
@@ -53,7 +84,7 @@ export function openPart(
     ...(reference ? { reference } : {}),
     ...(native ? { native } : {})
   });
-  return { available: true, ...result };
+  return { available: true, ...result, significant: false };
 }
 
 /**

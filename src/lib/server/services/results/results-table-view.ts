@@ -1,0 +1,92 @@
+import type { ResultRow, ResultsTableView } from '../../../views/findings';
+import type { Link } from './addresses';
+import { criteriaFor } from './criteria';
+import { criteriaText, ruleView } from './figure-parts';
+import { incompleteSentence } from './mass-balance-view';
+import type { StudyExperiment, StudyPanelEntry } from './study-data';
+import type { EntryFigures, StudyFigures } from './study-figures';
+import { experimentChoice } from './subject';
+
+/** Method recovery of every target of one experiment, held against its criteria; panel order. */
+export function resultsTableOf(
+  figures: StudyFigures,
+  experiment: StudyExperiment,
+  link: Link
+): ResultsTableView {
+  const { rules } = figures.data.criteriaSet;
+  const used: readonly string[] = ['mean recovery', 'relative standard deviation', 'minimum preparations'];
+  return {
+    experiment: experimentChoice(figures, experiment),
+    rows: figures.targets.flatMap((entry) => {
+      const found = figures.entry(experiment.id, entry.id);
+      return !found.ready && found.kind === 'not spiked'
+        ? []
+        : [rowOf(figures, experiment, entry, found, link)];
+    }),
+    rules: rules.filter((rule) => used.includes(rule.type)).map(ruleView)
+  };
+}
+
+function rowOf(
+  figures: StudyFigures,
+  experiment: StudyExperiment,
+  entry: StudyPanelEntry,
+  found: EntryFigures,
+  link: Link
+): ResultRow {
+  const applied = criteriaFor(figures.data, entry);
+  const criteria = `${criteriaText(applied.criteria)}${applied.overrideReason ? ` (of its own: ${applied.overrideReason})` : ''}`;
+  const base = {
+    panelEntryId: entry.id,
+    name: entry.name,
+    role: entry.role,
+    class: entry.class ?? '',
+    criteria
+  };
+  const nothing = { n: null, mean: null, sd: null, rsd: null, interval: null, subtracted: null };
+  if (!found.ready) {
+    const relative = found.relative?.available ? found.relative : null;
+    return {
+      ...base,
+      ...nothing,
+      verdict: null,
+      reasons: [found.reason],
+      relative: relative && {
+        mean: relative.estimate.estimate ?? relative.description.mean,
+        n: relative.description.n,
+        standard: relative.standardName
+      },
+      notes: found.relative && !found.relative.available ? [found.relative.reason] : [],
+      href: link({ kind: relative ? 'relative' : 'recovery', experiment: experiment.number, entry: entry.id })
+    };
+  }
+  const { method } = found.balance;
+  return {
+    ...base,
+    ...(method
+      ? { n: method.n, mean: method.mean, sd: method.sd, rsd: method.rsd, interval: method.ci }
+      : nothing),
+    subtracted: found.input.subtracted?.meanPercent ?? null,
+    verdict: found.verdict,
+    reasons: found.reasons,
+    relative: null,
+    notes: notesOf(found),
+    href: link({ kind: 'recovery', experiment: experiment.number, entry: entry.id })
+  };
+}
+
+function notesOf(found: Extract<EntryFigures, { ready: true }>): string[] {
+  const aside = found.input.portions
+    .filter((portion) => portion.exclusion)
+    .map((portion) => `${portion.replicate.label} is set aside: ${portion.exclusion?.cause ?? ''}`);
+  const lacking = found.incomplete.method.map(
+    (item) => `${item.portion.replicate.label} lacks ${item.lacks.join(' and ')}`
+  );
+  const balance = incompleteSentence(found);
+  return [
+    ...aside,
+    ...lacking,
+    ...(balance && lacking.length === 0 ? [balance] : []),
+    ...(found.input.subtracted?.notes ?? [])
+  ];
+}

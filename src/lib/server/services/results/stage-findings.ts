@@ -1,0 +1,105 @@
+import { percentText } from '../../../domain/figure-text';
+import type { StageFindings } from '../../../views/findings';
+import type { StageRow } from '../../amounts/variant-figures';
+import type { Link } from './addresses';
+import { intervalText, listed } from './figure-parts';
+import type { StudyFigures, VariantContext } from './study-figures';
+
+interface Named {
+  readonly entryId: string;
+  readonly name: string;
+  readonly stage: string;
+  readonly row: StageRow;
+  readonly below: StageRow | null;
+}
+
+/** The finding in a sentence: the worst loss that may be named and how sure it is, then the others, then what is missing. */
+export function stageFindingsOf(
+  figures: StudyFigures,
+  context: VariantContext | null,
+  link: Link
+): StageFindings {
+  if (!context?.top) {
+    return {
+      lead: 'No variant has been measured from the sample on yet, so nothing can be said about its losses.',
+      named: [],
+      notes: []
+    };
+  }
+  const all = [...context.figures.entries.values()];
+  const stageName = (key: string): string => context.stages.find((stage) => stage.key === key)?.name ?? key;
+  const rows = all.flatMap((item) =>
+    item.rows.map((row, index): Named => ({
+      entryId: item.entry.id,
+      name: item.entry.name,
+      stage: stageName(row.stage),
+      row,
+      below: item.rows[index - 1] ?? null
+    }))
+  );
+  const named = rows
+    .filter((item) => item.row.named)
+    .sort((a, b) => (b.row.lost?.estimate ?? 0) - (a.row.lost?.estimate ?? 0));
+  const gone = all.filter((item) => {
+    const top = item.rows.at(-1);
+    return (
+      top?.stage === context.stages.at(-1)?.key &&
+      top?.recovered.estimate !== null &&
+      (top?.recovered.estimate ?? 0) <= 0
+    );
+  });
+  const [worst] = named;
+  const lead =
+    gone.length > 0
+      ? `Nothing of ${listed(gone.map((item) => item.entry.name))} ends in the extract.`
+      : worst
+        ? lossSentence(worst)
+        : unnamedSentence(rows, context);
+  return {
+    lead,
+    named: named.slice(gone.length > 0 ? 0 : 1, 6).map((item) => ({
+      text: lossSentence(item),
+      href: link({ kind: 'loss', variant: context.variant.code, stage: item.row.stage, entry: item.entryId })
+    })),
+    notes: notesOf(context, rows)
+  };
+}
+
+/** "Drying takes 12 points of NDMA (95 %: 8 to 16; n = 7 and 6)." */
+function lossSentence({ name, stage, row, below }: Named): string {
+  const lost = row.lost?.estimate ?? 0;
+  const ci = row.lost?.ci ? `${intervalText(row.lost.ci)}; ` : '';
+  const n = below ? `n = ${row.n} and ${below.n}` : `n = ${row.n}`;
+  return `${stage} takes ${percentText(lost)} points of ${name} (${ci}${n}).`;
+}
+
+function unnamedSentence(rows: readonly Named[], context: VariantContext): string {
+  const [largest] = rows
+    .filter((item) => (item.row.lost?.estimate ?? null) !== null)
+    .sort((a, b) => (b.row.lost?.estimate ?? 0) - (a.row.lost?.estimate ?? 0));
+  if (!largest) return `Of variant ${context.variant.code} no loss can be attributed to a stage yet.`;
+  return `No loss of more than 5 points is certain yet; the largest estimate: ${lossSentence(largest)}`;
+}
+
+function notesOf(context: VariantContext, rows: readonly Named[]): string[] {
+  const notes: string[] = [];
+  if (context.figures.mediaDiffer) {
+    const corrected = rows.some((item) => item.row.matrixEffect !== null);
+    const media = context.stages.flatMap((stage) =>
+      stage.evidence ? [`${stage.name.toLowerCase()} in ${stage.evidence.medium}`] : []
+    );
+    notes.push(
+      `The stages were measured in different media (${media.join(', ')}). ` +
+        (corrected
+          ? 'Where post-extraction spikes tell the matrix effect, recoveries enter the steps divided by it.'
+          : 'No post-extraction spikes tell the matrix effect, so part of a loss may be masking at the detector.')
+    );
+  }
+  for (const stage of context.stages) {
+    if (stage.evidence || stage.kind === 'signal') continue;
+    notes.push(
+      `${stage.name} has no experiment yet: what it takes is part of what the stage above it seems to take.`
+    );
+  }
+  return notes;
+}
