@@ -48,8 +48,13 @@ export function prepareDataFolder(folder) {
         `This user may not write in the data folder ${folder}: start as the user who made it, or name another folder in DATA_DIR.`
       );
     }
-    if (error?.code === 'ENOTDIR' || error?.code === 'EEXIST')
+    if (error?.code === 'ENOTDIR' || error?.code === 'EEXIST') {
       throw new Refusal(`DATA_DIR is ${folder}, but a part of that path is a file.`);
+    }
+    if (error?.syscall)
+      throw new Refusal(
+        `The data folder ${folder} cannot be made there (${error.code}): name another one in DATA_DIR.`
+      );
     throw error;
   }
 }

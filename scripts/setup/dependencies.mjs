@@ -90,6 +90,11 @@ export async function ensurePostgres() {
   } finally {
     fs.rmSync(file, { force: true });
   }
+  if (installedPrograms().length === 0) {
+    throw new Refusal(
+      'PostgreSQL is installed, but its programs are not in /usr/lib/postgresql: reinstall the Debian package postgresql.'
+    );
+  }
 }
 
 /**

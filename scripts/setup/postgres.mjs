@@ -162,6 +162,7 @@ async function launch(cluster, identity, bin, durable) {
     const port = await freePort();
     const socketFolder = privateFolder('hw-', identity);
     fs.rmSync(log, { force: true });
+    const begun = Date.now();
     const settings = [
       'listen_addresses=127.0.0.1',
       `port=${port}`,
@@ -195,7 +196,7 @@ async function launch(cluster, identity, bin, durable) {
     if (status === 0) return { port, socketFolder };
     fs.rmSync(socketFolder, { recursive: true, force: true });
     if (attempt === 3)
-      throw new Refusal(`The database in ${cluster} does not start: ${whyItFailed(cluster, log)}`);
+      throw new Refusal(`The database in ${cluster} does not start: ${whyItFailed(cluster, log, begun)}`);
   }
 }
 
@@ -213,20 +214,25 @@ function pgCtl(identity, bin, args) {
 /**
  * @param {string} cluster
  * @param {string} log
+ * @param {number} begun when this start began
  */
-function whyItFailed(cluster, log) {
+function whyItFailed(cluster, log, begun) {
+  // The day's file holds earlier starts too: it is asked only when this start wrote to it.
   const folder = path.join(cluster, 'log');
   const daily = fs.existsSync(folder)
     ? fs
         .readdirSync(folder)
         .map((name) => path.join(folder, name))
+        .filter((file) => fs.statSync(file).mtimeMs >= begun)
         .sort((a, b) => fs.statSync(b).mtimeMs - fs.statSync(a).mtimeMs)[0]
     : undefined;
-  const lines = [daily, log]
-    .filter((file) => file !== undefined && fs.existsSync(file))
-    .flatMap((file) => fs.readFileSync(/** @type {string} */ (file), 'utf8').split('\n'));
-  const fatal = lines.filter((line) => /(FATAL|PANIC):/.test(line)).at(-1);
-  return fatal ? fatal.replace(/^.*?(FATAL|PANIC):\s*/, '') : `its log is ${daily ?? log}.`;
+  const linesOf = (/** @type {string | undefined} */ file) =>
+    file !== undefined && fs.existsSync(file) ? fs.readFileSync(file, 'utf8').split('\n') : [];
+  const fatal = [...linesOf(daily), ...linesOf(log)].filter((line) => /(FATAL|PANIC):/.test(line)).at(-1);
+  if (fatal) return fatal.replace(/^.*?(FATAL|PANIC):\s*/, '');
+  // What is wrong before the server has a log of its own comes without a severity.
+  const early = linesOf(log).filter((line) => line !== '' && !/LOG:|HINT:/.test(line));
+  return early.length > 0 ? early.join(' ').replace(/^postgres: /, '') : `its log is ${daily ?? log}.`;
 }
 
 /**
