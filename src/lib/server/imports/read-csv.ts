@@ -28,7 +28,7 @@ export function readCsv(bytes: Buffer, limits: ReadingLimits): Workbook {
       max_record_size: limits.textLength * 64,
       on_record: (record: readonly string[]) => {
         record.forEach((cell, column) => {
-          if (cell !== '') builder.addText(row, column, 'text', cell);
+          if (cell.trim() !== '') builder.addText(row, column, 'text', cell);
         });
         row++;
         return null;

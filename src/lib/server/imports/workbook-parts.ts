@@ -1,6 +1,6 @@
 import type { Archive } from './archive';
 import type { ReadingLimits } from './limits';
-import { outOfProportion, Refusal } from './refusal';
+import { damaged, outOfProportion, Refusal } from './refusal';
 import { scanXml } from './scan-xml';
 
 export interface WorkbookParts {
@@ -45,11 +45,14 @@ export async function findWorkbookParts(archive: Archive, limits: ReadingLimits)
   if (named.length > limits.sheets) {
     throw outOfProportion(`This workbook has ${named.length} sheets; at most ${limits.sheets} are read.`);
   }
+  const sheets = named.flatMap(({ name, hidden, relation }) => {
+    const found = relations.find(({ id, kind }) => id === relation && kind === 'worksheet');
+    return found ? [{ name, hidden, part: found.part }] : [];
+  });
+  if (new Set(sheets.map(({ part }) => part)).size < sheets.length)
+    throw damaged('two of its sheets are the same part');
   return {
-    sheets: named.flatMap(({ name, hidden, relation }) => {
-      const found = relations.find(({ id, kind }) => id === relation && kind === 'worksheet');
-      return found ? [{ name, hidden, part: found.part }] : [];
-    }),
+    sheets,
     sharedStrings: relations.find(({ kind }) => kind === 'sharedStrings')?.part ?? null,
     styles: relations.find(({ kind }) => kind === 'styles')?.part ?? null,
     countsFrom1904

@@ -105,11 +105,14 @@ interface Table {
   readonly rows: readonly Row[];
 }
 
-/** Sample and fraction of each extract; standards have no fraction. */
-function extractsOf(
-  experiment: ExperimentExpectation
-): readonly { readonly sample: string; readonly fraction: string | null }[] {
-  return experiment.replicates.flatMap(({ label, takesFraction }) =>
+interface ExtractRow {
+  readonly sample: string;
+  /** Standards have none. */
+  readonly fraction: string | null;
+}
+
+function extractsOf(experiment: ExperimentExpectation): readonly ExtractRow[] {
+  return experiment.replicates.flatMap(({ label, takesFraction }): readonly ExtractRow[] =>
     takesFraction
       ? experiment.fractions.map(({ name }) => ({ sample: label, fraction: name }))
       : [{ sample: label, fraction: null }]
