@@ -1,10 +1,5 @@
 import { QueryTypes } from 'sequelize';
-import type {
-  ExperimentListItem,
-  ExperimentView,
-  FractionView,
-  ReplicateView
-} from '../../views/experiments';
+import type { ExperimentView, FractionView, ReplicateView } from '../../views/experiments';
 import { CalibrationSet } from '../db/models/calibration-set';
 import { Experiment } from '../db/models/experiment';
 import { Fraction } from '../db/models/fraction';
