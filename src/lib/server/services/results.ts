@@ -1,6 +1,7 @@
 import type { Actor } from '../../domain/actor';
 import type {
   CompareView,
+  ExperimentChoice,
   PortionsView,
   ResultsTableView,
   StageFindings,
@@ -19,7 +20,13 @@ import { provenanceOf } from './results/provenance-view';
 import { resultsTableOf } from './results/results-table-view';
 import { stageFindingsOf } from './results/stage-findings';
 import { stageLadderOf } from './results/stage-ladder-view';
-import { experimentByNumber, subjectOf, subjectView, type SubjectQuery } from './results/subject';
+import {
+  experimentByNumber,
+  experimentChoice,
+  subjectOf,
+  subjectView,
+  type SubjectQuery
+} from './results/subject';
 import { walkBackOf } from './results/walk-back-view';
 import { require } from './permissions';
 
@@ -166,4 +173,11 @@ export async function provenanceView(
   require(actor, 'studies.see');
   const parsed = parseAddress(address);
   return provenanceOf(await figuresOfStudy(actor.labId, study), parsed, linkOf(figureLink));
+}
+
+/** The experiments of a study to choose one from, in order of their number. */
+export async function listExperimentsOf(actor: Actor, study: string): Promise<readonly ExperimentChoice[]> {
+  require(actor, 'studies.see');
+  const figures = await figuresOfStudy(actor.labId, study);
+  return figures.data.experiments.map((experiment) => experimentChoice(figures, experiment));
 }
