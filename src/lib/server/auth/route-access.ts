@@ -43,7 +43,7 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
     }
   },
   '/(app)/lab/settings': { read: 'member', write: { default: 'lab.settings' } },
-  '/(app)/lab/history': { read: 'studies.see' },
+  '/(app)/lab/history': { read: 'lab.settings' },
   '/(app)/studies/[study]/history': { read: 'studies.see' },
   '/(public)/help': { read: 'public' },
   '/(public)/help/figures': { read: 'public' },
@@ -63,7 +63,23 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
     }
   },
   '/(app)/studies/[study]/data/[import]/file': { read: 'studies.see' },
-  '/(app)/studies/[study]/experiments/[experiment]/template.xlsx': { read: 'studies.see' }
+  '/(app)/studies/[study]/experiments/[experiment]/template.xlsx': { read: 'studies.see' },
+
+  '/(app)/studies/[study]': { read: 'studies.see' },
+  '/(app)/studies/[study]/balance': { read: 'studies.see' },
+  '/(app)/studies/[study]/walk-back': { read: 'studies.see' },
+  '/(app)/studies/[study]/compare': { read: 'studies.see' },
+  '/(app)/studies/[study]/validation': { read: 'studies.see' },
+  '/(app)/studies/[study]/results.csv': { read: 'export.any' },
+  '/(app)/studies/[study]/summary': { read: 'studies.see' },
+  '/(app)/studies/[study]/summary.xlsx': { read: 'export.any' },
+  '/api/v1/studies/[study]/results': { read: 'studies.see' },
+  '/api/v1/studies/[study]/balance': { read: 'studies.see' },
+  '/api/v1/studies/[study]/stages': { read: 'studies.see' },
+  '/api/v1/studies/[study]/walk-back': { read: 'studies.see' },
+  '/api/v1/studies/[study]/compare': { read: 'studies.see' },
+  '/api/v1/studies/[study]/portions': { read: 'studies.see' },
+  '/api/v1/studies/[study]/provenance': { read: 'studies.see' }
 };
 
 /** The name of the form action that an address means, as the framework reads it: the first parameter that begins with a slash. */
