@@ -123,7 +123,7 @@ export async function createDemoLab(name: string): Promise<SeededLab> {
     });
     await addToLibrary(manager, libraryAnalytes);
     for (const { name: setName, rules } of libraryCriteriaSets) {
-      await createCriteriaSet(manager, { name: setName, rules });
+      await createCriteriaSet(manager, { name: setName, rules: [...rules] });
     }
   });
   return { labId: manager.labId, as };

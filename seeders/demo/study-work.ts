@@ -1,0 +1,176 @@
+import type { Actor } from '../../src/lib/domain/actor';
+import { createCalibrationSet } from '../../src/lib/server/services/calibrations';
+import { exclude } from '../../src/lib/server/services/exclusions';
+
+import { createExperiment, getExperiment } from '../../src/lib/server/services/experiments';
+import {
+  chooseStageEvidence,
+  createVariant,
+  setProcedureSteps
+} from '../../src/lib/server/services/variants';
+import { spikeNg, surrogateNg } from './experiments';
+import {
+  calibrationNgPerMl,
+  levelLabel,
+  simulateCalibration,
+  simulateExperiment,
+  standardNg,
+  standardNgPerMl
+} from './generator';
+import { idOf, type PanelIds } from './panel-ids';
+import { demoPanel, demoRecovered } from './panel';
+import type { PlannedExperiment, PlannedPortion } from './planned';
+import type { PlannedVariant } from './procedures';
+import { upload } from './upload';
+import { writeWorkbook } from './workbooks';
+
+/** Who works on a study, by its code. */
+export interface Bench {
+  readonly studyCode: string;
+  readonly chemist: Actor;
+  readonly analyst: Actor;
+}
+
+const standards = demoPanel.filter(({ role }) => role === 'injection internal standard');
+const title = 'Invented demo data';
+
+export async function seedVariant({ studyCode, chemist }: Bench, variant: PlannedVariant): Promise<void> {
+  const { code, name, description } = variant;
+  await createVariant(chemist, studyCode, { code, name, description });
+  await setProcedureSteps(chemist, studyCode, code, {
+    version: 1,
+    steps: variant.steps.map(({ stage, kind, instruction, parameters }) => ({
+      stageKey: stage,
+      kind,
+      instruction,
+      ph: parameters.ph ?? null,
+      solvent: parameters.solvent ?? '',
+      volumeMl: parameters.volumeMl ?? null,
+      minutes: parameters.minutes ?? null,
+      temperatureC: parameters.temperatureC ?? null
+    }))
+  });
+}
+
+/** A calibration set and the spreadsheet of its levels. @returns the set's id */
+export async function seedCalibration(bench: Bench, ids: PanelIds, calibration: 0 | 1): Promise<string> {
+  const { studyCode, chemist, analyst } = bench;
+  const calibratedOn = calibration === 0 ? '2026-10-05' : '2026-10-14';
+  const id = await createCalibrationSet(chemist, studyCode, {
+    name: calibration === 0 ? 'First calibration' : 'Second calibration',
+    instrument: 'Liquid and gas chromatograph, one table',
+    calibratedOn,
+    defaultModel: 'linear',
+    defaultWeighting: '1/x',
+    levels: calibrationNgPerMl.map((concentrationNgPerMl, level) => ({
+      label: levelLabel(calibration, level),
+      concentrationNgPerMl
+    })),
+    factors: {},
+    constants: Object.fromEntries(standards.map(({ name }) => [idOf(ids, name), standardNgPerMl])),
+    concentrations: {}
+  });
+  await upload(analyst, studyCode, {
+    fileName: `calibration-${calibratedOn}.xlsx`,
+    bytes: await writeWorkbook(title, 'wide', simulateCalibration(calibration), demoRecovered),
+    experimentNumber: null
+  });
+  return id;
+}
+
+/** Portions of one kind and batch, in the order planned. */
+function groupsOf(portions: readonly PlannedPortion[]): readonly (readonly PlannedPortion[])[] {
+  const groups = new Map<string, PlannedPortion[]>();
+  for (const portion of portions) {
+    const key = `${portion.kind} ${portion.batch ?? ''}`;
+    groups.set(key, [...(groups.get(key) ?? []), portion]);
+  }
+  return [...groups.values()];
+}
+
+/** What each kind of portion receives: targets where it is spiked, surrogates always. */
+function spikesOf(experiment: PlannedExperiment) {
+  const kinds = [...new Set(experiment.portions.map(({ kind }) => kind))];
+  return kinds.map((kind) => ({
+    kind,
+    targetsNg: kind === 'spiked' || kind === 'solvent standard' ? spikeNg : null,
+    surrogatesNg: surrogateNg,
+    extractionStandardsNg: null,
+    entries: {}
+  }));
+}
+
+/** One experiment: planned, measured, brought in, and its mishap set aside. */
+export async function seedExperiment(
+  bench: Bench,
+  ids: PanelIds,
+  calibrationSetId: string,
+  experiment: PlannedExperiment
+): Promise<void> {
+  const { studyCode, chemist, analyst } = bench;
+  const number = await createExperiment(chemist, studyCode, {
+    stageKey: experiment.stage,
+    title: experiment.title,
+    medium: experiment.medium,
+    matrix: experiment.matrix ?? '',
+    levelLabel: `${spikeNg} ng`,
+    subtract: experiment.subtract,
+    performedOn: experiment.performedOn,
+    analystId: analyst.userId,
+    calibrationSetId,
+    sampleVolumeMl: experiment.sampleVolumeMl,
+    finalVolumeMl: null,
+    spikes: spikesOf(experiment),
+    additions: standards.map(({ name }) => ({
+      panelEntryId: idOf(ids, name),
+      point: experiment.standardsIn,
+      amountNg: experiment.standardsIn === 'extract' ? standardNg : null,
+      concentrationNgPerMl: experiment.standardsIn === 'vial' ? standardNgPerMl : null
+    })),
+    fractions: experiment.fractions.map(({ name, kind, countsAs, passedStages }) => ({
+      id: null,
+      name,
+      kind,
+      countsAs,
+      passedStages: [...passedStages]
+    })),
+    replicates: groupsOf(experiment.portions).map((group) => ({
+      kind: group[0]?.kind ?? 'spiked',
+      count: group.length,
+      batch: group[0]?.batch ?? '',
+      sampleVolumeMl: experiment.sampleVolumeMl,
+      labels: group.map(({ label }) => label).join('\n')
+    })),
+    variantCode: ''
+  });
+  for (const code of experiment.serves) {
+    await chooseStageEvidence(chemist, studyCode, code, {
+      stageKey: experiment.stage,
+      experimentNumber: number,
+      matrix: '',
+      levelLabel: ''
+    });
+  }
+  await upload(analyst, studyCode, {
+    fileName: `run-${experiment.performedOn}-${experiment.key.toLowerCase()}.xlsx`,
+    bytes: await writeWorkbook(title, experiment.layout, simulateExperiment(experiment), demoRecovered),
+    experimentNumber: number
+  });
+  await setMishapsAside(bench, number, experiment);
+}
+
+async function setMishapsAside(bench: Bench, number: number, experiment: PlannedExperiment): Promise<void> {
+  const mishaps = experiment.portions.filter(({ mishap }) => mishap !== null);
+  if (mishaps.length === 0) return;
+  const { replicates } = await getExperiment(bench.analyst, bench.studyCode, number);
+  for (const { label, mishap } of mishaps) {
+    const replicate = replicates.find((candidate) => candidate.label === label);
+    if (!replicate || !mishap) throw new Error(`experiment ${number} has no ${label}`);
+    await exclude(bench.analyst, bench.studyCode, number, {
+      replicateId: replicate.id,
+      fractionId: null,
+      analyteId: null,
+      cause: mishap.cause
+    });
+  }
+}
