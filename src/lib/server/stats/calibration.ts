@@ -81,6 +81,9 @@ export function fitCalibration(
   });
   const df = points.length - p;
   const residualSd = Math.sqrt(fit.weightedResiduals / df);
+  if (!fit.coefficients.every(Number.isFinite) || !Number.isFinite(residualSd)) {
+    throw new StatsError('out-of-range', 'Levels and responses span more than can be computed.');
+  }
   const covariance = fit.unscaledCovariance.map((row) => row.map((value) => value * residualSd * residualSd));
   return {
     model,

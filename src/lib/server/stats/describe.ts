@@ -50,6 +50,8 @@ export function meanInterval(
   if (se === 0) return { lower: estimate, upper: estimate, level };
   if (df === null) return null;
   const half = studentQuantile((1 - level) / 2, df) * se;
+  // With hardly any degrees of freedom the quantile passes the largest double: no interval.
+  if (!Number.isFinite(half)) return null;
   return { lower: estimate - half, upper: estimate + half, level };
 }
 

@@ -21,8 +21,8 @@ type SpecialFunctions = {
   readonly ndtri: (p: number) => number;
 };
 
-/** Degrees of freedom above which t is the normal distribution to the last digit kept. */
-const practicallyInfinite = 1e10;
+/** Degrees of freedom above which t is taken from the normal distribution by expansions that are then exact to rounding. */
+const nearlyNormal = 1e5;
 
 /** cephes throws where a result is smaller than the smallest double; that result is zero. */
 function orZero(compute: () => number): number {
@@ -60,9 +60,12 @@ export function normalQuantile(upper: number): number {
 /** P(|T| > |t|) for Student's t with `df` degrees of freedom, whole or not. */
 export function studentTwoSided(t: number, df: number): number {
   requireDf(df);
-  if (df > practicallyInfinite) return 2 * normalCdf(-Math.abs(t));
   const square = t * t;
-  return beta(df / 2, 0.5, df / (df + square));
+  if (df <= nearlyNormal) return beta(df / 2, 0.5, df / (df + square));
+  // G. W. Hill, algorithm 395, Commun. ACM 13 (1970) 617, to the first correction.
+  const a = df - 0.5;
+  const z = Math.sqrt(a * Math.log1p(square / df));
+  return 2 * normalCdf(-(z + (z ** 3 + 3 * z) / (48 * a * a)));
 }
 
 /** P(T > t) for Student's t. */
@@ -78,7 +81,11 @@ export function studentQuantile(upper: number, df: number): number {
 }
 
 function studentQuantileOf(upper: number, df: number): number {
-  if (df > practicallyInfinite) return normalQuantile(upper);
+  if (df > nearlyNormal) {
+    // Cornish and Fisher's expansion (Abramowitz and Stegun 26.7.5).
+    const z = normalQuantile(upper);
+    return z + (z ** 3 + z) / (4 * df) + (5 * z ** 5 + 16 * z ** 3 + 3 * z) / (96 * df * df);
+  }
   if (upper > 0.5) return -studentQuantileOf(1 - upper, df);
   if (upper === 0.5) return 0;
   const both = 2 * upper;
@@ -111,12 +118,14 @@ export function fisherQuantile(upper: number, df1: number, df2: number): number 
 /** P(X <= x) for chi-square. */
 export function chiSquareCdf(x: number, df: number): number {
   requireDf(df);
+  if (x === Infinity) return 1;
   return x <= 0 ? 0 : orZero(() => cephes.igam(df / 2, x / 2));
 }
 
 /** P(X > x) for chi-square. */
 export function chiSquareUpper(x: number, df: number): number {
   requireDf(df);
+  if (x === Infinity) return 0;
   return x <= 0 ? 1 : orZero(() => cephes.igamc(df / 2, x / 2));
 }
 

@@ -8,6 +8,9 @@ export type Moments = {
   readonly max: number;
 };
 
+/** Below this the squares of deviations have lost digits to the smallest double. */
+const smallestSum = 1e-270;
+
 /**
  * Mean and SD in two passes: the second sums deviations from the first mean, corrects the mean by their rest, and
  * takes the square of that rest off the sum of squares (Chan, Golub and LeVeque, Am. Stat. 37 (1983) 242).
@@ -44,6 +47,30 @@ export function moments(
     rest += deviation;
     squares += deviation * deviation;
   }
+  if (squares < smallestSum) return spreadOut(values, start, end, stride, count, first, min, max);
   const variance = Math.max(0, squares - (rest * rest) / count) / (count - 1);
   return { n: count, mean: first + rest / count, variance, sd: Math.sqrt(variance), min, max };
+}
+
+/** Moments of values so close together that squares of their deviations vanish: in units of their range. */
+function spreadOut(
+  values: ArrayLike<number>,
+  start: number,
+  end: number,
+  stride: number,
+  n: number,
+  first: number,
+  min: number,
+  max: number
+): Moments {
+  const range = max - min;
+  let rest = 0;
+  let squares = 0;
+  for (let i = start; i < end; i += stride) {
+    const deviation = ((values[i] as number) - first) / range;
+    rest += deviation;
+    squares += deviation * deviation;
+  }
+  const sd = range * Math.sqrt(Math.max(0, squares - (rest * rest) / n) / (n - 1));
+  return { n, mean: first + (range * rest) / n, variance: sd * sd, sd, min, max };
 }

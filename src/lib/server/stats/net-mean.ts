@@ -49,6 +49,9 @@ export function takeApart(sample: Sample, what = 'Sample'): NetMean {
       ? values
       : values.map((value, i) => (value - (subtracted ? subtracted.perValue(i) : 0)) * factor);
   const net = moments(netValues);
+  if (!Number.isFinite(net.mean) || net.variance === Infinity) {
+    throw new StatsError('out-of-range', `${what}: the net values are beyond what can be computed.`);
+  }
 
   if (net.variance === null || (subtracted && subtracted.variance === null)) {
     return { net, mean: net.mean, components: null };

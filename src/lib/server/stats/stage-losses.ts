@@ -101,7 +101,8 @@ function regainOf(
   reference: NetMean | null
 ): number | null {
   if (!allPositive(own, before, upstream, reference)) return null;
-  return ((100 * upstream.mean) / meanOf(reference)) * (meanOf(before) / own.mean - 1);
+  const points = ((100 * upstream.mean) / meanOf(reference)) * (meanOf(before) / own.mean - 1);
+  return Number.isFinite(points) ? points : null;
 }
 
 function differenceP(own: NetMean, before: NetMean | null): number | null {
@@ -114,7 +115,7 @@ function twoSidedP(difference: number, terms: readonly VarianceTerm[] | null): n
   if (terms === null) return null;
   const se = Math.sqrt(totalVariance(terms));
   const df = welchSatterthwaite(terms);
-  return se > 0 && df !== null ? studentTwoSided(difference / se, df) : null;
+  return se > 0 && Number.isFinite(se) && df !== null ? studentTwoSided(difference / se, df) : null;
 }
 
 function meanOf(mean: NetMean | null): number {

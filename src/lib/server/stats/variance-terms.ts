@@ -1,6 +1,6 @@
 import { meanInterval } from './describe';
 import { studentQuantile } from './distributions';
-import type { Estimate } from './types';
+import { noEstimate, type Estimate } from './types';
 
 /** One source of variance of a figure and the degrees of freedom it is known with. */
 export type VarianceTerm = { readonly variance: number; readonly df: number };
@@ -28,29 +28,36 @@ export function welchSatterthwaite(terms: readonly VarianceTerm[]): number | nul
   return 1 / denominator;
 }
 
-/** Estimate whose interval is symmetric: estimate -+ t se. `terms` null means the variance is unknown. */
+/**
+ * Estimate whose interval is symmetric: estimate -+ t se. `terms` null means the variance is unknown; one beyond the largest
+ * double counts as unknown too.
+ */
 export function linearEstimate(
   estimate: number,
   terms: readonly VarianceTerm[] | null,
   level: number
 ): Estimate {
-  if (terms === null) return { estimate, se: null, df: null, ci: null };
-  const se = Math.sqrt(totalVariance(terms));
+  if (!Number.isFinite(estimate)) return noEstimate;
+  const variance = terms === null ? null : totalVariance(terms);
+  if (terms === null || !Number.isFinite(variance)) return { estimate, se: null, df: null, ci: null };
+  const se = Math.sqrt(variance!);
   const df = welchSatterthwaite(terms);
   return { estimate, se, df, ci: meanInterval(estimate, se, df, level) };
 }
 
 /**
  * Estimate whose interval is symmetric on the log scale: exp(log estimate -+ t se). `terms` are variances of the
- * logarithm, and `se` is that of the logarithm. The estimate has to be above zero.
+ * logarithm, and `se` is that of the logarithm. An estimate that is not above zero, or beyond the largest double, does not exist.
  */
 export function logEstimate(
   estimate: number,
   terms: readonly VarianceTerm[] | null,
   level: number
 ): Estimate {
-  if (terms === null) return { estimate, se: null, df: null, ci: null };
-  const se = Math.sqrt(totalVariance(terms));
+  if (!(estimate > 0 && Number.isFinite(estimate))) return noEstimate;
+  const variance = terms === null ? null : totalVariance(terms);
+  if (terms === null || !Number.isFinite(variance)) return { estimate, se: null, df: null, ci: null };
+  const se = Math.sqrt(variance!);
   const df = welchSatterthwaite(terms);
   if (se === 0) return { estimate, se, df, ci: { lower: estimate, upper: estimate, level } };
   if (df === null) return { estimate, se, df, ci: null };
