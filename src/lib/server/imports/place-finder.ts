@@ -84,9 +84,10 @@ export class PlaceFinder {
   #find(label: string, experiment: ExperimentExpectation | null): FoundPlace {
     const first = experiment ?? this.#preferred;
     const levels = experiment ? [] : candidates(this.#levels, label);
-    const own = [...(first ? this.#labelled(first, label) : []), ...levels];
-    const all =
-      own.length > 0 || experiment ? own : this.#experiments.flatMap((each) => this.#labelled(each, label));
+    const anywhere = (): readonly Labelled[] =>
+      this.#experiments.flatMap((each) => this.#labelled(each, label));
+    const own = [...(first ? this.#labelled(first, label) : anywhere()), ...levels];
+    const all = own.length > 0 || experiment ? own : anywhere();
     const [one] = all;
     if (one === undefined) return { kind: 'none', nearest: this.#nearest(label, first) };
     return all.length === 1 ? one.place : { kind: 'many', places: all.map(({ described }) => described) };

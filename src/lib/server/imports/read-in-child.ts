@@ -1,6 +1,6 @@
 import { fork } from 'node:child_process';
 import type { ChildProcess } from 'node:child_process';
-import { readFileSync } from 'node:fs';
+import { existsSync, readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
@@ -121,16 +121,24 @@ function explainEnd(code: number | null, signal: NodeJS.Signals | null): Refusal
 
 function startChild(memoryMb: number): ChildProcess {
   const root = projectRoot();
-  const tsx = pathToFileURL(createRequire(join(root, 'package.json')).resolve('tsx')).href;
-  return fork(join(root, 'src/lib/server/imports/child.ts'), [], {
+  const { file, loader } = entry(root);
+  return fork(file, [], {
     // Outside the project no compiler settings are looked for; the child's imports are relative.
     cwd: tmpdir(),
     // No configuration and no secrets: the child reads bytes and nothing else.
     env: { PATH: process.env.PATH, TMPDIR: process.env.TMPDIR, NODE_ENV: process.env.NODE_ENV },
-    execArgv: [`--max-old-space-size=${memoryMb}`, '--import', tsx],
+    execArgv: [`--max-old-space-size=${memoryMb}`, ...loader],
     serialization: 'advanced',
     stdio: ['ignore', 'ignore', 'ignore', 'ipc']
   });
+}
+
+/** The built child beside the built server, which starts sooner; in development, tests and scripts the source. */
+function entry(root: string): { readonly file: string; readonly loader: readonly string[] } {
+  const built = join(root, 'build/processes/read-file.js');
+  if (process.env.HEADWATER_BUILT === 'yes' && existsSync(built)) return { file: built, loader: [] };
+  const tsx = pathToFileURL(createRequire(join(root, 'package.json')).resolve('tsx')).href;
+  return { file: join(root, 'src/lib/server/imports/read-file.process.ts'), loader: ['--import', tsx] };
 }
 
 /** Buffers do not count towards the heap, so the whole process is looked at as well; 0 where the system does not tell. */

@@ -1,0 +1,47 @@
+import type { CellReader } from './merged-cells';
+import { textOf } from './sheet-mapping';
+import type { SheetMapping } from './sheet-mapping';
+
+/** @returns the panel entry that a row of the long layout names, or null; the problem is reported */
+export function analyteOf(
+  { sheet, plan, analytes, problems }: SheetMapping,
+  merged: CellReader,
+  row: number
+): string | null {
+  const column = plan.analyte ?? plan.cas ?? 0;
+  const cells = [plan.analyte, plan.cas].map((each) => (each === null ? null : merged(row, each)));
+  const [name, cas] = cells.map(textOf);
+  const text = name || cas || '';
+  const at = { sheet: sheet.name, row, column, expected: 'a name, synonym or CAS number of the panel' };
+  if (text === '') {
+    problems.error({
+      code: 'missing analyte',
+      ...at,
+      found: 'an empty cell',
+      what: 'This row has no analyte.',
+      fix: 'Write the name of the analyte, or remove the row.'
+    });
+    return null;
+  }
+  const match = analytes.match(text);
+  if (match.kind === 'one') return match.value;
+  const byCas = cas && cas !== text ? analytes.match(cas) : null;
+  if (byCas?.kind === 'one') return byCas.value;
+  const nearest = match.kind === 'none' ? analytes.nearest(text) : null;
+  const isDate = cells.some((cell) => cell?.kind === 'date');
+  problems.oncePer(text, 'error', {
+    code: match.kind === 'many' ? 'ambiguous analyte' : 'unknown analyte',
+    ...at,
+    found: `“${text}”`,
+    what:
+      match.kind === 'many'
+        ? `“${text}” can be more than one analyte of the panel.`
+        : isDate
+          ? `This cell shows the date ${text} where an analyte belongs; some CAS numbers are turned into dates by spreadsheet programs.`
+          : `“${text}” is not on the panel.${nearest ? ` Is ${nearest} meant?` : ''}`,
+    fix: isDate
+      ? 'Format the cell as text and type the number again.'
+      : 'Correct the name, add it to the panel, or remove the rows.'
+  });
+  return null;
+}

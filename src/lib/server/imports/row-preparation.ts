@@ -1,0 +1,124 @@
+import type { NumberColumn } from './column-plan';
+import type { CellReader } from './merged-cells';
+import { readNumberCell } from './read-cell';
+import { cellAt, isoToSerial, serialToIso } from './sheet';
+import { textOf } from './sheet-mapping';
+import type { SheetMapping } from './sheet-mapping';
+import { convert } from './units';
+
+/** @returns null where the number given is none; the problem is reported */
+export function injectionOf({ sheet, plan, decimalOf, problems }: SheetMapping, row: number): number | null {
+  if (plan.injection === null) return 1;
+  const column = plan.injection;
+  const cell = cellAt(sheet, row, column);
+  const expected = 'an injection number (1, 2, 3 …)';
+  const context = { sheet: sheet.name, row, column, expected, decimal: decimalOf(column) };
+  const number = readNumberCell(cell, context, problems);
+  if (number.state === 'missing') return 1;
+  if (number.state === 'unusable') return null;
+  if (
+    number.state === 'value' &&
+    Number.isInteger(number.value) &&
+    number.value >= 1 &&
+    number.value <= 32_767
+  )
+    return number.value;
+  problems.error({
+    code: 'injection number',
+    sheet: sheet.name,
+    row,
+    column,
+    found: `“${textOf(cell)}”`,
+    expected,
+    what: `“${textOf(cell)}” is no injection number.`,
+    fix: 'Number the injections of one vial 1, 2, 3, or leave the cell empty if there is one.'
+  });
+  return null;
+}
+
+export interface Preparation {
+  readonly finalVolumeMl: number | null;
+  readonly dilution: number | null;
+  readonly aliquotShare: number | null;
+  readonly acquiredAt: string | null;
+}
+
+export function preparationOf(mapping: SheetMapping, merged: CellReader, row: number): Preparation {
+  const { plan } = mapping;
+  return {
+    finalVolumeMl: bounded(
+      mapping,
+      merged,
+      row,
+      plan.finalVolume,
+      'a final volume above zero',
+      'not positive',
+      (v) => v > 0
+    ),
+    dilution: bounded(
+      mapping,
+      merged,
+      row,
+      plan.dilution,
+      'a dilution of 1 or more',
+      'dilution below one',
+      (v) => v >= 1
+    ),
+    aliquotShare: bounded(
+      mapping,
+      merged,
+      row,
+      plan.aliquotShare,
+      'a share above 0 and up to 1',
+      'share outside range',
+      (v) => v > 0 && v <= 1
+    ),
+    acquiredAt: acquiredAtOf(mapping, row)
+  };
+}
+
+function bounded(
+  { sheet, decimalOf, problems }: SheetMapping,
+  merged: CellReader,
+  row: number,
+  from: NumberColumn | null,
+  expected: string,
+  code: 'not positive' | 'dilution below one' | 'share outside range',
+  isWithin: (value: number) => boolean
+): number | null {
+  if (!from) return null;
+  const cell = merged(row, from.column);
+  const at = { sheet: sheet.name, row, column: from.column, expected };
+  const number = readNumberCell(cell, { ...at, decimal: decimalOf(from.column) }, problems);
+  if (number.state === 'missing' || number.state === 'unusable') return null;
+  const value = number.state === 'value' ? convert(number.value, from.factor) : null;
+  if (value !== null && isWithin(value)) return value;
+  problems.error({
+    code: value === null ? 'not a number' : code,
+    ...at,
+    found: `“${textOf(cell)}”`,
+    what: `“${textOf(cell)}” stands where ${expected} belongs.`,
+    fix: 'Correct the cell, or leave it empty.'
+  });
+  return null;
+}
+
+function acquiredAtOf({ sheet, plan, problems }: SheetMapping, row: number): string | null {
+  if (plan.acquiredAt === null) return null;
+  const cell = cellAt(sheet, row, plan.acquiredAt);
+  if (!cell || textOf(cell) === '') return null;
+  if (cell.kind === 'date') return cell.raw;
+  const serial = cell.kind === 'text' ? isoToSerial(cell.value.trim()) : null;
+  if (serial !== null) return serialToIso(serial);
+  problems.oncePer('column', 'question', {
+    code: 'date not understood',
+    sheet: sheet.name,
+    row,
+    column: plan.acquiredAt,
+    found: `“${textOf(cell)}”`,
+    expected: 'a date cell, or a text such as 2026-03-04 16:20',
+    what: `“${textOf(cell)}” is not read as a date, since day and month could be swapped. Store these rows without it?`,
+    fix: 'Confirm to leave the time out, or write it as year-month-day.'
+  });
+  return null;
+}

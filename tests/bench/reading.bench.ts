@@ -1,0 +1,116 @@
+import { createInflateRaw } from 'node:zlib';
+import { SaxesParser } from 'saxes';
+import yauzl from 'yauzl';
+import { readInChild } from '../../src/lib/server/imports/read-in-child';
+import { readWorkbook } from '../../src/lib/server/imports/read-workbook';
+import { lyingSize, oneHugeCell, sharedStringFlood } from '../fixtures/workbooks/bombs';
+import { streamed } from '../fixtures/workbooks/exceljs-files';
+import { medianMs } from './benchmark';
+import type { Benchmark } from './benchmark';
+
+/** A table as instruments export it: eight columns, of which four are texts that repeat. */
+function measurements(rows: number): Promise<Buffer> {
+  let seed = 7;
+  const random = (): number => (seed = (seed * 16_807) % 2_147_483_647) / 2_147_483_647;
+  return streamed(
+    {
+      Areas: [
+        ['Sample', 'Fraction', 'Analyte', 'Area', 'IS area', 'Final volume (mL)', 'Dilution', 'Injection'],
+        ...Array.from({ length: rows }, (_, row) => [
+          `S${row % 60}`,
+          `Elution ${row % 5}`,
+          `Analyte ${row % 150}`,
+          random() * 1e6,
+          random() * 1e5,
+          0.5,
+          1,
+          '1'
+        ])
+      ]
+    },
+    { useSharedStrings: true }
+  );
+}
+
+/** The floor: the sheet inflated by zlib and scanned by the SAX parser, with nothing done about what it finds. */
+async function inflateAndScan(bytes: Buffer): Promise<number> {
+  const zip = await yauzl.fromBufferPromise(bytes, { lazyEntries: true });
+  let events = 0;
+  for await (const entry of zip.eachEntry()) {
+    if (entry.fileName !== 'xl/worksheets/sheet1.xml') continue;
+    const parser = new SaxesParser({ position: false });
+    parser.on('opentag', () => void events++);
+    parser.on('text', () => void events++);
+    const packed = await zip.openReadStreamPromise(entry, { decodeFileData: false });
+    const decoder = new TextDecoder();
+    for await (const piece of packed.pipe(createInflateRaw({ chunkSize: 64 * 1024 }))) {
+      parser.write(decoder.decode(piece as Buffer, { stream: true }));
+    }
+    parser.close();
+  }
+  return events;
+}
+
+function reading(rows: number, ratio: number, runs: number): Benchmark {
+  return {
+    name: `read a workbook of ${rows} rows × 8, guards included`,
+    goal: { ratio, is: 'at most' },
+    async run({ note }) {
+      const bytes = await measurements(rows);
+      const floor = await medianMs(() => inflateAndScan(bytes), { runs, warmUps: 1 });
+      const before = process.memoryUsage();
+      const workbook = await readWorkbook(bytes);
+      const after = process.memoryUsage();
+      const growth = (after.heapUsed + after.external - before.heapUsed - before.external) / 1e6;
+      note(
+        `${workbook.sheets[0]?.rowCount} rows held and read: memory grew by ${growth.toFixed(0)} MB (goal: under 100)`
+      );
+      const figure = await medianMs(() => readWorkbook(bytes), { runs, warmUps: 1 });
+      return { figure, floor, unit: 'ms' };
+    }
+  };
+}
+
+/** The goal is a second for each file, from the bytes to the sentence, with the start of the process in it. */
+function refusal(name: string, make: () => Buffer): Benchmark {
+  return {
+    name: `refuse ${name}, in a process of its own`,
+    goal: { ratio: 1, is: 'at most' },
+    async run() {
+      const bytes = make();
+      const refuse = (): Promise<unknown> => readInChild(bytes).catch((reason: unknown) => reason);
+      return { figure: await medianMs(refuse, { runs: 3, warmUps: 1 }), floor: 1000, unit: 'ms' };
+    }
+  };
+}
+
+/** How long this process is kept from answering, at worst, while a child reads for it. */
+const answering: Benchmark = {
+  name: 'longest wait of other work while 250000 rows are read',
+  goal: { ratio: 1, is: 'at most' },
+  async run() {
+    const bytes = await measurements(250_000);
+    let last = performance.now();
+    let longest = 0;
+    const beat = setInterval(() => {
+      const now = performance.now();
+      longest = Math.max(longest, now - last - 10);
+      last = now;
+    }, 10);
+    try {
+      await readInChild(bytes);
+    } finally {
+      clearInterval(beat);
+    }
+    return { figure: longest, floor: 150, unit: 'ms' };
+  }
+};
+
+export const benchmarks: readonly Benchmark[] = [
+  reading(9_000, 2.5, 7),
+  reading(250_000, 2, 3),
+  answering,
+  refusal('a cell of 100 MB', oneHugeCell),
+  refusal('5.9 million shared texts', sharedStringFlood),
+  refusal('a part that lies about its size', lyingSize)
+];

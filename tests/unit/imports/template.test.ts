@@ -1,0 +1,228 @@
+import ExcelJS from 'exceljs';
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { mapRecords } from '../../../src/lib/server/imports/map-records';
+import { readWorkbook } from '../../../src/lib/server/imports/read-workbook';
+import { cellAt } from '../../../src/lib/server/imports/sheet';
+import type { Expectation, MappedImport, MappedRecord } from '../../../src/lib/server/imports/types';
+import { writeTemplate } from '../../../src/lib/server/imports/write-template';
+import {
+  experimentExpectation,
+  expectation,
+  panelExpectation,
+  replicateExpectation
+} from '../../factories/expectation';
+
+type Layout = 'long' | 'wide';
+
+const standard = panelExpectation('Testol-d5', { role: 'injection internal standard' });
+
+function offered(over: Partial<Expectation> = {}): Expectation {
+  return expectation({
+    experiments: [
+      experimentExpectation({
+        replicates: [
+          ...['S1', 'S2'].map((label) => replicateExpectation(label)),
+          replicateExpectation('STD', { kind: 'solvent standard', takesFraction: false })
+        ]
+      }),
+      experimentExpectation({ id: 'experiment 2', title: 'Drying' })
+    ],
+    panel: [
+      panelExpectation('Caffeine', { internalStandard: { panelEntryId: standard.id, point: 'vial' } }),
+      panelExpectation('2,4-Testol area', {}),
+      panelExpectation('Testol IS'),
+      standard
+    ],
+    ...over
+  });
+}
+
+/** Fills the named columns of the template's rows, as a person would, and saves it. */
+async function fill(
+  bytes: Buffer,
+  cellOf: (header: string, row: number) => ExcelJS.CellValue | undefined
+): Promise<Buffer> {
+  const workbook = new ExcelJS.Workbook();
+  await workbook.xlsx.load(bytes as unknown as ArrayBuffer);
+  const sheet = workbook.getWorksheet('Results');
+  if (!sheet) throw new Error('no sheet Results');
+  const headerRow = 3;
+  const headers = sheet.getRow(headerRow).values as string[];
+  for (let row = headerRow + 1; row <= sheet.rowCount; row++) {
+    headers.forEach((header, column) => {
+      const value = cellOf(header, row - headerRow - 1);
+      if (value !== undefined) sheet.getRow(row).getCell(column).value = value;
+    });
+  }
+  return Buffer.from(await workbook.xlsx.writeBuffer());
+}
+
+async function mapped(bytes: Buffer, over: Partial<Expectation> = {}): Promise<MappedImport> {
+  return mapRecords(await readWorkbook(bytes), offered(over));
+}
+
+const key = ({ place, panelEntryId, injection }: MappedRecord): string =>
+  place.kind === 'extract'
+    ? `${place.replicateId}|${place.fractionId}|${panelEntryId}|${injection}`
+    : 'level';
+
+describe('the template', () => {
+  it.each<Layout>(['long', 'wide'])(
+    'in the %s layout is prefilled, recognised, and empty cells are missing',
+    async (layout) => {
+      const result = await mapped(await writeTemplate(offered(), 'experiment 1', layout));
+      expect(result.problems).toEqual([]);
+      expect(result.reading.template).toEqual({ experimentId: 'experiment 1', layout });
+      expect(result.reading.sheets).toMatchObject([
+        { sheet: 'Results', layout, headerRow: 2, basis: 'area' }
+      ]);
+      // Two replicates of two fractions and a standard; the injection standard has no row of its own in the long layout.
+      expect(result.records).toHaveLength(5 * (layout === 'long' ? 3 : 4));
+      expect(new Set(result.records.map(key)).size).toBe(result.records.length);
+      expect(result.records.every(({ state, rawText }) => state === 'missing' && rawText === '')).toBe(true);
+    }
+  );
+
+  it.each<Layout>(['long', 'wide'])(
+    'in the %s layout gives back every value to the last bit',
+    async (layout) => {
+      const bytes = await writeTemplate(offered(), 'experiment 1', layout);
+      const area = fc.double({ min: 0, noNaN: true, noDefaultInfinity: true }).map((value) => value + 0);
+      const positive = fc.double({ min: Number.MIN_VALUE, max: 1e300, noNaN: true });
+      const row = fc.record({
+        areas: fc.array(area, { minLength: 4, maxLength: 4 }),
+        internal: positive,
+        volume: positive,
+        dilution: fc.double({ min: 1, max: 1e12, noNaN: true }),
+        share: fc.double({ min: Number.MIN_VALUE, max: 1, noNaN: true }),
+        injection: fc.integer({ min: 1, max: 32_767 })
+      });
+      await fc.assert(
+        fc.asyncProperty(fc.array(row, { minLength: 15, maxLength: 15 }), async (rows) => {
+          // Volume and share belong to the extract, dilution to the injection: in the long layout three rows share them.
+          const ofExtract = (at: number) => rows[layout === 'long' ? at - (at % 3) : at];
+          const filled = await fill(bytes, (header, at) => {
+            const values = rows[at];
+            const extract = ofExtract(at);
+            if (!values || !extract) return undefined;
+            switch (header) {
+              case 'Area':
+              case 'Caffeine area':
+                return values.areas[0];
+              case '2,4-Testol area area':
+                return values.areas[1];
+              case 'Testol IS area':
+                return values.areas[2];
+              case 'Testol-d5 area':
+              case 'Internal standard area':
+                return values.internal;
+              case 'Final volume (mL)':
+                return extract.volume;
+              case 'Dilution':
+                return extract.dilution;
+              case 'Aliquot share':
+                return extract.share;
+              case 'Injection':
+                return extract.injection;
+              default:
+                return undefined;
+            }
+          });
+          const result = await mapped(filled);
+          expect(result.problems.filter(({ severity }) => severity !== 'note')).toEqual([]);
+          for (const record of result.records) {
+            const at = record.row - 3;
+            const values = rows[at];
+            const extract = ofExtract(at);
+            const analyte = ['entry Caffeine', 'entry 2,4-Testol area', 'entry Testol IS'].indexOf(
+              record.panelEntryId
+            );
+            const wanted =
+              layout === 'long' ? values?.areas[0] : analyte < 0 ? values?.internal : values?.areas[analyte];
+            expect(record.reported.value).toBe(wanted);
+            if (layout === 'long' || analyte === 0)
+              expect(record.reported.internalArea).toBe(values?.internal);
+            expect(record.finalVolumeMl).toBe(extract?.volume);
+            expect(record.dilution).toBe(extract?.dilution);
+            expect(record.aliquotShare).toBe(extract?.share);
+            expect(record.injection).toBe(extract?.injection);
+          }
+        }),
+        { numRuns: 12 }
+      );
+    },
+    60_000
+  );
+
+  it('keeps ND, limits and empty cells apart when filled', async () => {
+    const fillings = ['ND', '<0,5', '>max', null, 'n/a'];
+    const bytes = await fill(await writeTemplate(offered(), 'experiment 1', 'wide'), (header, at) => {
+      if (header === '2,4-Testol area area') return fillings[at];
+      return header === 'Final volume (mL)' ? 1 : undefined;
+    });
+    const result = await mapped(bytes);
+    expect(result.problems).toEqual([]);
+    expect(
+      result.records
+        .filter(({ panelEntryId }) => panelEntryId === 'entry 2,4-Testol area')
+        .map(({ state, limit }) => [state, limit])
+    ).toEqual([
+      ['not detected', null],
+      ['below', 0.5],
+      ['above', null],
+      ['missing', null],
+      ['missing', null]
+    ]);
+  });
+
+  it('of another experiment is refused as a whole', async () => {
+    const bytes = await writeTemplate(offered(), 'experiment 2', 'long');
+    const result = await mapped(bytes, { experimentId: 'experiment 1' });
+    expect(result.records).toEqual([]);
+    expect(result.problems).toMatchObject([
+      { severity: 'error', code: 'other experiment', sheet: null, cell: null }
+    ]);
+    expect(result.problems[0]?.message).toMatch(/made for Drying, and was brought to Extraction at pH 7/);
+    const elsewhere = await mapped(bytes, { experiments: [experimentExpectation()] });
+    expect(elsewhere.problems).toMatchObject([{ code: 'other experiment' }]);
+    expect((await mapped(bytes)).reading.template?.experimentId).toBe('experiment 2');
+  });
+
+  it('takes labels from its own experiment only', async () => {
+    const bytes = await writeTemplate(offered(), 'experiment 2', 'wide');
+    const result = await mapped(bytes);
+    expect(result.problems).toEqual([]);
+    expect(
+      new Set(result.records.map(({ place }) => place.kind === 'extract' && place.experimentId))
+    ).toEqual(new Set(['experiment 2']));
+  });
+
+  it('says on itself what it is, what cells mean, and that demo data are invented', async () => {
+    const workbook = await readWorkbook(
+      await writeTemplate(offered(), 'experiment 1', 'long', { demoLabel: 'invented demo data' })
+    );
+    const [results, readMe, mark] = workbook.sheets;
+    if (!results || !readMe || !mark) throw new Error('a sheet is missing');
+    expect(cellAt(results, 0, 0)?.raw).toBe('Extraction at pH 7 (invented demo data)');
+    const texts = readMe.texts.join('\n');
+    expect(texts).toContain('never taken for not detected');
+    expect(texts).toContain('experiment 1');
+    expect(readMe.hidden).toBe(false);
+    expect(mark.hidden).toBe(true);
+  });
+
+  it('guards the columns of the preparation', async () => {
+    const workbook = new ExcelJS.Workbook();
+    await workbook.xlsx.load(
+      (await writeTemplate(offered(), 'experiment 1', 'long')) as unknown as ArrayBuffer
+    );
+    const sheet = workbook.getWorksheet('Results');
+    expect(sheet?.getCell('G4').dataValidation).toMatchObject({ type: 'decimal', operator: 'greaterThan' });
+    expect(sheet?.getCell('J4').dataValidation).toMatchObject({ type: 'whole' });
+  });
+
+  it('needs an experiment that is offered', async () => {
+    await expect(writeTemplate(offered(), 'experiment 9', 'long')).rejects.toThrow(RangeError);
+  });
+});
