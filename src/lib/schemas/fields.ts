@@ -37,7 +37,7 @@ function boundsProblem(value: number, { above, least, most }: Bounds): string | 
 
 /** A number or what was typed for one, through `read`; null where nothing was typed. */
 function typed(read: (text: string) => NumberReading, bounds: Bounds) {
-  return z.unknown().transform((value, context): number | null => {
+  return z.unknown().optional().transform((value, context): number | null => {
     if (blank(value) || (typeof value === 'string' && value.trim() === '')) return null;
     const reading: NumberReading =
       typeof value === 'number' && Number.isFinite(value)

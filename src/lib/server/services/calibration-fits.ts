@@ -121,6 +121,8 @@ export async function fitViewsOf(
     lowest: ruleOf(rules, 'calibration error at the lowest level')?.high ?? null
   };
   const inSet = (id: string): boolean => set.levels.some(({ concentrations }) => concentrations.has(id));
+  const varies = (id: string): boolean =>
+    new Set(set.levels.map((level) => level.concentrations.get(id))).size > 1;
   const held = data.panel.filter(({ id }) => inSet(id));
   const perEntry = held.map(({ id }) => [
     id,
@@ -134,9 +136,9 @@ export async function fitViewsOf(
   return {
     levelList: set.levels.map(({ id, number, label }) => ({ id, number, label })),
     concentrations: Object.fromEntries(perEntry) as CalibrationSetView['concentrations'],
-    // An internal standard is the same in every level: no line is drawn through it.
+    // An internal standard is the same in every level: no line can be drawn through it.
     fits: held
-      .filter(({ role }) => role !== 'injection internal standard')
+      .filter(({ id, role }) => role === 'target' || role === 'surrogate' || varies(id))
       .map((entry) => fitView(set, entry, nameOf, choices, limits)),
     missing: data.panel.filter(({ id }) => !inSet(id)).map(({ name }) => name),
     errorLimit: limits.every,
