@@ -1,4 +1,4 @@
-import { mkdtempSync } from 'node:fs';
+import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { defineConfig } from '@playwright/test';
@@ -9,7 +9,9 @@ import { chromium } from './tests/browser.ts';
  * and a port in E2E_PORT; alone (npx playwright test) it makes everything in a folder of its own.
  */
 const port = process.env.E2E_PORT ?? '4173';
-const dataDir = process.env.E2E_DATA_DIR ?? mkdtempSync(join(tmpdir(), 'headwater-e2e-'));
+const given = process.env.E2E_DATA_DIR;
+const dataDir = given ?? mkdtempSync(join(tmpdir(), 'headwater-e2e-'));
+if (given === undefined) process.once('exit', () => rmSync(dataDir, { recursive: true, force: true }));
 // Workers of the runner read this file again and must not make another folder.
 process.env.E2E_DATA_DIR = dataDir;
 
