@@ -1,0 +1,117 @@
+import type {
+  LookAt,
+  SummaryExclusion,
+  SummaryFindings,
+  SummaryImport,
+  SummaryView
+} from '../../../views/summary';
+
+/** The four things a reviewer looks at first. */
+export function lookAtOf(
+  findings: readonly SummaryFindings[],
+  exclusions: readonly SummaryExclusion[],
+  imports: readonly SummaryImport[],
+  stages: SummaryView['stages'],
+  missingEvidence: readonly string[]
+): LookAt[] {
+  return [
+    { title: 'Deviations', items: deviations(findings), none: 'No figure is outside its criteria.' },
+    {
+      title: 'Exclusions',
+      items: exclusions
+        .filter((item) => item.lifted === null)
+        .map((item) => ({
+          text: `Experiment ${item.experiment}, ${item.what}: ${item.cause} (${item.by}, ${item.at.slice(0, 10)})`,
+          href: item.href
+        })),
+      none: 'Nothing is set aside.'
+    },
+    {
+      title: 'Gaps',
+      items: gaps(findings, stages, missingEvidence),
+      none: 'Every stage has its experiment, every portion is complete.'
+    },
+    {
+      title: 'Late changes',
+      items: lateChanges(exclusions, imports),
+      none: 'Nothing was withdrawn, superseded or lifted.'
+    }
+  ];
+}
+
+function deviations(findings: readonly SummaryFindings[]): LookAt['items'] {
+  return findings.flatMap(({ heading, results, portions }) => [
+    ...results.rows
+      .filter((row) => row.verdict === 'outside')
+      .map((row) => ({
+        text: `${heading}: ${row.name} is outside (${row.reasons.join('; ')})`,
+        href: row.href
+      })),
+    ...portions.surrogates.flatMap((row) => {
+      const outside = portions.portions.filter((_, index) => row.cells[index]?.holds === false);
+      return outside.length === 0
+        ? []
+        : [
+            {
+              text: `${heading}: surrogate ${row.name} is outside in ${outside.map((portion) => portion.label).join(', ')}`,
+              href: row.href
+            }
+          ];
+    })
+  ]);
+}
+
+function gaps(
+  findings: readonly SummaryFindings[],
+  stages: SummaryView['stages'],
+  missingEvidence: readonly string[]
+): LookAt['items'] {
+  const empty = stages
+    .filter((stage) => stage.experiments.length === 0)
+    .map((stage) => `${stage.name} has no experiment.`);
+  const unjudged = findings.flatMap(({ heading, results }) =>
+    results.rows
+      .filter((row) => row.verdict === null || row.verdict === 'too few')
+      .map((row) => ({
+        text: `${heading}: ${row.name}, ${row.reasons.join('; ') || 'no verdict'}`,
+        href: row.href
+      }))
+  );
+  const incomplete = findings.flatMap(({ heading, balance }) =>
+    balance.rows
+      .filter((row) => row.incomplete !== null)
+      .map((row) => ({ text: `${heading}: ${row.name}, ${row.incomplete ?? ''}`, href: row.href }))
+  );
+  return [
+    ...[...empty, ...missingEvidence].map((text) => ({ text, href: null })),
+    ...unjudged,
+    ...grouped(incomplete)
+  ];
+}
+
+/** One line for a portion that many analytes lack: thirty lines about one vial hide the rest. */
+function grouped(items: readonly { readonly text: string; readonly href: string | null }[]): LookAt['items'] {
+  const few = 6;
+  if (items.length <= few) return items;
+  return [...items.slice(0, few), { text: `and ${items.length - few} more incomplete balances`, href: null }];
+}
+
+function lateChanges(
+  exclusions: readonly SummaryExclusion[],
+  imports: readonly SummaryImport[]
+): LookAt['items'] {
+  return [
+    ...imports
+      .filter((item) => item.state !== 'stored')
+      .map((item) => ({
+        text: `${item.fileName} was ${item.state}: ${item.endReason ?? ''}`,
+        href: item.href
+      })),
+    ...exclusions
+      .filter((item) => item.lifted !== null)
+      .map((item) => ({
+        text: `Experiment ${item.experiment}, ${item.what}: ${item.lifted ?? ''}`,
+        href: item.href
+      }))
+  ];
+}

@@ -1,0 +1,114 @@
+import { createHash } from 'node:crypto';
+import { cautions } from '../../../domain/cautions';
+import type { SummaryFindings, SummaryView } from '../../../views/summary';
+import { canonicalText } from '../../db/audit-chain';
+import type { Link } from '../results/addresses';
+import { ruleView } from '../results/figure-parts';
+import { massBalanceOf } from '../results/mass-balance-view';
+import { portionsOf } from '../results/portions-view';
+import { resultsTableOf } from '../results/results-table-view';
+import { stageFindingsOf } from '../results/stage-findings';
+import type { StudyFigures } from '../results/study-figures';
+import { subjectOf, subjectView } from '../results/subject';
+import { walkBackOf } from '../results/walk-back-view';
+import { lookAtOf } from './look-at';
+import { analyteView, stageViews, variantView } from './plan-parts';
+import { calibrationView, exclusionView, importViews } from './record-parts';
+
+/** The whole validation summary of a study, in one view that page and workbook share. */
+export function summaryOf(figures: StudyFigures, lab: SummaryView['lab'], link: Link): SummaryView {
+  const { data } = figures;
+  const findings = findingsOf(figures, link);
+  const exclusions = data.exclusionRecords.map((record) => exclusionView(figures, record));
+  const imports = importViews(figures);
+  const stages = stageViews(figures);
+  const view: Omit<SummaryView, 'hash'> = {
+    study: {
+      code: data.code,
+      title: data.title,
+      matrix: data.matrix,
+      objective: data.objective,
+      sampleVolumeMl: data.sampleVolumeMl,
+      state: data.state,
+      revision: data.revision,
+      dataVersion: data.dataVersion,
+      owner: data.ownerName
+    },
+    lab,
+    lookAt: lookAtOf(findings, exclusions, imports, stages, missingEvidence(figures)),
+    criteria: {
+      name: data.criteriaSet.name,
+      version: data.criteriaSet.version,
+      rules: data.criteriaSet.rules.map(ruleView)
+    },
+    panel: data.panel.map((entry) => analyteView(figures, entry)),
+    variants: data.variants.map((variant) => variantView(figures, variant)),
+    stages,
+    findings,
+    calibrations: data.calibrationSets.map((set) => calibrationView(figures, set, link)),
+    exclusions,
+    imports,
+    cautions
+  };
+  return { ...view, hash: hashOf(view) };
+}
+
+/** Links are left out: they differ between the page and a file, what is said does not. */
+function hashOf(view: Omit<SummaryView, 'hash'>): string {
+  const text = JSON.stringify(view, (key, value: unknown) => (key === 'href' ? undefined : value));
+  return createHash('sha256')
+    .update(canonicalText(JSON.parse(text)))
+    .digest('hex')
+    .slice(0, 12);
+}
+
+function findingsOf(figures: StudyFigures, link: Link): SummaryFindings[] {
+  const { data } = figures;
+  const ofVariants = data.variants.flatMap((variant): SummaryFindings[] => {
+    const context = figures.variant(variant);
+    if (!context.top) return [];
+    const subject = { experiment: context.top, context };
+    return [
+      {
+        key: variant.code,
+        heading: `Variant ${variant.code}, ${variant.name}`,
+        findings: stageFindingsOf(figures, context, link),
+        results: resultsTableOf(figures, context.top, link),
+        balance: massBalanceOf(figures, subject, link),
+        walkBack: walkBackOf(figures, context, link),
+        portions: portionsOf(figures, context.top, link)
+      }
+    ];
+  });
+  const shown = new Set(ofVariants.map((item) => item.results.experiment.number));
+  const others = subjectView(figures, subjectOf(figures, {})).experiments.filter(
+    (item) => !shown.has(item.number)
+  );
+  return [
+    ...ofVariants,
+    ...others.map((item): SummaryFindings => {
+      const subject = subjectOf(figures, { experiment: item.number });
+      const experiment = subject.experiment!; // It was listed a line above.
+      return {
+        key: `experiment-${item.number}`,
+        heading: `Experiment ${item.number}, ${item.title}`,
+        findings: null,
+        results: resultsTableOf(figures, experiment, link),
+        balance: massBalanceOf(figures, subject, link),
+        walkBack: null,
+        portions: portionsOf(figures, experiment, link)
+      };
+    })
+  ];
+}
+
+/** "Variant C: nothing stands for drying." */
+function missingEvidence(figures: StudyFigures): string[] {
+  return figures.data.variants.flatMap((variant) => {
+    const without = figures
+      .variant(variant)
+      .stages.filter((stage) => !stage.evidence)
+      .map((stage) => stage.name.toLowerCase());
+    return without.length === 0 ? [] : [`Variant ${variant.code}: nothing stands for ${without.join(', ')}.`];
+  });
+}
