@@ -22,6 +22,12 @@ interface Visit {
   readonly address?: string;
 }
 
+/** The status of a form that was not taken; null for anything else. */
+function failedStatus(data: unknown): number | null {
+  const failed = typeof data === 'object' && data !== null && 'status' in data && 'data' in data;
+  return failed ? Number(data.status) : null;
+}
+
 /**
  * Stands in for a browser and for the framework's routing: sends requests through the real hooks, keeps the cookies,
  * and hands the event to the load, action or endpoint of the route.
@@ -73,8 +79,7 @@ export class TestBrowser {
             }
           })
       });
-      const failed = typeof data === 'object' && data !== null && 'status' in data && 'data' in data;
-      return { status: failed ? Number(data.status) : response.status, location: null, data };
+      return { status: failedStatus(data) ?? response.status, location: null, data };
     } catch (thrown) {
       if (isRedirect(thrown)) return { status: thrown.status, location: thrown.location, data: null };
       if (isHttpError(thrown)) return { status: thrown.status, location: null, data: thrown.body.message };

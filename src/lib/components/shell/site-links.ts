@@ -15,7 +15,11 @@ export function personLinks(role: Role, labs = 1): readonly NavigationItem[] {
     { href: '/account', label: 'Your name and password' },
     ...(labs > 1 ? [{ href: '/account#labs', label: 'Switch lab', count: labs }] : []),
     { href: '/lab/members', label: 'Members' },
-    ...(isAllowed(role, 'lab.settings') ? [{ href: '/lab/settings', label: 'Lab settings' }] : []),
-    { href: '/lab/history', label: 'History of the lab' }
+    ...(isAllowed(role, 'lab.settings')
+      ? [
+          { href: '/lab/settings', label: 'Lab settings' },
+          { href: '/lab/history', label: 'History of the lab' }
+        ]
+      : [])
   ];
 }
