@@ -37,6 +37,9 @@ export type CalibrationFit = {
   readonly points: FittedPoint[];
 };
 
+/** Levels are divided by, squared: below this the result would pass the largest double. */
+const smallestLevel = 1e-100;
+
 const coefficientsOf: Record<CalibrationModel, number> = {
   'average response factor': 1,
   linear: 2,
@@ -81,10 +84,10 @@ export function fitCalibration(
   });
   const df = points.length - p;
   const residualSd = Math.sqrt(fit.weightedResiduals / df);
-  if (!fit.coefficients.every(Number.isFinite) || !Number.isFinite(residualSd)) {
+  const covariance = fit.unscaledCovariance.map((row) => row.map((value) => value * residualSd * residualSd));
+  if (![...fit.coefficients, residualSd, ...covariance.flat()].every(Number.isFinite)) {
     throw new StatsError('out-of-range', 'Levels and responses span more than can be computed.');
   }
-  const covariance = fit.unscaledCovariance.map((row) => row.map((value) => value * residualSd * residualSd));
   return {
     model,
     weighting,
@@ -180,7 +183,7 @@ function relativeStandardError(points: readonly FittedPoint[], p: number): numbe
     if (errorPercent === null) return null;
     sum += errorPercent * errorPercent;
   }
-  return Math.sqrt(sum / df);
+  return Number.isFinite(sum) ? Math.sqrt(sum / df) : null;
 }
 
 function responseFactorRsd(points: readonly CalibrationPoint[]): number | null {
@@ -206,6 +209,9 @@ function checkPoints(
     finite(y, `Response of calibration point ${i + 1}`);
     if (finite(x, `Level of calibration point ${i + 1}`) < 0) {
       throw new StatsError('out-of-range', `Level of calibration point ${i + 1} is below zero: ${x}.`);
+    }
+    if (x > 0 && x < smallestLevel) {
+      throw new StatsError('out-of-range', `Level of calibration point ${i + 1} is too small: ${x}.`);
     }
     if (x === 0 && weighting !== 'none') {
       const why =

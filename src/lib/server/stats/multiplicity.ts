@@ -33,7 +33,7 @@ export function benjaminiHochberg(p: Probabilities): (number | null)[] {
   let running = 1;
   for (let rank = order.length; rank >= 1; rank -= 1) {
     const { value, index } = order[rank - 1]!;
-    running = Math.min(running, (value * order.length) / rank);
+    running = Math.min(running, value * (order.length / rank));
     adjusted[index] = running;
   }
   return adjusted;
