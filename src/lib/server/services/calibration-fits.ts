@@ -5,8 +5,8 @@ import { calibrate, fitChoiceOf, type Calibration } from '../amounts/calibration
 import type { CalibrationSet } from '../amounts/types';
 import { sequelize } from '../db/sequelize';
 import { NotFound } from '../errors';
-import { ruleOf } from './results/criteria';
-import type { StudyData, StudyPanelEntry } from './results/study-data';
+import { ruleOf } from './figures/criteria';
+import type { StudyData, StudyPanelEntry } from './figures/study-data';
 
 interface ChoiceRow {
   readonly panelEntryId: string;

@@ -17,7 +17,7 @@ import { counted } from './changes';
 import { knownId } from './known-id';
 import { panelOf } from './panel-entries';
 import { require } from './permissions';
-import { figuresOfStudy } from './results/figures-cache';
+import { figuresOfStudy } from './figures/figures-cache';
 import { requireUnchanged } from './stale';
 import { studyKeys, studyOf } from './study-of';
 

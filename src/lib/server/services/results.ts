@@ -11,26 +11,26 @@ import type { MassBalanceView } from '../../views/mass-balance';
 import type { ProvenanceView } from '../../views/provenance';
 import type { StageLadderView } from '../../views/stage-ladder';
 import type { WalkBackView } from '../../views/walk-back';
-import { addressText, parseAddress, type Link } from './results/addresses';
-import { compareOf } from './results/compare-view';
-import { figuresOfStudy } from './results/figures-cache';
-import { massBalanceOf } from './results/mass-balance-view';
-import { portionsOf } from './results/portions-view';
-import { provenanceOf } from './results/provenance-view';
-import { resultsTableOf } from './results/results-table-view';
-import { stageFindingsOf } from './results/stage-findings';
-import { stageLadderOf } from './results/stage-ladder-view';
+import { addressText, parseAddress, type Link } from './figures/addresses';
+import { compareOf } from './figures/compare-view';
+import { figuresOfStudy } from './figures/figures-cache';
+import { massBalanceOf } from './figures/mass-balance-view';
+import { portionsOf } from './figures/portions-view';
+import { provenanceOf } from './figures/provenance-view';
+import { resultsTableOf } from './figures/results-table-view';
+import { stageFindingsOf } from './figures/stage-findings';
+import { stageLadderOf } from './figures/stage-ladder-view';
 import {
   experimentByNumber,
   experimentChoice,
   subjectOf,
   subjectView,
   type SubjectQuery
-} from './results/subject';
-import { walkBackOf } from './results/walk-back-view';
+} from './figures/subject';
+import { walkBackOf } from './figures/walk-back-view';
 import { require } from './permissions';
 
-export type { SubjectQuery } from './results/subject';
+export type { SubjectQuery } from './figures/subject';
 
 /** Makes the address that opens a figure's provenance on the page that asks: "?variant=D&figure=recovery:3:…". */
 export type FigureLink = (address: string) => string;

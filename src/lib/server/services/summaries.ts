@@ -1,7 +1,7 @@
 import type { Actor } from '../../domain/actor';
 import type { SummaryView } from '../../views/summary';
-import { addressText } from './results/addresses';
-import { figuresOfStudy } from './results/figures-cache';
+import { addressText } from './figures/addresses';
+import { figuresOfStudy } from './figures/figures-cache';
 import type { FigureLink } from './results';
 import { require } from './permissions';
 import { summaryOf } from './summary/summary-view';

@@ -1,9 +1,9 @@
 import { figureText } from '../../../domain/figure-text';
 import type { SummaryAnalyte, SummaryExperiment, SummaryVariant, SummaryView } from '../../../views/summary';
-import { criteriaFor } from '../results/criteria';
-import { countsText, criteriaText } from '../results/figure-parts';
-import type { AnalyteProperty, StudyExperiment, StudyPanelEntry } from '../results/study-data';
-import type { StudyFigures } from '../results/study-figures';
+import { criteriaFor } from '../figures/criteria';
+import { countsText, criteriaText } from '../figures/figure-parts';
+import type { AnalyteProperty, StudyExperiment, StudyPanelEntry } from '../figures/study-data';
+import type { StudyFigures } from '../figures/study-figures';
 
 /** What was planned: panel, variants, stages with their experiments. */
 

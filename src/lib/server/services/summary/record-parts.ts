@@ -1,10 +1,10 @@
 import type { SummaryCalibration, SummaryExclusion, SummaryImport } from '../../../views/summary';
 import { calibrate } from '../../amounts/calibration';
 import { checkCalibration } from '../../amounts/calibration-check';
-import type { Link } from '../results/addresses';
-import { choiceText } from '../results/provenance/parts';
-import type { ExclusionRecord, StudyCalibrationSet, StudyPanelEntry } from '../results/study-data';
-import type { StudyFigures } from '../results/study-figures';
+import type { Link } from '../figures/addresses';
+import { choiceText } from '../figures/provenance/parts';
+import type { ExclusionRecord, StudyCalibrationSet, StudyPanelEntry } from '../figures/study-data';
+import type { StudyFigures } from '../figures/study-figures';
 
 /** What the record holds beside the figures: calibrations, exclusions, files. */
 

@@ -2,7 +2,7 @@ import { orderMassBalance } from '$lib/charts/mass-balance-order';
 import { massBalanceQuery } from '$lib/schemas/findings';
 import { memberIn } from '$lib/server/hooks/member-in';
 import { massBalanceView } from '$lib/server/services/results';
-import { openFigure } from '$lib/server/services/results/open-figure';
+import { openFigure } from '$lib/server/services/figures/open-figure';
 import { figureLinks } from '$lib/views/figure-links';
 import type { PageServerLoad } from './$types';
 

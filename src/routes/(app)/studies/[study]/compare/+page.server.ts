@@ -1,6 +1,6 @@
 import { memberIn } from '$lib/server/hooks/member-in';
 import { compareView } from '$lib/server/services/results';
-import { openFigure } from '$lib/server/services/results/open-figure';
+import { openFigure } from '$lib/server/services/figures/open-figure';
 import { figureLinks } from '$lib/views/figure-links';
 import type { PageServerLoad } from './$types';
 

@@ -1,7 +1,7 @@
 import { subjectQuery } from '$lib/schemas/findings';
 import { memberIn } from '$lib/server/hooks/member-in';
 import { walkBackView } from '$lib/server/services/results';
-import { openFigure } from '$lib/server/services/results/open-figure';
+import { openFigure } from '$lib/server/services/figures/open-figure';
 import { figureLinks } from '$lib/views/figure-links';
 import type { PageServerLoad } from './$types';
 
