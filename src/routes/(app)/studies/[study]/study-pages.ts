@@ -42,6 +42,7 @@ export function studyPages(code: string, counts: Counts): readonly NavigationGro
       group: 'Record',
       items: [
         { href: `${base}/validation`, label: 'Validation' },
+        { href: `${base}/summary`, label: 'Summary' },
         { href: `${base}/history`, label: 'History' }
       ]
     }
