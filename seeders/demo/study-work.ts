@@ -52,14 +52,16 @@ export async function seedVariant({ studyCode, chemist }: Bench, variant: Planne
   });
 }
 
-/** A calibration set and the spreadsheet of its levels. @returns the set's id */
-export async function seedCalibration(bench: Bench, ids: PanelIds, calibration: 0 | 1): Promise<string> {
-  const { studyCode, chemist, analyst } = bench;
-  const calibratedOn = calibration === 0 ? '2026-10-05' : '2026-10-14';
-  const id = await createCalibrationSet(chemist, studyCode, {
+/** A calibration set, its levels not measured yet. @returns its id */
+export async function seedCalibration(
+  { studyCode, chemist }: Bench,
+  ids: PanelIds,
+  calibration: 0 | 1
+): Promise<string> {
+  return createCalibrationSet(chemist, studyCode, {
     name: calibration === 0 ? 'First calibration' : 'Second calibration',
     instrument: 'Liquid and gas chromatograph, one table',
-    calibratedOn,
+    calibratedOn: calibration === 0 ? '2026-10-05' : '2026-10-15',
     defaultModel: 'linear',
     defaultWeighting: '1/x',
     levels: calibrationNgPerMl.map((concentrationNgPerMl, level) => ({
@@ -70,12 +72,6 @@ export async function seedCalibration(bench: Bench, ids: PanelIds, calibration: 
     constants: Object.fromEntries(standards.map(({ name }) => [idOf(ids, name), standardNgPerMl])),
     concentrations: {}
   });
-  await upload(analyst, studyCode, {
-    fileName: `calibration-${calibratedOn}.xlsx`,
-    bytes: await writeWorkbook(title, 'wide', simulateCalibration(calibration), demoRecovered),
-    experimentNumber: null
-  });
-  return id;
 }
 
 /** Portions of one kind and batch, in the order planned. */
@@ -100,11 +96,17 @@ function spikesOf(experiment: PlannedExperiment) {
   }));
 }
 
+/** What an experiment is calibrated by, and whether the same run measured the levels too. */
+export interface Calibrated {
+  readonly setId: string;
+  readonly levelsInRun: boolean;
+}
+
 /** One experiment: planned, measured, brought in, and its mishap set aside. */
 export async function seedExperiment(
   bench: Bench,
   ids: PanelIds,
-  calibrationSetId: string,
+  calibration: Calibrated,
   experiment: PlannedExperiment
 ): Promise<void> {
   const { studyCode, chemist, analyst } = bench;
@@ -117,7 +119,7 @@ export async function seedExperiment(
     subtract: experiment.subtract,
     performedOn: experiment.performedOn,
     analystId: analyst.userId,
-    calibrationSetId,
+    calibrationSetId: calibration.setId,
     sampleVolumeMl: experiment.sampleVolumeMl,
     finalVolumeMl: null,
     spikes: spikesOf(experiment),
@@ -151,9 +153,13 @@ export async function seedExperiment(
       levelLabel: ''
     });
   }
+  const vials = [
+    ...(calibration.levelsInRun ? simulateCalibration(experiment.calibration) : []),
+    ...simulateExperiment(experiment)
+  ];
   await upload(analyst, studyCode, {
     fileName: `run-${experiment.performedOn}-${experiment.key.toLowerCase()}.xlsx`,
-    bytes: await writeWorkbook(title, experiment.layout, simulateExperiment(experiment), demoRecovered),
+    bytes: await writeWorkbook(title, experiment.layout, vials, demoRecovered),
     experimentNumber: number
   });
   await setMishapsAside(bench, number, experiment);

@@ -49,8 +49,9 @@ export async function seedDemoStudy(lab: SeededLab): Promise<void> {
   for (const variant of demoVariants) await seedVariant(bench, variant);
   for (const calibration of [0, 1] as const) {
     const setId = await seedCalibration(bench, ids, calibration);
-    for (const experiment of demoExperiments.filter((planned) => planned.calibration === calibration)) {
-      await seedExperiment(bench, ids, setId, experiment);
+    const served = demoExperiments.filter((planned) => planned.calibration === calibration);
+    for (const [index, experiment] of served.entries()) {
+      await seedExperiment(bench, ids, { setId, levelsInRun: index === 0 }, experiment);
     }
   }
 }
