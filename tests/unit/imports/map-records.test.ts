@@ -539,6 +539,20 @@ describe('errors name sheet, cell, what was found and what was expected', () => 
     expect(problem(mapped, 'unknown sample').message).toContain('2 more cells');
   });
 
+  it('of a fault made thousands of times no more than a thousand, and how many there are', () => {
+    const mapped = map(
+      row(Array.from({ length: 1500 }, (_, index) => `S1|Elution 1|Caffeine|x|1|||${index + 1}`).join('\n'))
+    );
+    expect(mapped.problems).toHaveLength(1001);
+    expect(mapped.problems.at(-1)).toMatchObject({
+      severity: 'error',
+      code: 'not a number',
+      cell: null,
+      found: '500 more'
+    });
+    expect(mapped.problems.at(-1)?.message).toMatch(/^500 more problems/);
+  });
+
   it('the same injection twice, and where it stood first', () => {
     const mapped = map(row('S1|Elution 1|Caffeine|7|1|||\nS1|Elution 1|caffeine|8|1|||1'));
     expect(problem(mapped, 'same injection twice')).toMatchObject({ severity: 'error', cell: 'D3' });

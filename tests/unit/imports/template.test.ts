@@ -12,6 +12,7 @@ import {
   panelExpectation,
   replicateExpectation
 } from '../../factories/expectation';
+import { convert, libreOffice } from '../../fixtures/workbooks/libreoffice';
 
 type Layout = 'long' | 'wide';
 
@@ -221,6 +222,23 @@ describe('the template', () => {
     expect(sheet?.getCell('G4').dataValidation).toMatchObject({ type: 'decimal', operator: 'greaterThan' });
     expect(sheet?.getCell('J4').dataValidation).toMatchObject({ type: 'whole' });
   });
+
+  it.skipIf(!libreOffice)(
+    'comes back whole when LibreOffice has opened and saved it',
+    async () => {
+      const filled = await fill(await writeTemplate(offered(), 'experiment 1', 'long'), (header, at) =>
+        header === 'Area' || header === 'Internal standard area'
+          ? at + 0.125
+          : header === 'Final volume (mL)'
+            ? 0.5
+            : undefined
+      );
+      const direct = await mapped(filled);
+      expect(direct.records.some(({ reported }) => reported.value === 7.125)).toBe(true);
+      expect(await mapped(convert(filled, 'xlsx', 'xlsx'))).toEqual(direct);
+    },
+    120_000
+  );
 
   it('needs an experiment that is offered', async () => {
     await expect(writeTemplate(offered(), 'experiment 9', 'long')).rejects.toThrow(RangeError);

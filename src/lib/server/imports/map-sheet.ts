@@ -9,7 +9,7 @@ import type { RowPlace } from './row-place';
 import { injectionOf, preparationOf } from './row-preparation';
 import type { Preparation } from './row-preparation';
 import { cellAt } from './sheet';
-import { textOf } from './sheet-mapping';
+import { isBlank, textOf } from './sheet-mapping';
 import type { SheetMapping } from './sheet-mapping';
 import type { Place } from './types';
 import { convert } from './units';
@@ -66,7 +66,7 @@ function isBlankRow({ plan }: SheetMapping, merged: CellReader, row: number): bo
     plan.cas,
     ...plan.values.flatMap(({ column, internalArea }) => [column, internalArea])
   ];
-  return columns.every((column) => column === null || textOf(merged(row, column)) === '');
+  return columns.every((column) => column === null || isBlank(merged(row, column)));
 }
 
 interface RowFacts {

@@ -14,6 +14,9 @@ export interface ProblemInput {
   readonly answer?: Problem['answer'];
 }
 
+/** A file with more problems of one kind has one fault, made many times. */
+export const shownOfAKind = 1000;
+
 /** Problems that say the same of many cells are reported once, with the first cell and how many more there are. */
 interface Grouped {
   readonly severity: ProblemSeverity;
@@ -51,13 +54,37 @@ export class ProblemList {
     this.#problems.push(grouped);
   }
 
-  /** Errors first, then questions, then notes; within each in the order of the file. */
+  /**
+   * Errors first, then questions, then notes; within each in the order of the file. Of one kind at most `shownOfAKind` are
+   * listed, and then how many more there are.
+   */
   all(): readonly Problem[] {
     const order: Readonly<Record<ProblemSeverity, number>> = { error: 0, question: 1, note: 2 };
-    return this.#problems
-      .map((entry) => ('input' in entry ? toProblem(entry.severity, entry.input, entry.count) : entry))
-      .sort((one, other) => order[one.severity] - order[other.severity]);
+    const counts = new Map<string, number>();
+    const listed: Problem[] = [];
+    for (const entry of this.#problems) {
+      const kind = `${entry.severity}\u0000${'input' in entry ? entry.input.code : entry.code}`;
+      const count = (counts.get(kind) ?? 0) + 1;
+      counts.set(kind, count);
+      if (count <= shownOfAKind)
+        listed.push('input' in entry ? toProblem(entry.severity, entry.input, entry.count) : entry);
+    }
+    const more = listed.flatMap((problem) => {
+      const count = counts.get(`${problem.severity}\u0000${problem.code}`) ?? 0;
+      counts.delete(`${problem.severity}\u0000${problem.code}`);
+      return count > shownOfAKind ? [moreOf(problem, count - shownOfAKind)] : [];
+    });
+    return [...listed, ...more].sort((one, other) => order[one.severity] - order[other.severity]);
   }
+}
+
+function moreOf(problem: Problem, count: number): Problem {
+  return {
+    ...problem,
+    cell: null,
+    found: `${count} more`,
+    message: `${count} more problems are of the same kind as this one: ${problem.message}`
+  };
 }
 
 function toProblem(severity: ProblemSeverity, input: ProblemInput, count: number): Problem {

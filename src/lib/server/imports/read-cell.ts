@@ -26,10 +26,13 @@ const unusable: ReadNumber = { state: 'unusable' };
  * question.
  */
 export function readNumberCell(cell: Cell | null, context: NumberContext, problems: ProblemList): ReadNumber {
+  // Nearly all cells end here; the words for problems are not made for them.
+  if (cell === null) return { state: 'missing' };
+  if (cell.kind === 'number') return { state: 'value', value: cell.value };
   const { sheet, row, column, expected, decimal } = context;
   const parsed = parseValue(cell, decimal);
   const at = { sheet, row, column, expected };
-  const found = `“${cell?.raw ?? ''}”`;
+  const found = `“${cell.raw}”`;
   switch (parsed.state) {
     case 'value':
     case 'not detected':
@@ -97,7 +100,7 @@ export function readNumberCell(cell: Cell | null, context: NumberContext, proble
       problems.error({
         code: 'formula without result',
         ...at,
-        found: cell?.raw ?? '',
+        found: cell.raw,
         what: 'This formula has no stored result; the file was written by a program that did not calculate it.',
         fix: 'Open the file in a spreadsheet program, save it, and bring it again.'
       });

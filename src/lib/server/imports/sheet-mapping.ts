@@ -18,3 +18,7 @@ export interface SheetMapping {
 export function textOf(cell: Cell | null): string {
   return cell === null ? '' : cell.raw.trim();
 }
+
+export function isBlank(cell: Cell | null): boolean {
+  return cell === null || (cell.kind === 'text' && cell.value.trim() === '');
+}
