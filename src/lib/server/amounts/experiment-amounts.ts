@@ -1,5 +1,5 @@
 import { calibrate, type Calibration } from './calibration';
-import { injectionAmount, type InjectionAmount } from './injection-amount';
+import { injectionAmount, type AmountContext, type InjectionAmount } from './injection-amount';
 import { nothingMeasured, placeAmount, type PlaceAmount } from './place-amount';
 import { practiceFor } from './practice';
 import type { CalibrationSet, ExperimentData, ExtractReported, PanelEntry } from './types';
@@ -25,32 +25,46 @@ export function amountsOf(
   const calibrationOf = calibrationsOf(set, panel, nameOf);
   const replicates = new Map(experiment.replicates.map((replicate) => [replicate.id, replicate]));
 
-  const injections = new Map<string, Map<string, InjectionAmount[]>>();
-  const places = new Set<string>();
-  for (const reported of experiment.reported) {
-    const entry = panel.get(reported.entryId);
-    const replicate = replicates.get(reported.replicateId);
-    if (!entry || !replicate) continue;
-    const place = placeKey(reported);
-    places.add(place);
-    const amount = injectionAmount(reported, {
+  const contexts = new Map<string, AmountContext>();
+  const contextOf = (entryId: string, replicateId: string): AmountContext | null => {
+    const key = `${entryId} ${replicateId}`;
+    const known = contexts.get(key);
+    if (known) return known;
+    const entry = panel.get(entryId);
+    const replicate = replicates.get(replicateId);
+    if (!entry || !replicate) return null;
+    const practice = practiceFor(experiment, entry, replicate, panel);
+    const made: AmountContext = {
       entry,
       replicate,
-      practice: practiceFor(experiment, entry, replicate, panel),
+      practice,
       calibration: () => calibrationOf(entry.id),
       nameOf
-    });
-    const ofEntry = injections.get(entry.id) ?? new Map<string, InjectionAmount[]>();
-    injections.set(entry.id, ofEntry);
-    const ofPlace = ofEntry.get(place);
-    if (ofPlace) ofPlace.push(amount);
-    else ofEntry.set(place, [amount]);
-  }
+    };
+    contexts.set(key, made);
+    return made;
+  };
 
-  const joined = new Map<string, Map<string, PlaceAmount>>();
-  for (const [entryId, ofEntry] of injections) {
-    joined.set(entryId, new Map([...ofEntry].map(([place, list]) => [place, placeAmount(list)])));
+  const injections: Places<InjectionAmount[]> = new Map();
+  const places = new Set<string>();
+  for (const reported of experiment.reported) {
+    const context = contextOf(reported.entryId, reported.replicateId);
+    if (!context) continue;
+    const place = placeKey(reported);
+    places.add(place);
+    const amount = injectionAmount(reported, context);
+    const ofEntry = injections.get(reported.entryId);
+    const ofPlace = ofEntry?.get(place);
+    if (ofPlace) ofPlace.push(amount);
+    else if (ofEntry) ofEntry.set(place, [amount]);
+    else injections.set(reported.entryId, new Map([[place, [amount]]]));
   }
+  const joined: Places<PlaceAmount> = new Map(
+    [...injections].map(([entryId, ofEntry]) => [
+      entryId,
+      new Map([...ofEntry].map(([place, list]) => [place, placeAmount(list)]))
+    ])
+  );
   return {
     experiment,
     panel,
@@ -60,6 +74,9 @@ export function amountsOf(
     calibrationOf
   };
 }
+
+/** By entry, then by place. */
+type Places<Thing> = Map<string, Map<string, Thing>>;
 
 /** The line of each analyte of one set, fitted when first asked for. */
 export function calibrationsOf(

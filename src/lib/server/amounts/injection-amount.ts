@@ -196,53 +196,75 @@ function toAmount(
   signal: Signal,
   reported: ExtractReported,
   context: AmountContext
-): { ng: number; trace: AmountTrace } | string {
+): { readonly ng: number; readonly trace: AmountTrace } | string {
   const { practice, replicate } = context;
-  const volume = reported.finalVolumeMl;
+  const { x, formula } = signal;
   const share = reported.aliquotShare;
-  const trace = (used: {
-    readonly volume?: number;
-    readonly dilution?: number;
-    readonly share?: number;
-    readonly sampleVolume?: number;
-  }): AmountTrace => ({
-    ...signal,
-    reported,
-    practice,
-    finalVolumeMl: used.volume ?? null,
-    dilution: used.dilution ?? null,
-    aliquotShare: used.share ?? null,
-    sampleVolumeMl: used.sampleVolume ?? null
-  });
-
-  switch (signal.formula) {
+  switch (formula) {
     case 'reported amount':
-      return { ng: signal.x, trace: trace({}) };
+      return { ng: x, trace: traceOf(signal, reported, practice, null, null, null, null) };
     case 'reported per litre': {
-      const sampleVolume = replicate.sampleVolumeMl;
-      if (sampleVolume === null)
-        return `${replicate.label} has no sample volume, which ng/L needs to become ng`;
-      return { ng: (signal.x * sampleVolume) / 1000, trace: trace({ sampleVolume }) };
+      const sample = replicate.sampleVolumeMl;
+      if (sample === null) return `${replicate.label} has no sample volume, which ng/L needs to become ng`;
+      return {
+        ng: (x * sample) / 1000,
+        trace: traceOf(signal, reported, practice, null, null, null, sample)
+      };
     }
     case 'standard in the extract': {
       if (practice.kind !== 'extract') throw new Error('the practice and its equation disagree');
-      return { ng: (signal.x * practice.amountNg) / share, trace: trace({ share }) };
+      return {
+        ng: (x * practice.amountNg) / share,
+        trace: traceOf(signal, reported, practice, null, null, share, null)
+      };
     }
     case 'standard in the sample': {
       if (practice.kind !== 'sample') throw new Error('the practice and its equation disagree');
       if (practice.amountNg === null) {
         return `it is not recorded how much ${context.nameOf(practice.standardId)} was added to ${replicate.label}`;
       }
-      return { ng: signal.x * practice.amountNg, trace: trace({}) };
+      return {
+        ng: x * practice.amountNg,
+        trace: traceOf(signal, reported, practice, null, null, null, null)
+      };
     }
     default: {
+      const volume = reported.finalVolumeMl;
       if (volume === null) return 'no final volume was given, which an amount needs';
       const inVial =
-        practice.kind === 'vial' && signal.formula === 'standard in the vial' ? practice.concentration : 1;
-      const ng = (signal.x * inVial * reported.dilution * volume) / share;
-      return { ng, trace: trace({ volume, dilution: reported.dilution, share }) };
+        formula === 'standard in the vial' && practice.kind === 'vial' ? practice.concentration : 1;
+      return {
+        ng: (x * inVial * reported.dilution * volume) / share,
+        trace: traceOf(signal, reported, practice, volume, reported.dilution, share, null)
+      };
     }
   }
+}
+
+/** Field by field: there is one for every number of a study. */
+function traceOf(
+  signal: Signal,
+  reported: ExtractReported,
+  practice: Practice,
+  finalVolumeMl: number | null,
+  dilution: number | null,
+  aliquotShare: number | null,
+  sampleVolumeMl: number | null
+): AmountTrace {
+  return {
+    formula: signal.formula,
+    reported,
+    calibration: signal.calibration,
+    practice,
+    response: signal.response,
+    x: signal.x,
+    limitSource: signal.limitSource,
+    finalVolumeMl,
+    dilution,
+    aliquotShare,
+    sampleVolumeMl,
+    extrapolated: signal.extrapolated
+  };
 }
 
 function figure(value: number): string {

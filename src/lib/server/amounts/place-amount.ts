@@ -32,7 +32,16 @@ export const nothingMeasured: PlaceAmount = {
  * largest of their figures, which both ends of the truth lie within.
  */
 export function placeAmount(injections: readonly InjectionAmount[]): PlaceAmount {
-  if (injections.length === 0) return nothingMeasured;
+  const [only] = injections;
+  if (!only) return nothingMeasured;
+  if (injections.length === 1 && isUsable(only)) {
+    return {
+      amount: amountOfOne(only),
+      used: injections,
+      unused: [],
+      notes: only.trace.extrapolated ? extrapolatedNote : []
+    };
+  }
   const above = injections.filter((item) => item.state === 'above range');
   const replacedUpTo = Math.max(0, ...above.map(dilutionOf));
   const usable = injections.filter(isUsable).filter((item) => dilutionOf(item) > replacedUpTo);
@@ -43,6 +52,14 @@ export function placeAmount(injections: readonly InjectionAmount[]): PlaceAmount
   const used = usable.filter((item) => dilutionOf(item) === dilution);
   const unused = injections.filter((item) => !(used as readonly InjectionAmount[]).includes(item));
   return { ...joined(used), used, unused, notes: notesOn(used, unused, dilution) };
+}
+
+const extrapolatedNote = ['read below the lowest calibration level'];
+
+function amountOfOne(item: Usable): Amount {
+  return item.state === 'amount'
+    ? { state: 'amount', ng: item.ng }
+    : { state: 'not detected', belowNg: Math.max(0, item.belowNg) };
 }
 
 type Usable = Extract<InjectionAmount, { state: 'amount' | 'not detected' }>;
@@ -87,6 +104,6 @@ function notesOn(used: readonly Usable[], unused: readonly InjectionAmount[], di
   for (const item of unused)
     if (item.state === 'refused') notes.push(`one injection could not be used: ${item.reason}`);
   if (unused.some((item) => item.state === 'missing')) notes.push('one injection was left empty');
-  if (used.some((item) => item.trace.extrapolated)) notes.push('read below the lowest calibration level');
+  if (used.some((item) => item.trace.extrapolated)) notes.push(...extrapolatedNote);
   return notes;
 }
