@@ -39,7 +39,7 @@ function migrate(databaseUrl: string, demo: boolean): Promise<void> {
   });
 }
 
-const digits = (value: number): string => (Number.isFinite(value) ? value.toPrecision(3) : String(value));
+const digits = (value: number): string => (Math.abs(value) >= 100 ? value.toFixed(0) : value.toPrecision(3));
 
 interface Line {
   readonly cells: readonly [string, string, string, string, string, string];
