@@ -45,6 +45,7 @@ export interface MassBalanceLayout {
   /** The limits that lie on the plot. */
   readonly limitPath: string;
   readonly hundredPath: string;
+  readonly zeroPath: string;
   readonly bars: readonly MassBalanceBar[];
   /** One path per fraction, in the order of the fractions, 0 to 100 in both directions. */
   readonly fractionPaths: readonly { readonly key: string; readonly path: string }[];
@@ -101,6 +102,7 @@ export function massBalanceLayout(
     bandPath: spans.map(([from, to]) => `M${band.from} ${from}H${band.to}V${to}H${band.from}Z`).join(''),
     limitPath: lines(band.from) + (band.highShown ? lines(band.to) : ''),
     hundredPath: lines(round(x(100))),
+    zeroPath: lines(0),
     bars,
     fractionPaths: view.fractions.map(({ key }) => ({
       key,
