@@ -594,6 +594,23 @@ describe('errors name sheet, cell, what was found and what was expected', () => 
     expect(problem(none, 'internal standard area missing').message).toContain('Testol-d5');
   });
 
+  it('an unusable cell once, and not as a missing one as well', () => {
+    const table =
+      'Sample | Fraction | Analyte | Area | IS area | Final volume (mL)\nS1|Elution 1|Caffeine|7|1OO|x';
+    expect(codes(map(table, withStandard('vial')))).toEqual([
+      'error not a number F2',
+      'error looks like a number E2'
+    ]);
+  });
+
+  it('no zero in the column of the standard for an analyte that has none', () => {
+    const mapped = map(
+      'Sample | Fraction | Analyte | Area | IS area | Final volume (mL)\nS1|Elution 1|Caffeine|7|0|1'
+    );
+    expect(mapped.problems).toEqual([]);
+    expect(only(mapped.records).reported.internalArea).toBeNull();
+  });
+
   it('two different areas of one internal standard', () => {
     const mapped = map(
       'Sample | Fraction | Analyte | Area | IS area | Final volume (mL)\nS1|Elution 1|Caffeine|7|100|1\nS1|Elution 1|Testol-d5|101||1',

@@ -60,9 +60,14 @@ export async function openArchive(bytes: Buffer, limits: ReadingLimits): Promise
   };
 }
 
-/** Part names are compared without case (ECMA-376 part 2). */
+/** Part names are compared without case and percent signs (ECMA-376 part 2). */
 function key(name: string): string {
-  return name.replace(/^\/+/, '').toLowerCase();
+  const plain = name.replace(/^\/+/, '').toLowerCase();
+  try {
+    return decodeURI(plain);
+  } catch {
+    return plain;
+  }
 }
 
 function open(bytes: Buffer): Promise<yauzl.ZipFile> {

@@ -158,7 +158,7 @@ function linkInternalStandards(
     }
     record.internalArea ??=
       own?.value !== undefined && own.value !== null && own.value > 0 ? own.value : null;
-    if (record.internalArea !== null || record.state !== 'value') continue;
+    if (record.internalArea !== null || record.isInternalAreaFaulty || record.state !== 'value') continue;
     problems.oncePer(
       `${record.internalColumn === null ? 'no column' : injectionKey(record)} ${standard.panelEntryId}`,
       'error',
@@ -187,7 +187,12 @@ function checkVolumes(
     )
   );
   for (const record of records) {
-    if (record.place.kind !== 'extract' || record.finalVolumeMl !== null || !needsVolume(record, panel))
+    if (
+      record.place.kind !== 'extract' ||
+      record.finalVolumeMl !== null ||
+      record.isVolumeFaulty ||
+      !needsVolume(record, panel)
+    )
       continue;
     if ((onRecord.get(record.place.replicateId) ?? null) !== null) continue;
     const column = volumeColumn(record.sheet);
@@ -226,6 +231,7 @@ function checkLimits(
     const isBare = (record.state === 'not detected' || record.state === 'below') && record.limit === null;
     const entry = panel.get(record.panelEntryId);
     if (!isBare || record.place.kind !== 'extract' || entry?.hasLowestLevel) continue;
+    if (entry?.role === 'injection internal standard') continue;
     problems.oncePer(record.panelEntryId, 'question', {
       code: 'limit missing',
       sheet: record.sheet,

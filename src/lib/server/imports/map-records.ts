@@ -52,6 +52,10 @@ export function mapRecords(workbook: Workbook, expectation: Expectation): Mapped
   const planned = planSheets(workbook, analytes, expectation, problems);
   const fileEvidence = joinEvidence(planned.flatMap(({ evidence }) => [...evidence.values()]));
   const places = new PlaceFinder(expectation, template?.experimentId ?? null);
+  const corrected = new Set(
+    expectation.panel.flatMap(({ id, internalStandard }) => (internalStandard ? [id] : []))
+  );
+  const hasInternalStandard = (panelEntryId: string): boolean => corrected.has(panelEntryId);
   const drafts: DraftRecord[] = [];
   const readings: SheetReading[] = [];
   for (const { sheet, layout, plan, evidence } of planned) {
@@ -71,6 +75,7 @@ export function mapRecords(workbook: Workbook, expectation: Expectation): Mapped
       analytes,
       places,
       decimalOf,
+      hasInternalStandard,
       problems
     });
     for (const draft of mapped) drafts.push(draft);

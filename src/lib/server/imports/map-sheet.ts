@@ -32,6 +32,9 @@ export interface DraftRecord {
   readonly rawText: string;
   readonly internalColumn: number | null;
   internalArea: number | null;
+  /** What is in the file but cannot be used, so that it is not called missing as well. */
+  readonly isInternalAreaFaulty: boolean;
+  readonly isVolumeFaulty: boolean;
   finalVolumeMl: number | null;
   dilution: number | null;
   aliquotShare: number | null;
@@ -93,8 +96,8 @@ function draftOf(
     decimal: decimalOf(value.column)
   };
   const number = readNumberCell(cell, context, problems);
-  const internalArea = internalAreaOf(mapping, row, value);
   const { place, panelEntryId, injection, preparation } = facts;
+  const internalArea = internalAreaOf(mapping, row, value, panelEntryId);
   if (number.state === 'unusable' || !place || panelEntryId === null || injection === null) return null;
   const amount = number.state === 'value' ? convert(number.value, value.factor) : null;
   if (amount !== null && !checkSign(mapping, row, value, amount)) return null;
@@ -113,7 +116,8 @@ function draftOf(
     limit: limit === null ? null : convert(limit, value.factor),
     rawText: cell?.raw ?? '',
     internalColumn: value.internalArea,
-    internalArea,
+    internalArea: internalArea === 'faulty' ? null : internalArea,
+    isInternalAreaFaulty: internalArea === 'faulty',
     ...preparation
   };
 }
@@ -159,11 +163,13 @@ function checkSign(
   return true;
 }
 
+/** @returns null for an empty cell, 'faulty' for one whose problem has been reported */
 function internalAreaOf(
-  { sheet, decimalOf, problems }: SheetMapping,
+  { sheet, decimalOf, hasInternalStandard, problems }: SheetMapping,
   row: number,
-  value: ValueColumn
-): number | null {
+  value: ValueColumn,
+  panelEntryId: string | null
+): number | null | 'faulty' {
   const column = value.internalArea;
   if (column === null) return null;
   const cell = cellAt(sheet, row, column);
@@ -173,8 +179,11 @@ function internalAreaOf(
     { sheet: sheet.name, row, column, expected, decimal: decimalOf(column) },
     problems
   );
-  if (number.state === 'missing' || number.state === 'unusable') return null;
+  if (number.state === 'missing') return null;
+  if (number.state === 'unusable') return 'faulty';
   if (number.state === 'value' && number.value > 0) return number.value;
+  // Exports fill the column with zeros where no standard is used.
+  if (panelEntryId !== null && !hasInternalStandard(panelEntryId)) return null;
   problems.error({
     code: 'not positive',
     sheet: sheet.name,
@@ -185,5 +194,5 @@ function internalAreaOf(
     what: `“${textOf(cell)}” cannot be divided by: ${expected} has to be above zero.`,
     fix: 'Correct the area. An injection without its internal standard has to be left out or repeated.'
   });
-  return null;
+  return 'faulty';
 }

@@ -45,7 +45,10 @@ export function readHeader(text: string, analytes: NameMatcher<string>): Header 
     return { meaning: 'value', kind: kindOf(text, unit), unit, analyte: null };
   if (whole) return headerOf(whole, text, unit, null);
 
-  const named = analyteOf(words, analytes) ?? analyteOf(text, analytes);
+  // The whole text first: a name may end like a unit.
+  const full = analyteOf(text, analytes);
+  if (full !== null) return { meaning: 'value', kind: 'result', unit: null, analyte: full };
+  const named = analyteOf(words, analytes);
   if (named !== null)
     return { meaning: 'value', kind: kindOf(withoutName(text, words), unit), unit, analyte: named };
   const key = nameKey(words.replace(/[,;:|/]\s*$/, ''));

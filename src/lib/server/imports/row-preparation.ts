@@ -41,56 +41,62 @@ export interface Preparation {
   readonly dilution: number | null;
   readonly aliquotShare: number | null;
   readonly acquiredAt: string | null;
+  /** The final volume is in the file but cannot be used, which has been said. */
+  readonly isVolumeFaulty: boolean;
 }
 
 export function preparationOf(mapping: SheetMapping, merged: CellReader, row: number): Preparation {
   const { plan } = mapping;
+  const within = (
+    from: NumberColumn | null,
+    expected: string,
+    code: BoundCode,
+    isWithin: (value: number) => boolean
+  ): number | null | 'faulty' => bounded(mapping, merged, row, { from, expected, code, isWithin });
+  const volume = within(plan.finalVolume, 'a final volume above zero', 'not positive', (value) => value > 0);
+  const dilution = within(
+    plan.dilution,
+    'a dilution of 1 or more',
+    'dilution below one',
+    (value) => value >= 1
+  );
+  const share = within(
+    plan.aliquotShare,
+    'a share above 0 and up to 1',
+    'share outside range',
+    (value) => value > 0 && value <= 1
+  );
   return {
-    finalVolumeMl: bounded(
-      mapping,
-      merged,
-      row,
-      plan.finalVolume,
-      'a final volume above zero',
-      'not positive',
-      (v) => v > 0
-    ),
-    dilution: bounded(
-      mapping,
-      merged,
-      row,
-      plan.dilution,
-      'a dilution of 1 or more',
-      'dilution below one',
-      (v) => v >= 1
-    ),
-    aliquotShare: bounded(
-      mapping,
-      merged,
-      row,
-      plan.aliquotShare,
-      'a share above 0 and up to 1',
-      'share outside range',
-      (v) => v > 0 && v <= 1
-    ),
+    finalVolumeMl: volume === 'faulty' ? null : volume,
+    isVolumeFaulty: volume === 'faulty',
+    dilution: dilution === 'faulty' ? null : dilution,
+    aliquotShare: share === 'faulty' ? null : share,
     acquiredAt: acquiredAtOf(mapping, row)
   };
 }
 
+type BoundCode = 'not positive' | 'dilution below one' | 'share outside range';
+
+interface Bound {
+  readonly from: NumberColumn | null;
+  readonly expected: string;
+  readonly code: BoundCode;
+  readonly isWithin: (value: number) => boolean;
+}
+
+/** @returns null for an empty cell, 'faulty' for one whose problem has been reported */
 function bounded(
   { sheet, decimalOf, problems }: SheetMapping,
   merged: CellReader,
   row: number,
-  from: NumberColumn | null,
-  expected: string,
-  code: 'not positive' | 'dilution below one' | 'share outside range',
-  isWithin: (value: number) => boolean
-): number | null {
+  { from, expected, code, isWithin }: Bound
+): number | null | 'faulty' {
   if (!from) return null;
   const cell = merged(row, from.column);
   const at = { sheet: sheet.name, row, column: from.column, expected };
   const number = readNumberCell(cell, { ...at, decimal: decimalOf(from.column) }, problems);
-  if (number.state === 'missing' || number.state === 'unusable') return null;
+  if (number.state === 'missing') return null;
+  if (number.state === 'unusable') return 'faulty';
   const value = number.state === 'value' ? convert(number.value, from.factor) : null;
   if (value !== null && isWithin(value)) return value;
   problems.error({
@@ -100,7 +106,7 @@ function bounded(
     what: `“${textOf(cell)}” stands where ${expected} belongs.`,
     fix: 'Correct the cell, or leave it empty.'
   });
-  return null;
+  return 'faulty';
 }
 
 function acquiredAtOf({ sheet, plan, problems }: SheetMapping, row: number): string | null {

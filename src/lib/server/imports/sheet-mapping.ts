@@ -12,6 +12,8 @@ export interface SheetMapping {
   readonly analytes: NameMatcher<string>;
   readonly places: PlaceFinder;
   readonly decimalOf: (column: number) => DecimalMark | null;
+  /** Whether a panel entry is calibrated with an internal standard. */
+  readonly hasInternalStandard: (panelEntryId: string) => boolean;
   readonly problems: ProblemList;
 }
 

@@ -8,6 +8,9 @@ export interface ReadMeContent {
   readonly demoLabel: string | null;
 }
 
+/** Named, since programs fall back to different fonts where a bold one has no name. */
+export const templateFont = { name: 'Calibri', family: 2, size: 11 } as const;
+
 const meanings: readonly (readonly [string, string])[] = [
   [
     'an empty cell, -, n/a',
@@ -48,14 +51,21 @@ export function fillReadMe(
   { experiment, panel, layout, demoLabel }: ReadMeContent
 ): void {
   sheet.getColumn(1).width = 28;
-  sheet.getColumn(2).width = 110;
+  sheet.getColumn(2).width = 90;
+  sheet.getColumn(2).alignment = { wrapText: true, vertical: 'top' };
+  sheet.getColumn(1).alignment = { vertical: 'top' };
+  sheet.pageSetup = { fitToPage: true, fitToWidth: 1, fitToHeight: 0 };
 
   function heading(text: string): void {
     sheet.addRow([]);
-    sheet.addRow([text]).font = { bold: true };
+    sheet.addRow([text]).font = { ...templateFont, bold: true };
   }
 
-  sheet.addRow([`How to fill in the template of ${experiment.title}`]).font = { bold: true, size: 13 };
+  sheet.addRow([`How to fill in the template of ${experiment.title}`]).font = {
+    ...templateFont,
+    bold: true,
+    size: 13
+  };
   if (demoLabel !== null) sheet.addRow([demoLabel]);
   sheet.addRow(['Experiment id', experiment.id]);
   sheet.addRow([

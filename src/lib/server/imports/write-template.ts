@@ -1,6 +1,6 @@
 import ExcelJS from 'exceljs';
 import { markNames, markSheet, readMeSheet, templateVersion } from './template-mark';
-import { fillReadMe } from './template-read-me';
+import { fillReadMe, templateFont } from './template-read-me';
 import type { Expectation, ExperimentExpectation, PanelExpectation } from './types';
 
 export interface TemplateOptions {
@@ -86,7 +86,7 @@ export async function writeTemplate(
   const workbook = new ExcelJS.Workbook();
   const results = workbook.addWorksheet('Results');
   const title = demoLabel === null ? experiment.title : `${experiment.title} (${demoLabel})`;
-  results.addRow([title]).font = { bold: true, size: 13 };
+  results.addRow([title]).font = { ...templateFont, bold: true, size: 13 };
   results.addRow([
     'Fill in what was measured. The sheet “Read me” says what empty cells, ND, <x and >x mean.'
   ]);
@@ -173,8 +173,9 @@ function wideTable(experiment: ExperimentExpectation, panel: readonly PanelExpec
 
 function addTable(sheet: ExcelJS.Worksheet, columns: readonly Column[], rows: readonly Row[]): void {
   const header = sheet.addRow(columns.map((column) => column.header));
-  header.font = { bold: true };
   header.eachCell((cell) => {
+    cell.font = { ...templateFont, bold: true };
+    cell.alignment = { wrapText: true, vertical: 'bottom' };
     cell.border = { bottom: { style: 'thin' } };
   });
   for (const row of rows) sheet.addRow([...row]);
