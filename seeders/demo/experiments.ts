@@ -28,6 +28,7 @@ const inSolvent = {
   sampleVolumeMl: null,
   calibration: 0,
   standardsIn: 'vial',
+  masked: false,
   injections: 1
 } as const;
 
@@ -75,6 +76,7 @@ function extractionExperiment(
     performedOn,
     calibration: 1,
     standardsIn: 'extract',
+    masked: variant === 'B',
     sampleVolumeMl,
     injections: 1,
     layout: 'long',
@@ -162,7 +164,8 @@ export const demoExperiments: readonly PlannedExperiment[] = [
     'Intake water on the polymer at pH 2',
     '2026-10-16',
     [eluted('Elution', 'elution', 'B'), fraction('Load effluent', 'load effluent', 'balance', [], tenth)],
-    series('B', 5)
+    // Acids bring humic matter along at pH 2, so what it does to the signal is measured as well.
+    [...series('B', 5), ...portions('B', 'post-extraction spike', 4), ...portions('B', 'solvent standard', 4)]
   ),
   extractionExperiment(
     'C',

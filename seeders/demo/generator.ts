@@ -41,18 +41,33 @@ export interface SimulatedPortion {
 
 const standards = demoPanel.filter(({ role }) => role === 'injection internal standard');
 
+/** Where a solvent standard is found: in its vial, which is no fraction of anything. */
+const standardFraction: PlannedFraction = {
+  name: '',
+  kind: 'elution',
+  countsAs: 'method',
+  passedStages: [],
+  finalVolumeMl: 1,
+  aliquotShare: 1,
+  dilution: 1
+};
+
+/** ng by the label that go in where the experiment is spiked; what a portion receives afterwards is none of it. */
+function addedBefore(analyte: DemoAnalyte, experiment: PlannedExperiment, { kind }: PlannedPortion): number {
+  if (analyte.role === 'surrogate') {
+    const isForMatrixEffect = kind === 'post-extraction spike' || kind === 'solvent standard';
+    return isForMatrixEffect && experiment.stage === 'extraction' ? 0 : surrogateNg;
+  }
+  return kind === 'spiked' || kind === 'solvent standard' ? spikeNg : 0;
+}
+
 /** ng of a substance that one portion starts with. */
 function amountIn(analyte: DemoAnalyte, experiment: PlannedExperiment, portion: PlannedPortion): number {
-  const fromWater = experiment.stage === 'extraction' && portion.kind !== 'method blank';
-  const native = fromWater ? (analyte.nativeNgPerL * sampleVolumeMl) / 1000 : 0;
-  const handled = experiment.stage === 'extraction' ? analyte.contaminationNg : 0;
-  const added =
-    analyte.role === 'surrogate'
-      ? surrogateNg
-      : portion.kind === 'spiked' || portion.kind === 'solvent standard'
-        ? spikeNg
-        : 0;
-  return native + handled + added * analyte.strength;
+  const isExtracted = experiment.stage === 'extraction' && portion.kind !== 'solvent standard';
+  const native =
+    isExtracted && portion.kind !== 'method blank' ? (analyte.nativeNgPerL * sampleVolumeMl) / 1000 : 0;
+  const handled = isExtracted ? analyte.contaminationNg : 0;
+  return native + handled + addedBefore(analyte, experiment, portion) * analyte.strength;
 }
 
 function shiftsOf(chance: Random, evaporation: number): Shifts {
@@ -76,7 +91,10 @@ export function simulatePortions(
       demoRecovered.map((analyte) => {
         const scatter = chance.factor(experiment.scatter.substance * analyte.unrest);
         const amount = amountIn(analyte, experiment, portion) * whole * scatter;
-        const { collected, lost } = experiment.split(analyte, shiftsOf(chance, evaporation));
+        const { collected, lost } =
+          portion.kind === 'solvent standard'
+            ? { collected: { [standardFraction.name]: 1 }, lost: 0 }
+            : experiment.split(analyte, shiftsOf(chance, evaporation));
         const fractions = Object.fromEntries(
           Object.entries(collected).map(([name, share]) => [name, amount * share])
         );
@@ -99,7 +117,8 @@ function inject(
   seed: number,
   calibration: number,
   concentrations: ReadonlyMap<string, number>,
-  standardConcentration: number
+  standardConcentration: number,
+  signal: (analyte: DemoAnalyte) => number = () => 1
 ): Pick<SimulatedInjection, 'areas' | 'standardAreas'> {
   const volume = chance.factor(0.01);
   const area = (analyte: DemoAnalyte, concentration: number) =>
@@ -113,7 +132,7 @@ function inject(
   return {
     areas: new Map(
       demoRecovered.map((analyte) => {
-        const concentration = concentrations.get(analyte.name) ?? 0;
+        const concentration = (concentrations.get(analyte.name) ?? 0) * signal(analyte);
         const least = analyte.internalStandard
           ? (leastNgPerMl * standardConcentration) / standardNgPerMl
           : leastNgPerMl;
@@ -126,48 +145,62 @@ function inject(
   };
 }
 
-const nullFraction: PlannedFraction = {
-  name: '',
-  kind: 'elution',
-  countsAs: 'method',
-  passedStages: [],
-  finalVolumeMl: 1,
-  aliquotShare: 1,
-  dilution: 1
-};
+/** What of a portion is measured: its fractions; after a late spike only the extract; of a standard the vial. */
+function measuredFractions(
+  { fractions }: PlannedExperiment,
+  { kind }: PlannedPortion
+): readonly PlannedFraction[] {
+  if (kind === 'solvent standard') return [standardFraction];
+  return kind === 'post-extraction spike'
+    ? fractions.filter(({ countsAs }) => countsAs === 'method')
+    : fractions;
+}
 
 /** Every injection of an experiment, with the areas that the instrument reports. */
 export function simulateExperiment(
   experiment: PlannedExperiment,
   seed = demoSeed
 ): readonly SimulatedInjection[] {
-  const fractions = experiment.fractions.length > 0 ? experiment.fractions : [nullFraction];
-  return simulatePortions(experiment, seed).flatMap(({ portion, contents }) =>
-    fractions.flatMap((fraction) => {
-      const chance = createRandom(seed, `vial ${experiment.key} ${portion.label} ${fraction.name}`);
-      const finalVolumeMl =
-        experiment.stage === 'instrument'
-          ? fraction.finalVolumeMl
-          : Number((fraction.finalVolumeMl * (1 + chance.normal(0.02))).toFixed(2));
-      const vialMl = finalVolumeMl * fraction.dilution;
-      const concentrations = new Map(
-        [...contents].map(([name, content]) => [
-          name,
-          ((content.fractions[fraction.name] ?? 0) * fraction.aliquotShare) / vialMl
-        ])
-      );
-      const standardConcentration = experiment.standardsIn === 'vial' ? standardNgPerMl : standardNg / vialMl;
-      return Array.from({ length: experiment.injections }, (_, index) => ({
-        sample: portion.label,
-        fraction: fraction.name === '' ? null : fraction.name,
-        injection: index + 1,
-        finalVolumeMl,
-        dilution: fraction.dilution,
-        aliquotShare: fraction.aliquotShare,
-        ...inject(chance, seed, experiment.calibration, concentrations, standardConcentration)
-      }));
+  return simulatePortions(experiment, seed).flatMap((simulated) =>
+    measuredFractions(experiment, simulated.portion).flatMap((fraction) =>
+      simulateVial(experiment, simulated, fraction, seed)
+    )
+  );
+}
+
+function simulateVial(
+  experiment: PlannedExperiment,
+  { portion, contents }: SimulatedPortion,
+  fraction: PlannedFraction,
+  seed: number
+): readonly SimulatedInjection[] {
+  const chance = createRandom(seed, `vial ${experiment.key} ${portion.label} ${fraction.name}`);
+  const isStandard = portion.kind === 'solvent standard';
+  const finalVolumeMl = isStandard
+    ? fraction.finalVolumeMl
+    : Number((fraction.finalVolumeMl * (1 + chance.normal(0.02))).toFixed(2));
+  const vialMl = finalVolumeMl * fraction.dilution;
+  const late = portion.kind === 'post-extraction spike' ? spikeNg * chance.factor(0.01) : 0;
+  const concentrations = new Map(
+    demoRecovered.map(({ name, role, strength }) => {
+      const found = (contents.get(name)?.fractions[fraction.name] ?? 0) * fraction.aliquotShare;
+      return [name, (found + (role === 'target' ? late * strength : 0)) / vialMl];
     })
   );
+  const isMasked =
+    experiment.masked && !isStandard && portion.kind !== 'method blank' && fraction.countsAs === 'method';
+  const standardConcentration = experiment.standardsIn === 'vial' ? standardNgPerMl : standardNg / vialMl;
+  return Array.from({ length: experiment.injections }, (_, index) => ({
+    sample: portion.label,
+    fraction: isStandard ? null : fraction.name,
+    injection: index + 1,
+    finalVolumeMl,
+    dilution: fraction.dilution,
+    aliquotShare: fraction.aliquotShare,
+    ...inject(chance, seed, experiment.calibration, concentrations, standardConcentration, (analyte) =>
+      isMasked ? analyte.masking : 1
+    )
+  }));
 }
 
 export const levelLabel = (calibration: number, level: number): string =>

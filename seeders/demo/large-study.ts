@@ -58,9 +58,9 @@ interface Invented {
 function invent(name: string, seed: number): Invented {
   const chance = createRandom(seed, name);
   const held = chance.uniform() ** 0.15;
-  const first = held * chance.uniform() ** 0.3;
-  const second = (held - first) * 0.9;
-  const carbon = (1 - held) * 0.8;
+  const first = held * (0.4 + 0.6 * chance.uniform());
+  const second = (held - first) * chance.uniform();
+  const carbon = (1 - held) * 0.9 * chance.uniform();
   return {
     response: 1000 + 7000 * chance.uniform(),
     nativeNg: Math.max(0, 30 * chance.uniform() - 15),

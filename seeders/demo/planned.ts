@@ -44,20 +44,23 @@ export interface PlannedExperiment {
   readonly portions: readonly PlannedPortion[];
   /** Where an amount ends that is put in at this stage, by fraction. */
   readonly split: (analyte: DemoAnalyte, shifts?: Shifts) => Split;
+  /** Humic matter in the extracts masks some signals. */
+  readonly masked: boolean;
   /** Relative standard deviations: of a whole portion, and of one substance in it. */
   readonly scatter: { readonly portion: number; readonly substance: number };
 }
 
-const prefixes: Readonly<Record<'spiked' | 'unspiked' | 'method blank' | 'solvent standard', string>> = {
+const prefixes: Readonly<Record<ReplicateKind, string>> = {
   spiked: 'S',
   unspiked: 'N',
   'method blank': 'B',
+  'post-extraction spike': 'P',
   'solvent standard': 'R'
 };
 
 export function portions(
   key: string,
-  kind: keyof typeof prefixes,
+  kind: ReplicateKind,
   count: number,
   batch: string | null = null,
   from = 1

@@ -84,16 +84,20 @@ function groupsOf(portions: readonly PlannedPortion[]): readonly (readonly Plann
   return [...groups.values()];
 }
 
-/** What each kind of portion receives: targets where it is spiked, surrogates always. */
-function spikesOf(experiment: PlannedExperiment) {
-  const kinds = [...new Set(experiment.portions.map(({ kind }) => kind))];
-  return kinds.map((kind) => ({
-    kind,
-    targetsNg: kind === 'spiked' || kind === 'solvent standard' ? spikeNg : null,
-    surrogatesNg: surrogateNg,
-    extractionStandardsNg: null,
-    entries: {}
-  }));
+/** What each kind of portion receives: targets where it is spiked, surrogates unless it only shows the matrix effect. */
+function spikesOf({ portions, stage }: PlannedExperiment) {
+  const kinds = [...new Set(portions.map(({ kind }) => kind))];
+  return kinds.map((kind) => {
+    const showsMatrixEffect =
+      stage === 'extraction' && (kind === 'post-extraction spike' || kind === 'solvent standard');
+    return {
+      kind,
+      targetsNg: kind === 'unspiked' || kind === 'method blank' ? null : spikeNg,
+      surrogatesNg: showsMatrixEffect ? null : surrogateNg,
+      extractionStandardsNg: null,
+      entries: {}
+    };
+  });
 }
 
 /** What an experiment is calibrated by, and whether the same run measured the levels too. */

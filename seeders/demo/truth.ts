@@ -104,6 +104,11 @@ export function concentrationSplit(analyte: DemoAnalyte, shifts = noShifts): Spl
   return { collected: { Extract: kept }, lost: 1 - kept };
 }
 
+/** What the matrix leaves of a signal in the extract of a variant; 1: all of it. */
+export function signalLeft(analyte: DemoAnalyte, variant: VariantCode): number {
+  return variant === 'B' ? analyte.masking : 1;
+}
+
 /** The fractions of an extraction that are dried and concentrated before they are measured. */
 export const methodFractions: Readonly<Record<VariantCode, readonly string[]>> = {
   A: ['Dichloromethane extract'],
