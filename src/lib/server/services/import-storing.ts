@@ -102,8 +102,10 @@ const notWaiting = (state: string): Conflict =>
   );
 
 function refuseProblems(mapped: MappedImport, questionsConfirmed: boolean): void {
+  // A question that wants a declaration has left cells unread: confirming it would drop them without a word.
   const blocking = mapped.problems.filter(
-    ({ severity }) => severity === 'error' || (severity === 'question' && !questionsConfirmed)
+    ({ severity, answer }) =>
+      severity === 'error' || (severity === 'question' && (answer !== 'confirm' || !questionsConfirmed))
   );
   if (blocking.length > 0) {
     throw new Invalid(
