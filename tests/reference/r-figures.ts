@@ -1,14 +1,12 @@
 import { studentizedRangeUpper } from '../../src/lib/server/stats/studentized-range';
 import { noncentralUpper } from '../../src/lib/server/stats/noncentral-t';
+import { fisherUpper, normalQuantile, studentTwoSided } from '../../src/lib/server/stats/distributions';
 import {
   chiSquareQuantile,
   chiSquareUpperQuantile,
   fisherQuantile,
-  fisherUpper,
-  normalQuantile,
-  studentQuantile,
-  studentTwoSided
-} from '../../src/lib/server/stats/distributions';
+  studentQuantile
+} from '../../src/lib/server/stats/quantiles';
 import * as stats from '../../src/lib/server/stats/index';
 import type { Estimate, Interval, Observation } from '../../src/lib/server/stats/index';
 import { insectSprays, npk, plantGrowth, sleep, toothGrowth, warpbreaks } from './data/r-datasets';

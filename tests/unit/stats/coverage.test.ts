@@ -10,10 +10,10 @@ import {
 import { normalSource } from './random';
 
 /*
- * How often a 95 % interval holds the truth, over normal replicates from a fixed seed. With 3000 studies per cell the
- * binomial standard error is 0.4 points; four of them are allowed on top of what a figure may be off by nature.
+ * How often a 95 % interval holds the truth, over normal replicates from a fixed seed. With 2000 studies per cell the
+ * binomial standard error is 0.5 points; four of them are allowed on top of what a figure may be off by nature.
  */
-const studies = 3000;
+const studies = 2000;
 const nominal = 95;
 const noise = 4 * 100 * Math.sqrt((0.95 * 0.05) / studies);
 const sizes = [3, 6, 12];

@@ -1,4 +1,4 @@
-import { chiSquareQuantile, chiSquareUpperQuantile, studentQuantile } from './distributions';
+import { chiSquareQuantile, chiSquareUpperQuantile, studentQuantile } from './quantiles';
 import { finiteValues, fractionOfOne } from './guards';
 import { moments } from './moments';
 import type { Description, Interval } from './types';

@@ -1,4 +1,4 @@
-import { studentQuantile } from './distributions';
+import { studentQuantile } from './quantiles';
 import { StatsError } from './errors';
 import { finite, finiteValues, notNegative, positive } from './guards';
 import { moments } from './moments';

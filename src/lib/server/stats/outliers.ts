@@ -1,4 +1,5 @@
-import { fisherQuantile, studentQuantile, studentUpper } from './distributions';
+import { studentUpper } from './distributions';
+import { fisherQuantile, studentQuantile } from './quantiles';
 import { finiteGroups, finiteValues, fractionOfOne } from './guards';
 import { moments } from './moments';
 

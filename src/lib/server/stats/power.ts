@@ -1,4 +1,5 @@
-import { chiSquareCdf, chiSquareQuantile, studentQuantile } from './distributions';
+import { chiSquareCdf } from './distributions';
+import { chiSquareQuantile, studentQuantile } from './quantiles';
 import { StatsError } from './errors';
 import { finite, fractionOfOne, positive } from './guards';
 import { noncentralUpper } from './noncentral-t';

@@ -1,5 +1,5 @@
 import { meanInterval } from './describe';
-import { studentQuantile } from './distributions';
+import { studentQuantile } from './quantiles';
 import { noEstimate, type Estimate } from './types';
 
 /** One source of variance of a figure and the degrees of freedom it is known with. */
