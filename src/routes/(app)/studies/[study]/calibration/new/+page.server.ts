@@ -21,7 +21,7 @@ export const actions: Actions = {
   default: ({ request, locals, params }) =>
     answerForm(request, async (_fields, form) => {
       const sent = formObject(form);
-      const levels = filledRows(sent.levels, 'label', 'concentrationNgPerMl');
+      const levels = filledRows(sent.levels, 'concentrationNgPerMl');
       const id = await createCalibrationSet(
         memberIn(locals),
         params.study,
