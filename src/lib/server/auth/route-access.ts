@@ -45,6 +45,59 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   '/(app)/lab/settings': { read: 'member', write: { default: 'lab.settings' } },
   '/(app)/lab/history': { read: 'lab.settings' },
   '/(app)/studies/[study]/history': { read: 'studies.see' },
+  '/(app)/library': { read: 'studies.see' },
+  '/(app)/library/analytes': { read: 'studies.see' },
+  '/(app)/library/analytes/new': { read: 'library.edit', write: { default: 'library.edit' } },
+  '/(app)/library/analytes/[analyte]': { read: 'studies.see' },
+  '/(app)/library/analytes/[analyte]/edit': { read: 'library.edit', write: { default: 'library.edit' } },
+  '/(app)/library/criteria': { read: 'studies.see' },
+  '/(app)/library/criteria/new': { read: 'library.edit', write: { default: 'library.edit' } },
+  '/(app)/library/criteria/[set]': { read: 'studies.see' },
+  '/(app)/library/criteria/[set]/edit': { read: 'library.edit', write: { default: 'library.edit' } },
+
+  '/(app)/studies': { read: 'studies.see' },
+  '/(app)/studies/new': {
+    read: 'studies.edit',
+    write: { look: 'studies.edit', create: 'studies.edit' }
+  },
+  '/(app)/studies/[study]/aim': { read: 'studies.see', write: { default: 'studies.edit' } },
+  '/(app)/studies/[study]/panel': {
+    read: 'studies.see',
+    write: { paste: 'studies.edit', set: 'studies.edit', renew: 'studies.edit', remove: 'studies.edit' }
+  },
+  '/(app)/studies/[study]/variants': { read: 'studies.see' },
+  '/(app)/studies/[study]/variants/new': { read: 'studies.edit', write: { default: 'studies.edit' } },
+  '/(app)/studies/[study]/variants/[variant]': {
+    read: 'studies.see',
+    write: { name: 'studies.edit', steps: 'studies.edit', evidence: 'studies.edit', remove: 'studies.edit' }
+  },
+  '/(app)/studies/[study]/experiments': { read: 'studies.see' },
+  '/(app)/studies/[study]/experiments/new': { read: 'studies.edit', write: { default: 'studies.edit' } },
+  '/(app)/studies/[study]/experiments/[experiment]': {
+    read: 'studies.see',
+    write: {
+      exclude: 'data.exclude',
+      lift: 'data.exclude',
+      add: 'studies.edit',
+      preparation: 'data.enter',
+      observe: 'data.enter',
+      spike: 'data.enter',
+      remove: 'studies.edit'
+    }
+  },
+  '/(app)/studies/[study]/experiments/[experiment]/edit': {
+    read: 'studies.edit',
+    write: { default: 'studies.edit' }
+  },
+  '/(app)/studies/[study]/calibration': { read: 'studies.see' },
+  '/(app)/studies/[study]/calibration/new': {
+    read: 'calibrations.choose',
+    write: { default: 'calibrations.choose' }
+  },
+  '/(app)/studies/[study]/calibration/[set]': {
+    read: 'studies.see',
+    write: { choose: 'calibrations.choose' }
+  },
   '/(public)/help': { read: 'public' },
   '/(public)/help/figures': { read: 'public' },
   '/(public)/help/data-files': { read: 'public' },
