@@ -1,3 +1,4 @@
+import { ConfigurationError } from '../src/lib/server/config';
 import { verifyChain } from '../src/lib/server/db/audit-verify';
 import { Lab } from '../src/lib/server/db/models/lab';
 import { closeDatabase } from '../src/lib/server/db/sequelize';
@@ -21,6 +22,10 @@ async function main(): Promise<number> {
 
 try {
   process.exitCode = await main();
+} catch (error) {
+  if (!(error instanceof ConfigurationError)) throw error;
+  console.error(error.message);
+  process.exitCode = 1;
 } finally {
   await closeDatabase();
 }
