@@ -10,15 +10,15 @@ export const found = 1;
 export const notDetected = 2;
 
 /**
- * Replicates as a table, one row each, one column per fraction: what is there, the value with not-detected as zero, and
- * the value with not-detected at its limit.
+ * Replicates as a table, one row each, one column per fraction, beginning at `start` of its two arrays: what is there, and the
+ * value, for not-detected its limit.
  */
 export type FractionTable = {
   readonly rows: number;
   readonly columns: number;
+  readonly start: number;
   readonly state: Uint8Array;
-  readonly low: Float64Array;
-  readonly high: Float64Array;
+  readonly values: Float64Array;
 };
 
 /**
@@ -33,15 +33,9 @@ export function readFractions(
 ): FractionTable {
   const columns = names.length;
   const size = replicates.length * columns;
-  const table = {
-    rows: replicates.length,
-    columns,
-    state: new Uint8Array(size),
-    low: new Float64Array(size),
-    high: new Float64Array(size)
-  };
+  const state = new Uint8Array(size);
+  const values = new Float64Array(size);
   replicates.forEach((record, row) => {
-    const place = `${what} ${row + 1}`;
     let seen = 0;
     names.forEach((name, column) => {
       if (!Object.hasOwn(record, name)) return;
@@ -50,22 +44,22 @@ export function readFractions(
       if (value === null || value === undefined) return;
       const cell = row * columns + column;
       if (typeof value === 'object') {
-        table.state[cell] = notDetected;
-        table.high[cell] = notNegative(value.below, `${place}, limit of "${name}"`);
+        state[cell] = notDetected;
+        values[cell] = notNegative(value.below, `${what} ${row + 1}, limit of "${name}"`);
       } else {
-        table.state[cell] = found;
-        table.low[cell] = table.high[cell] = finite(value, `${place}, fraction "${name}"`);
+        state[cell] = found;
+        values[cell] = finite(value, `${what} ${row + 1}, fraction "${name}"`);
       }
     });
     if (seen < Object.keys(record).length) {
       const stranger = Object.keys(record).find((key) => !names.includes(key));
       throw new StatsError(
         'mismatch',
-        `${place} holds "${stranger}", which is not among the fractions given.`
+        `${what} ${row + 1} holds "${stranger}", which is not among the fractions given.`
       );
     }
   });
-  return table;
+  return { rows: replicates.length, columns, start: 0, state, values };
 }
 
 /** Rows that hold something in every one of the columns, and those that do not. */
@@ -76,25 +70,40 @@ export function splitComplete(
   const complete: number[] = [];
   const incomplete: number[] = [];
   for (let row = 0; row < table.rows; row += 1) {
-    const lacks = columns.some((column) => table.state[row * table.columns + column] === missing);
+    const begin = table.start + row * table.columns;
+    let lacks = false;
+    for (const column of columns) {
+      if (table.state[begin + column] === missing) lacks = true;
+    }
     (lacks ? incomplete : complete).push(row);
   }
   return { complete, incomplete };
 }
 
-/** Sum over the columns for each of the rows, from the `low` or the `high` side of the table. */
+/** Sum over the columns for each of the rows, not-detected values as zero ('low') or at their limit ('high'). */
 export function rowSums(
   table: FractionTable,
   rows: readonly number[],
   columns: readonly number[],
   side: 'low' | 'high'
 ): number[] {
-  const cells = table[side];
-  return rows.map((row) => {
+  const sums: number[] = [];
+  for (const row of rows) {
+    const begin = table.start + row * table.columns;
     let sum = 0;
-    for (const column of columns) sum += cells[row * table.columns + column]!;
-    return sum;
-  });
+    for (const column of columns) {
+      if (side === 'high' || table.state[begin + column] !== notDetected)
+        sum += table.values[begin + column]!;
+    }
+    sums.push(sum);
+  }
+  return sums;
+}
+
+/** A cell's value with not-detected as zero. */
+export function lowValue(table: FractionTable, row: number, column: number): number {
+  const cell = table.start + row * table.columns + column;
+  return table.state[cell] === notDetected ? 0 : table.values[cell]!;
 }
 
 /** How many cells of the rows and columns were not detected. */
@@ -105,8 +114,9 @@ export function countNotDetected(
 ): number {
   let count = 0;
   for (const row of rows) {
+    const begin = table.start + row * table.columns;
     for (const column of columns) {
-      if (table.state[row * table.columns + column] === notDetected) count += 1;
+      if (table.state[begin + column] === notDetected) count += 1;
     }
   }
   return count;

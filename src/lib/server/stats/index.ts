@@ -4,6 +4,14 @@ export * from './errors';
 export { brownForsythe, oneWayAnova, type BrownForsythe, type OneWayAnova, type VarianceLine } from './anova';
 export { assess, type Assessable, type Assessment, type Criteria, type Verdict } from './assess';
 export {
+  cellState,
+  columnMoments,
+  studyFigures,
+  type AnalyteFigures,
+  type ExperimentColumns,
+  type PortionColumns
+} from './bulk';
+export {
   fitCalibration,
   type CalibrationFit,
   type CalibrationModel,

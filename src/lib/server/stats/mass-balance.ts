@@ -1,18 +1,8 @@
-import { rsdInterval, relative, sdInterval } from './describe';
+import { balanceTables } from './balance-tables';
 import { StatsError } from './errors';
-import {
-  countNotDetected,
-  readFractions,
-  requireFractionNames,
-  rowSums,
-  splitComplete,
-  type FractionRecord,
-  type FractionTable
-} from './fraction-values';
+import { readFractions, requireFractionNames, type FractionRecord } from './fraction-values';
 import { fractionOfOne, sameLength } from './guards';
-import { takeApart, varianceTerms } from './net-mean';
-import type { Description, Estimate, Sample } from './types';
-import { linearEstimate } from './variance-terms';
+import type { Description, Estimate } from './types';
 
 export type CountsAs = 'method' | 'balance';
 
@@ -81,101 +71,12 @@ export function massBalance(input: MassBalanceInput): MassBalance {
   if (input.nativeBatches && native) {
     sameLength(input.nativeBatches.length, native.length, 'Batches of the native portions');
   }
-  const spiked = readFractions(replicates, names, 'Replicate');
-  const unspiked = native ? readFractions(native, names, 'Native portion') : null;
-
-  const all = names.map((_, column) => column);
-  const ofMethod = all.filter((column) => fractions[column]!.countsAs === 'method');
-  const methodRows = splitComplete(spiked, ofMethod);
-  const allRows = splitComplete(spiked, all);
-
-  const select = (columns: readonly number[], rows: readonly number[], complete: readonly number[]) =>
-    describeTotal({ spiked, unspiked, columns, rows, complete, input, level });
-
-  const method = ofMethod.length > 0 ? select(ofMethod, methodRows.complete, ofMethod) : null;
-  const balance = select(all, allRows.complete, all);
-  return {
-    fractions: balance === null ? [] : all.map((column) => fractionFigure(column, balance)),
-    method,
-    balance,
-    unaccounted: balance === null ? null : unaccountedOf(balance),
-    incomplete: { method: methodRows.incomplete, balance: allRows.incomplete }
-  };
-
-  function fractionFigure(column: number, whole: Total): FractionFigure {
-    const { df: _df, high: _high, ...figure } = select([column], allRows.complete, all)!;
-    const withoutIntervals = figure.notDetected > 0 ? { ci: null, sdCi: null, rsdCi: null } : {};
-    return {
-      ...figure,
-      ...withoutIntervals,
-      name: names[column]!,
-      countsAs: fractions[column]!.countsAs,
-      share: whole.mean > 0 ? figure.mean / whole.mean : null
-    };
-  }
-}
-
-type Selection = {
-  readonly spiked: FractionTable;
-  readonly unspiked: FractionTable | null;
-  /** Columns that are summed. */
-  readonly columns: readonly number[];
-  /** Spiked replicates used. */
-  readonly rows: readonly number[];
-  /** Columns in which a native portion has to be complete. */
-  readonly complete: readonly number[];
-  readonly input: MassBalanceInput;
-  readonly level: number;
-};
-
-/** The description of per-replicate sums; null when no replicate, or no native portion, is complete. */
-function describeTotal(selection: Selection): Total | null {
-  const { spiked, unspiked, columns, rows, complete, input, level } = selection;
-  const nativeRows = unspiked ? splitComplete(unspiked, complete).complete : [];
-  if (rows.length === 0 || (unspiked && nativeRows.length === 0)) return null;
-
-  const sample: Sample = {
-    values: rowSums(spiked, rows, columns, 'low'),
-    native: unspiked ? rowSums(unspiked, nativeRows, columns, 'low') : undefined,
-    batches: input.batches && rows.map((row) => input.batches![row]!),
-    nativeBatches:
-      unspiked && input.nativeBatches ? nativeRows.map((row) => input.nativeBatches![row]!) : undefined
-  };
-  const taken = takeApart(sample);
-  const { net } = taken;
-  const { se, df, ci } = linearEstimate(net.mean, varianceTerms([{ weight: 1, of: taken }]), level);
-  const notDetected = countNotDetected(spiked, rows, columns);
-  const high =
-    notDetected === 0
-      ? net.mean
-      : takeApart({ ...sample, values: rowSums(spiked, rows, columns, 'high') }).mean;
-  return {
-    n: net.n,
-    mean: net.mean,
-    sd: net.sd,
-    rsd: relative(net.sd, net.mean),
-    se,
-    min: net.min,
-    max: net.max,
-    ci,
-    sdCi: sdInterval(net.sd, net.n, level),
-    rsdCi: rsdInterval(net.sd, net.mean, net.n, level),
-    df,
-    high,
-    notDetected
-  };
-}
-
-function unaccountedOf(balance: Total): Estimate & { significant: boolean } {
-  const estimate = 100 - balance.mean;
-  const { ci } = balance;
-  const excludesZero = ci !== null && (ci.lower > 100 || ci.upper < 100);
-  const atLimits = 100 - balance.high;
-  return {
-    estimate,
-    se: balance.se,
-    df: balance.df,
-    ci: ci && { lower: 100 - ci.upper, upper: 100 - ci.lower, level: ci.level },
-    significant: excludesZero && atLimits !== 0 && Math.sign(atLimits) === Math.sign(estimate)
-  };
+  return balanceTables({
+    spiked: readFractions(replicates, names, 'Replicate'),
+    unspiked: native ? readFractions(native, names, 'Native portion') : null,
+    fractions,
+    batches: input.batches,
+    nativeBatches: input.nativeBatches,
+    level
+  }).figures;
 }

@@ -89,6 +89,18 @@ export function takeApart(sample: Sample, what = 'Sample'): NetMean {
 export function varianceTerms(
   parts: readonly { readonly weight: number; readonly of: NetMean }[]
 ): VarianceTerm[] | null {
+  // Almost every figure rests on one mean without a shared factor.
+  if (parts.length === 1 && !parts[0]!.of.components?.some((component) => component.shared !== null)) {
+    const { weight, of } = parts[0]!;
+    if (weight === 0) return [];
+    return (
+      of.components &&
+      of.components.map(({ gradient, variance, df }) => ({
+        variance: (weight * gradient) ** 2 * variance,
+        df
+      }))
+    );
+  }
   const weights = new Map<NetMean, number>();
   for (const { weight, of } of parts) weights.set(of, (weights.get(of) ?? 0) + weight);
 

@@ -1,5 +1,6 @@
 import { StatsError } from './errors';
 import {
+  lowValue,
   readFractions,
   requireFractionNames,
   splitComplete,
@@ -172,7 +173,7 @@ function weightedSums(table: FractionTable, rows: readonly number[], weights: re
   return rows.map((row) => {
     let sum = 0;
     weights.forEach((weight, column) => {
-      sum += weight * table.low[row * table.columns + column]!;
+      sum += weight * lowValue(table, row, column);
     });
     return sum;
   });

@@ -70,7 +70,15 @@ export function stageLosses(stages: readonly StageSample[], level = 0.95): Stage
     };
   });
   const adjusted = holm(rows.map((row) => row.p));
-  return rows.map((row, index) => ({ ...row, pAdjusted: adjusted[index]! }));
+  return rows.map(({ stage, recovered, stepRecovery, lost, regain, p }, index) => ({
+    stage,
+    recovered,
+    stepRecovery,
+    lost,
+    regain,
+    p,
+    pAdjusted: adjusted[index]!
+  }));
 }
 
 /** y = own/before on the log scale; `before` null means exactly 100. */
