@@ -6,7 +6,8 @@ import { createExperiment } from '../../src/lib/server/services/experiments';
 import { getPanel, pastePanel } from '../../src/lib/server/services/panels';
 import { createStudy, getStudy } from '../../src/lib/server/services/studies';
 import { createVariant } from '../../src/lib/server/services/variants';
-import { addToLibrary, type SeededLab } from './labs';
+import { addToLibrary } from '../library/stock-library';
+import type { SeededLab } from './labs';
 import {
   largeFractions,
   largeInjections,
