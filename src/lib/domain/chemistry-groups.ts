@@ -10,7 +10,8 @@ export interface GroupedAnalyte {
 }
 
 export interface ChemistryGroup {
-  readonly key: 'cation' | 'anion' | 'both' | 'neutral' | 'volatile' | 'hydrophilic' | 'hydrophobic';
+  readonly key:
+    'unknown' | 'cation' | 'anion' | 'both' | 'neutral' | 'volatile' | 'hydrophilic' | 'hydrophobic';
   readonly title: string;
   /** What the group asks of the procedure. */
   readonly question: string;
@@ -54,8 +55,11 @@ const isVolatile = (analyte: GroupedAnalyte): boolean =>
 export function chemistryGroups(analytes: readonly GroupedAnalyte[], ph = 7): readonly ChemistryGroup[] {
   const named = (belongs: (analyte: GroupedAnalyte) => boolean): readonly string[] =>
     analytes.filter(belongs).map(({ name }) => name);
+  // Without a pKa an analyte may be neutral or unknown; one without log Kow too has never been looked up.
+  const isUnknown = ({ pkaAcid, pkaBase, logKow }: GroupedAnalyte): boolean =>
+    pkaAcid.length === 0 && pkaBase.length === 0 && logKow === null;
   const charged = (charge: ReturnType<typeof chargeAt>) =>
-    named((analyte) => chargeAt(analyte, ph) === charge);
+    named((analyte) => !isUnknown(analyte) && chargeAt(analyte, ph) === charge);
   const groups: readonly ChemistryGroup[] = [
     {
       key: 'cation',
@@ -99,6 +103,12 @@ export function chemistryGroups(analytes: readonly GroupedAnalyte[], ph = 7): re
       title: 'Volatile',
       question: 'They may leave with the solvent while it is concentrated. How far down, and how warm?',
       names: named(isVolatile)
+    },
+    {
+      key: 'unknown',
+      title: 'Not known',
+      question: 'The library holds neither pKa nor log Kow of these, so nothing can be said of their charge.',
+      names: named(isUnknown)
     }
   ];
   return groups.filter(({ names }) => names.length > 0);

@@ -1,4 +1,4 @@
-import { figureText } from '$lib/domain/figure-text';
+import { givenText } from '$lib/domain/given-text';
 import type { ReplicateKind } from '$lib/domain/vocabulary';
 import type { SpikeView } from '$lib/views/experiments';
 
@@ -14,7 +14,7 @@ export function receivedText(spikes: readonly SpikeView[], kind: ReplicateKind):
   return [...groups.values()]
     .map(({ ng, role, names }) => {
       const what = names.length > 3 ? `${names.length} ${role}s` : names.join(', ');
-      return `${figureText(ng)} ng of ${what}`;
+      return `${givenText(ng)} ng of ${what}`;
     })
     .join('; ');
 }
