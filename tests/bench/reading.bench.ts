@@ -70,18 +70,28 @@ async function peakGrowth(bytes: Buffer): Promise<number> {
   return (peak - before) / 1e6;
 }
 
+function median(times: readonly number[]): number {
+  const sorted = [...times].sort((one, other) => one - other);
+  return sorted[Math.floor(sorted.length / 2)] ?? NaN;
+}
+
 function reading(rows: number, ratio: number, runs: number): Benchmark {
   return {
     name: `read a workbook of ${rows} rows × 8, guards included`,
     goal: { ratio, is: 'at most' },
     async run({ note }) {
       const bytes = await measurements(rows);
-      const floor = await medianMs(() => inflateAndScan(bytes), { runs, warmUps: 1 });
+      // In turn, so that what else the machine does falls on both alike.
+      const floors: number[] = [];
+      const figures: number[] = [];
+      for (let run = 0; run < runs; run++) {
+        floors.push(await medianMs(() => inflateAndScan(bytes), { runs: 1, warmUps: run === 0 ? 2 : 0 }));
+        figures.push(await medianMs(() => readWorkbook(bytes), { runs: 1, warmUps: run === 0 ? 2 : 0 }));
+      }
       note(
         `${rows} rows × 8: memory grew by ${(await peakGrowth(bytes)).toFixed(0)} MB at the most (goal: under 100)`
       );
-      const figure = await medianMs(() => readWorkbook(bytes), { runs, warmUps: 1 });
-      return { figure, floor, unit: 'ms' };
+      return { figure: median(figures), floor: median(floors), unit: 'ms' };
     }
   };
 }
@@ -122,7 +132,7 @@ const answering: Benchmark = {
 };
 
 export const benchmarks: readonly Benchmark[] = [
-  reading(9_000, 2.5, 7),
+  reading(9_000, 2.5, 11),
   reading(250_000, 2, 3),
   answering,
   refusal('a cell of 100 MB', oneHugeCell),

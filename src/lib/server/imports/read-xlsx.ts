@@ -75,7 +75,9 @@ async function readSheet(
   let within: 'v' | 'f' | 'is' | null = null;
 
   function finishCell(): void {
-    if (type === 'inlineStr') {
+    if (type === 'n' && value !== '') {
+      addNumber(Number(value), dateStyles[style] === true);
+    } else if (type === 'inlineStr') {
       const text = inline.take();
       if (text !== '') builder.addText(row, column, 'text', text);
     } else if (value === '') {

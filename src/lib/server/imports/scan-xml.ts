@@ -5,9 +5,9 @@ import { damaged, outOfProportion, Refusal } from './refusal';
 
 export interface XmlHandlers {
   /** Names come without their prefix. */
-  open?(name: string, attributes: Readonly<Record<string, string>>): void;
-  close?(name: string): void;
-  text?(text: string): void;
+  readonly open?: (name: string, attributes: Readonly<Record<string, string>>) => void;
+  readonly close?: (name: string) => void;
+  readonly text?: (text: string) => void;
 }
 
 const lessThan = 0x3c;
@@ -24,7 +24,7 @@ export async function scanXml(
   archive: Archive,
   part: string,
   limits: ReadingLimits,
-  handlers: XmlHandlers
+  { open, close, text }: XmlHandlers
 ): Promise<void> {
   const parser = new SaxesParser({ xmlns: false, position: false, fragment: false });
   let depth = 0;
@@ -41,16 +41,13 @@ export async function scanXml(
     depth++;
     if (depth > limits.depth)
       throw outOfProportion('This workbook nests its elements deeper than any workbook does.');
-    handlers.open?.(localName(tag.name), tag.attributes);
+    open?.(localName(tag.name), tag.attributes);
   });
   parser.on('closetag', (tag) => {
     depth--;
-    handlers.close?.(localName(tag.name));
+    close?.(localName(tag.name));
   });
-  if (handlers.text) {
-    const { text } = handlers;
-    parser.on('text', (content) => text.call(handlers, content));
-  }
+  if (text) parser.on('text', text);
 
   function refuseLongToken(piece: Buffer): void {
     const last = piece.lastIndexOf(lessThan);
