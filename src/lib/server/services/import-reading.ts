@@ -1,9 +1,13 @@
+import pLimit from 'p-limit';
 import type { Study } from '../db/models/study';
 import { mapInChild } from '../imports/read-in-child';
 import { Refusal } from '../imports/refusal';
 import type { Expectation, MappedImport, Workbook } from '../imports/types';
 import { bytesOf } from './imports';
 import { loadExpectation, nothingDeclared, type Declared } from './import-expectation';
+
+/** A reading child may take a few hundred MB: no more than this many at once in one process; others wait their turn. */
+const turns = pLimit(2);
 
 export type ImportReading =
   | { readonly kind: 'refused'; readonly sentence: string }
@@ -28,7 +32,7 @@ export async function readKeptFile(
     loadExpectation({ labId: study.labId, studyId: study.id }, declared)
   ]);
   try {
-    return { kind: 'read', expectation, ...(await mapInChild(bytes, expectation)) };
+    return { kind: 'read', expectation, ...(await turns(() => mapInChild(bytes, expectation))) };
   } catch (error) {
     if (error instanceof Refusal) return { kind: 'refused', sentence: error.message };
     throw error;
