@@ -67,6 +67,8 @@ export interface ResultRow {
 export interface ResultsTableView {
   readonly experiment: ExperimentChoice;
   readonly rows: readonly ResultRow[];
+  /** What holds for every row: a portion set aside, how something was subtracted. */
+  readonly notes: readonly string[];
   readonly rules: readonly RuleView[];
 }
 

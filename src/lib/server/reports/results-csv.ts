@@ -47,7 +47,7 @@ export function resultsCsv(view: ResultsTableView, about: About): string {
       row.reasons.join('; '),
       row.criteria,
       row.relative?.mean ?? null,
-      row.notes.join('; '),
+      [...row.notes, ...view.notes].join('; '),
       lab
     ])
   );

@@ -201,7 +201,7 @@ function resultsSheet(view: SummaryView): ReportSheet {
         row.reasons.join('; '),
         row.criteria,
         row.relative?.mean ?? null,
-        row.notes.join('; ')
+        [...row.notes, ...findings.results.notes].join('; ')
       ])
     )
   };

@@ -1,7 +1,7 @@
 import type { CompareCell, CompareVariant, CompareView } from '../../../views/findings';
 import { verdicts, type Verdict } from '../../../views/verdict';
 import type { Link } from './addresses';
-import { halfWidth } from './figure-parts';
+import { halfWidth, intervalOf } from './figure-parts';
 import type { StudyPanelEntry, StudyVariant } from './study-data';
 import type { StudyFigures, VariantContext } from './study-figures';
 import { experimentChoice } from './subject';
@@ -44,7 +44,7 @@ function cellOf(
   if (!method) return found.reasons.join('; ');
   return {
     mean: method.mean,
-    halfWidth: halfWidth(method.ci),
+    halfWidth: halfWidth(intervalOf(method)),
     n: method.n,
     verdict: found.verdict,
     reason: found.reasons.join('; '),

@@ -8,6 +8,15 @@ export function halfWidth(ci: Interval | null): number | null {
   return ci === null ? null : (ci.upper - ci.lower) / 2;
 }
 
+/** The interval of a method recovery, or null where nothing was detected at all: zeros that scatter by nothing say nothing. */
+export function intervalOf(total: {
+  readonly ci: Interval | null;
+  readonly sd: number | null;
+  readonly notDetected: number;
+}): Interval | null {
+  return total.notDetected > 0 && total.sd === 0 ? null : total.ci;
+}
+
 /** "95 %: 8.1 to 16.2" */
 export function intervalText(ci: Interval): string {
   return `${Math.round(ci.level * 100)} %: ${percentText(ci.lower)} to ${percentText(ci.upper)}`;
@@ -70,4 +79,15 @@ function plural(kind: string, count: number): string {
 /** "a, b and c" */
 export function listed(items: readonly string[]): string {
   return items.length < 2 ? items.join('') : `${items.slice(0, -1).join(', ')} and ${items.at(-1)}`;
+}
+
+/** A cause as a person wrote it, without the full stop that would end a sentence twice. */
+export function plainEnd(text: string): string {
+  return text.trim().replace(/\.+$/, '');
+}
+
+/** The first letter as a capital, the end as a full stop. */
+export function sentence(text: string): string {
+  const plain = plainEnd(text);
+  return `${plain.charAt(0).toUpperCase()}${plain.slice(1)}.`;
 }

@@ -9,7 +9,7 @@ import { balanceOf, type MethodFigures } from '../../amounts/method-figures';
 import { fractionsOf } from '../../amounts/portions';
 import type { Link } from './addresses';
 import { studyCriteria } from './criteria';
-import { halfWidth } from './figure-parts';
+import { halfWidth, intervalOf } from './figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { EntryFigures, StudyFigures } from './study-figures';
 import type { Subject } from './subject';
@@ -88,10 +88,10 @@ function rowOf(
     method: method && {
       mean: method.mean,
       n: method.n,
-      halfWidth: halfWidth(method.ci),
+      halfWidth: halfWidth(intervalOf(method)),
       sd: method.sd,
       rsd: method.rsd,
-      interval: method.ci
+      interval: intervalOf(method)
     },
     segments: segmentsOf(found, experiment, link),
     total: balance?.mean ?? null,

@@ -1,7 +1,7 @@
 import type { ResultRow, ResultsTableView } from '../../../views/findings';
 import type { Link } from './addresses';
 import { criteriaFor } from './criteria';
-import { criteriaText, ruleView } from './figure-parts';
+import { criteriaText, intervalOf, plainEnd, ruleView } from './figure-parts';
 import { incompleteSentence } from './mass-balance-view';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { EntryFigures, StudyFigures } from './study-figures';
@@ -15,16 +15,26 @@ export function resultsTableOf(
 ): ResultsTableView {
   const { rules } = figures.data.criteriaSet;
   const used: readonly string[] = ['mean recovery', 'relative standard deviation', 'minimum preparations'];
+  const rows = figures.targets.flatMap((entry) => {
+    const found = figures.entry(experiment.id, entry.id);
+    return !found.ready && found.kind === 'not spiked'
+      ? []
+      : [rowOf(figures, experiment, entry, found, link)];
+  });
+  const notes = commonNotes(rows);
   return {
     experiment: experimentChoice(figures, experiment),
-    rows: figures.targets.flatMap((entry) => {
-      const found = figures.entry(experiment.id, entry.id);
-      return !found.ready && found.kind === 'not spiked'
-        ? []
-        : [rowOf(figures, experiment, entry, found, link)];
-    }),
+    rows: rows.map((row) => ({ ...row, notes: row.notes.filter((note) => !notes.includes(note)) })),
+    notes,
     rules: rules.filter((rule) => used.includes(rule.type)).map(ruleView)
   };
+}
+
+/** What is said of every row is said once. */
+function commonNotes(rows: readonly ResultRow[]): string[] {
+  const [first] = rows;
+  if (!first || rows.length < 2) return [];
+  return first.notes.filter((note) => rows.every((row) => row.n === null || row.notes.includes(note)));
 }
 
 function rowOf(
@@ -64,7 +74,7 @@ function rowOf(
   return {
     ...base,
     ...(method
-      ? { n: method.n, mean: method.mean, sd: method.sd, rsd: method.rsd, interval: method.ci }
+      ? { n: method.n, mean: method.mean, sd: method.sd, rsd: method.rsd, interval: intervalOf(method) }
       : nothing),
     subtracted: found.input.subtracted?.meanPercent ?? null,
     verdict: found.verdict,
@@ -78,7 +88,7 @@ function rowOf(
 function notesOf(found: Extract<EntryFigures, { ready: true }>): string[] {
   const aside = found.input.portions
     .filter((portion) => portion.exclusion)
-    .map((portion) => `${portion.replicate.label} is set aside: ${portion.exclusion?.cause ?? ''}`);
+    .map((portion) => `${portion.replicate.label} is set aside: ${plainEnd(portion.exclusion?.cause ?? '')}`);
   const lacking = found.incomplete.method.map(
     (item) => `${item.portion.replicate.label} lacks ${item.lacks.join(' and ')}`
   );

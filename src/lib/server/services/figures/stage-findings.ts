@@ -1,6 +1,6 @@
 import { percentText } from '../../../domain/figure-text';
 import type { StageFindings } from '../../../views/findings';
-import type { StageRow } from '../../amounts/variant-figures';
+import type { EntryInVariant, StageRow } from '../../amounts/variant-figures';
 import type { Link } from './addresses';
 import { intervalText, listed } from './figure-parts';
 import type { StudyFigures, VariantContext } from './study-figures';
@@ -51,7 +51,7 @@ export function stageFindingsOf(
   const [worst] = named;
   const lead =
     gone.length > 0
-      ? `Nothing of ${listed(gone.map((item) => item.entry.name))} ends in the extract.`
+      ? goneSentence(figures, context, gone)
       : worst
         ? lossSentence(worst)
         : unnamedSentence(rows, context);
@@ -63,6 +63,28 @@ export function stageFindingsOf(
     })),
     notes: notesOf(context, rows)
   };
+}
+
+/** "Nothing of Gabapentin ends in the extract (n = 6); the load effluent holds 99.7 %." */
+function goneSentence(
+  figures: StudyFigures,
+  context: VariantContext,
+  gone: readonly EntryInVariant[]
+): string {
+  const [only] = gone;
+  if (gone.length > 1 || !only || !context.top) {
+    return `Nothing of ${listed(gone.map((item) => item.entry.name))} ends in the extract.`;
+  }
+  const found = figures.entry(context.top.id, only.entry.id);
+  const n = only.rows.at(-1)?.n ?? 0;
+  const elsewhere = found.ready
+    ? [...found.balance.fractions].sort((a, b) => b.mean - a.mean).find((item) => item.mean > 10)
+    : undefined;
+  const place = found.ready
+    ? found.input.fractions.find((item) => item.id === elsewhere?.name)?.name.toLowerCase()
+    : null;
+  const rest = elsewhere && place ? `; the ${place} holds ${percentText(elsewhere.mean)} % of the spike` : '';
+  return `Nothing of ${only.entry.name} ends in the extract (n = ${n})${rest}.`;
 }
 
 /** "Drying takes 12 points of NDMA (95 %: 8 to 16; n = 7 and 6)." */

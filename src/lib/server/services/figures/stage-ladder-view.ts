@@ -200,7 +200,9 @@ function gapOf(
     if (item.refusal) return [{ name: item.entry.name, reason: item.refusal }];
     if (gap) return [{ name: item.entry.name, reason: gap.reason }];
     const row = item.rows.find((candidate) => candidate.stage === stage.key);
-    return stage.kind === 'loss' && (row?.lost?.estimate ?? null) === null
+    // Said once, at the stage where it shows, and not again at every stage below.
+    const isTop = item.rows.at(-1) === row;
+    return isTop && stage.kind === 'loss' && (row?.lost?.estimate ?? null) === null
       ? [{ name: item.entry.name, reason: 'nothing of it came back, so the losses cannot be told apart' }]
       : [];
   });

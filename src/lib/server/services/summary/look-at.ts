@@ -1,3 +1,4 @@
+import { listed, plainEnd } from '../figures/figure-parts';
 import type {
   LookAt,
   SummaryExclusion,
@@ -21,7 +22,7 @@ export function lookAtOf(
       items: exclusions
         .filter((item) => item.lifted === null)
         .map((item) => ({
-          text: `Experiment ${item.experiment}, ${item.what}: ${item.cause} (${item.by}, ${item.at.slice(0, 10)})`,
+          text: `Experiment ${item.experiment}, ${item.what}: ${plainEnd(item.cause)} (${item.by}, ${item.at.slice(0, 10)})`,
           href: item.href
         })),
       none: 'Nothing is set aside.'
@@ -40,25 +41,46 @@ export function lookAtOf(
 }
 
 function deviations(findings: readonly SummaryFindings[]): LookAt['items'] {
-  return findings.flatMap(({ heading, results, portions }) => [
-    ...results.rows
-      .filter((row) => row.verdict === 'outside')
-      .map((row) => ({
-        text: `${heading}: ${row.name} is outside (${row.reasons.join('; ')})`,
-        href: row.href
-      })),
-    ...portions.surrogates.flatMap((row) => {
-      const outside = portions.portions.filter((_, index) => row.cells[index]?.holds === false);
-      return outside.length === 0
+  return findings.flatMap((of) => {
+    const outside = of.results.rows.filter((row) => row.verdict === 'outside');
+    const surrogates = of.portions.surrogates.flatMap((row) => {
+      const where = of.portions.portions.filter(
+        (_, index) => row.cells[index]?.holds === false && !row.cells[index].setAside
+      );
+      return where.length === 0
         ? []
         : [
             {
-              text: `${heading}: surrogate ${row.name} is outside in ${outside.map((portion) => portion.label).join(', ')}`,
+              text: `${shortName(of)}: surrogate ${row.name} is outside in ${where.map((portion) => portion.label).join(', ')}`,
               href: row.href
             }
           ];
-    })
-  ]);
+    });
+    return [...outsideItems(of, outside), ...surrogates];
+  });
+}
+
+/** One by one while they are few; many stand in one line that leads to their table. */
+function outsideItems(of: SummaryFindings, outside: SummaryFindings['results']['rows']): LookAt['items'] {
+  const few = 3;
+  if (outside.length <= few) {
+    return outside.map((row) => ({
+      text: `${shortName(of)}: ${row.name} is outside (${row.reasons.join('; ')})`,
+      href: row.href
+    }));
+  }
+  const names = listed(outside.map((row) => row.name));
+  return [
+    {
+      text: `${shortName(of)}: ${outside.length} analytes are outside: ${names}`,
+      href: `#findings-${of.key}`
+    }
+  ];
+}
+
+/** "Variant D" or "Experiment 9". */
+function shortName({ heading }: SummaryFindings): string {
+  return heading.split(',')[0] ?? heading;
 }
 
 function gaps(
@@ -69,18 +91,18 @@ function gaps(
   const empty = stages
     .filter((stage) => stage.experiments.length === 0)
     .map((stage) => `${stage.name} has no experiment.`);
-  const unjudged = findings.flatMap(({ heading, results }) =>
-    results.rows
+  const unjudged = findings.flatMap((of) =>
+    of.results.rows
       .filter((row) => row.verdict === null || row.verdict === 'too few')
       .map((row) => ({
-        text: `${heading}: ${row.name}, ${row.reasons.join('; ') || 'no verdict'}`,
+        text: `${shortName(of)}: ${row.name}, ${row.reasons.join('; ') || 'no verdict'}`,
         href: row.href
       }))
   );
-  const incomplete = findings.flatMap(({ heading, balance }) =>
-    balance.rows
+  const incomplete = findings.flatMap((of) =>
+    of.balance.rows
       .filter((row) => row.incomplete !== null)
-      .map((row) => ({ text: `${heading}: ${row.name}, ${row.incomplete ?? ''}`, href: row.href }))
+      .map((row) => ({ text: `${shortName(of)}: ${row.name}, ${row.incomplete ?? ''}`, href: row.href }))
   );
   return [
     ...[...empty, ...missingEvidence].map((text) => ({ text, href: null })),

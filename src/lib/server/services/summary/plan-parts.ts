@@ -48,14 +48,21 @@ export function analyteView(figures: StudyFigures, entry: StudyPanelEntry): Summ
 function propertyText(value: StudyPanelEntry['properties'][AnalyteProperty]): string | null {
   if (value === null) return null;
   if (typeof value === 'string') return value === '' ? null : value;
-  if (typeof value === 'number') return figureText(value, 4);
-  return value.length === 0 ? null : value.map((item) => figureText(item)).join(', ');
+  if (typeof value === 'number') return figureAsGiven(value);
+  return value.length === 0 ? null : value.map(figureAsGiven).join(', ');
+}
+
+/** A property keeps the digits it was entered with. */
+function figureAsGiven(value: number): string {
+  return Math.abs(value) < 1e-3 || Math.abs(value) >= 1e6
+    ? figureText(value)
+    : String(value).replace('-', '\u2212');
 }
 
 /** Sources are kept under the property's name, in whichever of the two spellings it was stored. */
 function sourceOf(entry: StudyPanelEntry, key: AnalyteProperty): string {
   const spelled = key.replace(/[A-Z]/g, (letter) => `_${letter.toLowerCase()}`);
-  return entry.sources[key] ?? entry.sources[spelled] ?? 'no source recorded';
+  return entry.sources[key] ?? entry.sources[spelled] ?? (key === 'formula' ? '' : 'no source recorded');
 }
 
 export function variantView(

@@ -3,6 +3,7 @@ import type { ProvenanceInput, ProvenanceView } from '../../../../views/provenan
 import type { AmountTrace, InjectionAmount } from '../../../amounts/injection-amount';
 import { portionOf } from '../../../amounts/portions';
 import { addressText, type Link } from '../addresses';
+import { sentence } from '../figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from '../study-data';
 import type { StudyFigures } from '../study-figures';
 import { amountFormulas } from './formulas';
@@ -62,7 +63,7 @@ export function amountProvenance(
     sentences: [
       ...(share ? [share] : []),
       ...(amount.state === 'not detected' ? ['Not detected: counted as zero, and at this limit.'] : []),
-      ...notes.map((note) => `${note.charAt(0).toUpperCase()}${note.slice(1)}.`)
+      ...notes.map(sentence)
     ],
     inputs: used.flatMap((item) => inputsOf(figures, experiment, entry, item, used.length > 1, link)),
     cells: [...used, ...unused].map((item) =>

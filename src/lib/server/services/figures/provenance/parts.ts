@@ -70,13 +70,22 @@ export function percentFigure(
   };
 }
 
-/** An input with its value rounded for the drawer, where figures are opened: five digits. */
+/** An input of a figure: opened, so with all the digits that were given, or six of what was computed. */
 export function input(
   label: string,
   value: number | string | null,
   unit: string,
   more: { readonly note?: string | null; readonly href?: string | null } = {}
 ): ProvenanceInput {
-  const text = value === null ? '—' : typeof value === 'string' ? value : figureText(value, 5);
+  const text = value === null ? '—' : typeof value === 'string' ? value : digitsOf(value);
   return { label, value: text, unit, note: more.note ?? null, href: more.href ?? null };
+}
+
+/** Whole numbers (areas) as they are, the rest to six significant digits without idle zeros. */
+function digitsOf(value: number): string {
+  if (Number.isInteger(value) && Math.abs(value) < 1e15) {
+    return figureText(value, Math.max(1, String(Math.abs(value)).length));
+  }
+  const text = figureText(value, 6);
+  return text.includes('e') ? text : text.replace(/(\.\d*?)0+$/, '$1').replace(/\.$/, '');
 }

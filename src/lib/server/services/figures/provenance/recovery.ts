@@ -4,7 +4,7 @@ import type { Portion } from '../../../amounts/portions';
 import type { Value } from '../../../stats';
 import { addressText, type Link } from '../addresses';
 import { criteriaFor } from '../criteria';
-import { criteriaText, intervalText } from '../figure-parts';
+import { criteriaText, intervalOf, intervalText, plainEnd, sentence } from '../figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from '../study-data';
 import type { EntryFigures, StudyFigures } from '../study-figures';
 import { recoveryFormula } from './formulas';
@@ -43,7 +43,8 @@ export function recoveryProvenance(
   const several = found.input.fractions.filter((fraction) => fraction.countsAs === 'method').length > 1;
   return {
     ...base,
-    figure: method && percentFigure(method, found.input.portions.length, limits),
+    figure:
+      method && percentFigure({ ...method, ci: intervalOf(method) }, found.input.portions.length, limits),
     missing: method ? null : found.reasons.join('; '),
     verdict: { verdict: found.verdict, detail: found.reasons.join('; ') },
     ...recoveryFormula(found.input.subtracted !== null, several),
@@ -128,7 +129,7 @@ export function setAsideOf(portions: readonly Portion[]): ProvenanceView['setAsi
         : []
     );
     return [...whole, ...parts].map(({ what, exclusion }) => ({
-      text: `${what} is set aside: ${exclusion.cause}. ${exclusion.by}, ${exclusion.at.slice(0, 10)}.`
+      text: `${what} is set aside: ${plainEnd(exclusion.cause)}. ${exclusion.by}, ${exclusion.at.slice(0, 10)}.`
     }));
   });
 }
@@ -248,7 +249,8 @@ function spreadSentences(found: Ready): string[] {
     method.sd === null
       ? []
       : [`SD ${figureText(method.sd)}${method.rsd === null ? '' : `, RSD ${figureText(method.rsd)} %`}.`];
-  const interval = method.ci ? [`Mean, ${intervalText(method.ci)}.`] : ['The mean has no interval.'];
+  const ci = intervalOf(method);
+  const interval = ci ? [`Mean, ${intervalText(ci)}.`] : ['The mean has no interval.'];
   const lacking = found.incomplete.method.map(
     (item) => `${item.portion.replicate.label} is incomplete and not counted: ${item.lacks.join('; ')}.`
   );
@@ -264,7 +266,7 @@ function subtractedSentences(found: Ready): string[] {
       : 'The method blank';
   return [
     `${what} is subtracted fraction by fraction; its scatter is part of the interval.`,
-    ...subtracted.notes.map((note) => `${note.charAt(0).toUpperCase()}${note.slice(1)}.`)
+    ...subtracted.notes.map(sentence)
   ];
 }
 

@@ -141,9 +141,9 @@ export function lossProvenance(
         row.regain === null ? null : percentText(row.regain),
         'points'
       ),
-      input('p, two-sided', row.p, ''),
-      input('p, adjusted over stages (Holm)', row.pAdjusted, ''),
-      input('p, adjusted over the panel too (Benjamini-Hochberg)', row.pPanel, '')
+      input('p, two-sided', pText(row.p), ''),
+      input('p, adjusted over stages (Holm)', pText(row.pAdjusted), ''),
+      input('p, adjusted over the panel too (Benjamini-Hochberg)', pText(row.pPanel), '')
     ]
   };
 }
@@ -221,4 +221,10 @@ function experimentNumber(figures: StudyFigures, context: VariantContext, key: s
 function halfText(ci: { readonly lower: number; readonly upper: number } | null): string | null {
   const half = ci && halfWidth({ ...ci, level: 0.95 });
   return half === null ? null : percentText(half);
+}
+
+/** A p-value as it is read: three digits, "< 0.0001" below that. */
+function pText(p: number | null): string | null {
+  if (p === null) return null;
+  return p < 1e-4 ? '< 0.0001' : figureText(p);
 }
