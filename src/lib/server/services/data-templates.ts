@@ -5,8 +5,8 @@ import { sequelize } from '../db/sequelize';
 import { NotFound } from '../errors';
 import { writeTemplate } from '../imports/write-template';
 import { loadExpectation, nothingDeclared } from './import-expectation';
-import { studyForData } from './imports';
 import { require } from './permissions';
+import { studyOf } from './study-of';
 
 export interface ExperimentChoice {
   readonly number: number;
@@ -22,7 +22,7 @@ export async function experimentChoices(
   studyCode: string
 ): Promise<readonly ExperimentChoice[]> {
   require(actor, 'studies.see');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   return sequelize.query<ExperimentChoice>(
     `SELECT e.number, e.title, s.name AS stage,
         EXISTS (SELECT 1 FROM replicates r WHERE r.experiment_id = e.id) AND NOT EXISTS (
@@ -44,7 +44,7 @@ export async function experimentTemplate(
   input: Readonly<{ experimentNumber: number; layout: 'long' | 'wide' }>
 ): Promise<Readonly<{ fileName: string; bytes: Buffer }>> {
   require(actor, 'studies.see');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const [experiment] = await sequelize.query<{ id: string }>(
     'SELECT id FROM experiments WHERE lab_id = $1 AND study_id = $2 AND number = $3',
     { bind: [actor.labId, study.id, input.experimentNumber], type: QueryTypes.SELECT }

@@ -18,8 +18,9 @@ import type { Expectation, MappedImport, MappedRecord, Sheet, Workbook } from '.
 import { coveredPlaces } from './import-coverage';
 import { nothingDeclared, type Declared } from './import-expectation';
 import { readKeptFile } from './import-reading';
-import { importOfStudy, studyForData } from './imports';
+import { importOfStudy } from './imports';
 import { require } from './permissions';
+import { studyOf } from './study-of';
 
 /** How much of a large file one page shows; the rest is a page on. */
 export const previewLimits = { rows: 60, columns: 60, records: 200, problems: 200 } as const;
@@ -40,7 +41,7 @@ export async function previewImport(
   window: PreviewWindow
 ): Promise<ImportPreviewView> {
   require(actor, 'studies.see');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const kept = await importOfStudy(actor, study, importId);
   const frame = await frameOf(study, kept);
   const reading = await readKeptFile(study, kept);

@@ -14,8 +14,9 @@ import type { Expectation, MappedImport, MappedRecord } from '../imports/types';
 import { coveredPlaces } from './import-coverage';
 import { loadExpectation, nothingDeclared, type Declared } from './import-expectation';
 import { readKeptFile } from './import-reading';
-import { importOfStudy, studyForData } from './imports';
+import { importOfStudy } from './imports';
 import { require } from './permissions';
+import { studyOf } from './study-of';
 
 export interface StoredImport {
   readonly importId: string;
@@ -37,7 +38,7 @@ export async function storeImport(
   input: Readonly<{ questionsConfirmed: boolean; reason: string }>
 ): Promise<StoredImport> {
   require(actor, 'data.enter');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const kept = await importOfStudy(actor, study, importId);
   if (kept.state !== 'received') throw notWaiting(kept.state);
   const reading = await readKeptFile(study, kept);

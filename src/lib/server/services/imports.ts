@@ -6,34 +6,21 @@ import type { ImportState } from '../../domain/vocabulary';
 import type { ImportListView } from '../../views/imports';
 import { config } from '../config';
 import { Import } from '../db/models/import';
-import { Study } from '../db/models/study';
+import type { Study } from '../db/models/study';
 import { sequelize } from '../db/sequelize';
 import { audit, inTransaction } from '../db/transaction';
 import { Conflict, Forbidden, Invalid, NotFound } from '../errors';
 import { nothingDeclared, type Declared } from './import-expectation';
+import { knownId } from './known-id';
 import { require } from './permissions';
-
-/** The study of the actor's lab with this code. @throws NotFound, alike for another lab's study and for none */
-export async function studyForData(actor: Actor, code: string): Promise<Study> {
-  const [study] = await Study.findAll({
-    where: sequelize.and(
-      { labId: actor.labId },
-      sequelize.where(sequelize.fn('lower', sequelize.col('code')), code.toLowerCase())
-    ),
-    limit: 1
-  });
-  if (!study) throw new NotFound('There is no such study in this lab.');
-  return study;
-}
+import { studyOf } from './study-of';
 
 /** The import with its bytes left in the database. @throws NotFound */
 export async function importOfStudy(actor: Actor, study: Study, importId: string): Promise<Import> {
-  const found = /^[0-9a-f-]{36}$/i.test(importId)
-    ? await Import.findOne({
-        where: { id: importId, labId: actor.labId, studyId: study.id },
-        attributes: { exclude: ['fileBytes'] }
-      })
-    : null;
+  const found = await Import.findOne({
+    where: { id: knownId(importId), labId: actor.labId, studyId: study.id },
+    attributes: { exclude: ['fileBytes'] }
+  });
   if (!found) throw new NotFound('There is no such import in this study.');
   return found;
 }
@@ -47,7 +34,7 @@ export async function importFile(
   importId: string
 ): Promise<Readonly<{ fileName: string; bytes: Buffer }>> {
   require(actor, 'studies.see');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const { id, fileName } = await importOfStudy(actor, study, importId);
   return { fileName, bytes: await bytesOf(id) };
 }
@@ -78,7 +65,7 @@ export async function receiveFile(
   input: Readonly<{ fileName: string; bytes: Buffer; experimentNumber: number | null }>
 ): Promise<Received> {
   require(actor, 'data.enter');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const { bytes } = input;
   const fileName =
     input.fileName
@@ -174,7 +161,7 @@ export async function declareAboutImport(
   declared: Pick<Declared, 'basis' | 'decimal'>
 ): Promise<void> {
   require(actor, 'data.enter');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const found = await importOfStudy(actor, study, importId);
   await inTransaction(actor, { study: study.id }, async () => {
     const [changed] = await Import.update(
@@ -188,7 +175,7 @@ export async function declareAboutImport(
 /** Leaves a received file unstored. Its bytes stay. @throws Conflict when it is no longer waiting */
 export async function dropImport(actor: Actor, studyCode: string, importId: string): Promise<void> {
   require(actor, 'data.enter');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const found = await importOfStudy(actor, study, importId);
   await inTransaction(actor, { study: study.id }, async () => {
     const [changed] = await Import.update(
@@ -217,7 +204,7 @@ export async function withdrawImport(
   reason: string
 ): Promise<void> {
   require(actor, 'imports.withdraw-own');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const found = await importOfStudy(actor, study, importId);
   if (found.storedBy !== actor.userId && !isAllowed(actor.role, 'imports.withdraw-any')) {
     throw new Forbidden(
@@ -271,7 +258,7 @@ interface ListRow {
 /** Every file that a study ever received, the newest first. */
 export async function listImports(actor: Actor, studyCode: string): Promise<readonly ImportListView[]> {
   require(actor, 'studies.see');
-  const study = await studyForData(actor, studyCode);
+  const study = await studyOf(actor, studyCode);
   const rows = await sequelize.query<ListRow>(
     `SELECT i.id, i.file_name, i.byte_size, i.sha256, i.state, i.counts, i.received_at, r.name AS received_by,
         i.stored_at, s.name AS stored_by, i.stored_by AS stored_by_id, i.ended_at, e.name AS ended_by, i.end_reason,
