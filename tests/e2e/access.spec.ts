@@ -150,12 +150,13 @@ test('a newcomer is invited, joins, forgets the password, gets another role, and
 
   await test.step('a changed role and a removal hold from the next request on', async () => {
     await manager.goto('/lab/members');
-    await manager.getByLabel('Role of Nia Rill', { exact: true }).selectOption('chemist');
-    await manager.getByRole('button', { name: 'Change the role of Nia Rill' }).click();
+    const row = manager.getByRole('listitem').filter({ hasText: email });
+    await row.getByLabel('Role of Nia Rill', { exact: true }).selectOption('chemist');
+    await row.getByRole('button', { name: 'Change the role of Nia Rill' }).click();
     await expect(manager.getByText('The role is changed.')).toBeVisible();
     await person.reload();
     await expect(person.locator('summary', { hasText: 'Nia Rill' })).toContainText('chemist');
-    await manager.getByRole('link', { name: 'Remove Nia Rill' }).click();
+    await row.getByRole('link', { name: 'Remove Nia Rill' }).click();
     await manager.getByRole('button', { name: 'Remove Nia Rill' }).click();
     await expect(manager.getByText('no longer a member')).toBeVisible();
     await person.reload();

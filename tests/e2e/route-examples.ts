@@ -1,22 +1,29 @@
 import { expect, type APIRequestContext } from '@playwright/test';
 
-/** A value for each parameter that a route can have. */
+/** A value for each parameter that a route can have, keyed by the segment before it: "studies/[study]". */
 export type Examples = Readonly<Record<string, string>>;
 
 /** What an address needs after its path; `{name}` stands for an example. */
 export const queries: Readonly<Record<string, string>> = {
-  '/api/v1/studies/[study]/portions': '?experiment={experiment}',
+  '/api/v1/studies/[study]/portions': '?experiment={experiments/[experiment]}',
   '/api/v1/studies/[study]/provenance': '?figure={figure}'
 };
 
+const nobodysId = '01999999-0000-7000-8000-00000000dead';
+const madeUpToken = 'a'.repeat(43);
+
 /** Values that nobody has. They are of the right form, so that only their absence can be noticed. */
 export const nothing: Examples = {
-  study: 'NO-SUCH-STUDY',
-  experiment: '999',
-  import: '01999999-0000-7000-8000-00000000dead',
-  variant: 'ZZ',
-  figure: 'recovery:999:01999999-0000-7000-8000-00000000dead',
-  token: 'a'.repeat(43)
+  'studies/[study]': 'NO-SUCH-STUDY',
+  'experiments/[experiment]': '999',
+  'variants/[variant]': 'ZZ',
+  'data/[import]': nobodysId,
+  'calibration/[set]': nobodysId,
+  'criteria/[set]': nobodysId,
+  'analytes/[analyte]': nobodysId,
+  'reset-password/[token]': madeUpToken,
+  'invitations/[token]': madeUpToken,
+  figure: `recovery:999:${nobodysId}`
 };
 
 async function firstMatch(request: APIRequestContext, page: string, pattern: RegExp): Promise<string> {
@@ -26,21 +33,21 @@ async function firstMatch(request: APIRequestContext, page: string, pattern: Reg
   return decodeURIComponent(found ?? '');
 }
 
-const uuid = '[0-9a-f]{8}-[0-9a-f-]{27}';
-const study = 'TARROW-1';
-
-/** Things of the demo lab that are there, read from its pages; the token alone is made up. */
+/** Things of the demo lab that are there, their ids read from its pages; the tokens alone are made up. */
 export async function readExamples(request: APIRequestContext): Promise<Examples> {
+  const study = '/studies/TARROW-1';
+  const idBelow = (page: string) =>
+    firstMatch(request, page, new RegExp(`${page}/([0-9a-f]{8}-[0-9a-f-]{27})`));
   return {
-    study,
-    experiment: '1',
-    variant: 'A',
-    figure: await firstMatch(request, `/studies/${study}/balance`, /[?&;]figure=([^"&]+)/),
-    import: await firstMatch(
-      request,
-      `/studies/${study}/data`,
-      new RegExp(`/studies/${study}/data/(${uuid})`)
-    ),
-    token: 'a'.repeat(43)
+    'studies/[study]': 'TARROW-1',
+    'experiments/[experiment]': '1',
+    'variants/[variant]': 'A',
+    'data/[import]': await idBelow(`${study}/data`),
+    'calibration/[set]': await idBelow(`${study}/calibration`),
+    'criteria/[set]': await idBelow('/library/criteria'),
+    'analytes/[analyte]': await idBelow('/library/analytes'),
+    'reset-password/[token]': madeUpToken,
+    'invitations/[token]': madeUpToken,
+    figure: await firstMatch(request, `${study}/balance`, /[?&;]figure=([^"&]+)/)
   };
 }
