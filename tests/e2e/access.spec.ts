@@ -96,6 +96,7 @@ test('a newcomer is invited, joins, forgets the password, gets another role, and
   await manager.getByRole('button', { name: 'Send the invitation' }).click();
   await expect(manager.getByText('The invitation is on its way.')).toBeVisible();
   await expect(manager.getByText(email)).toBeVisible();
+  await expect(manager.getByLabel('E-mail address')).toHaveValue('');
 
   const person = await newPage(browser);
   await openLinkSentTo(person, email, /invites you to Fennick Weir Laboratory/);

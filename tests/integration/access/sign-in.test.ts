@@ -1,4 +1,4 @@
-import { beforeAll, describe, expect, it } from 'vitest';
+import { afterEach, beforeAll, describe, expect, it, vi } from 'vitest';
 import type { Actor } from '../../../src/lib/domain/actor';
 import { sequelize } from '../../../src/lib/server/db/sequelize';
 import { Membership } from '../../../src/lib/server/db/models/membership';
@@ -165,6 +165,26 @@ describe('somebody in several labs', () => {
 });
 
 describe('the cookie of a session', () => {
+  afterEach(() => {
+    vi.useRealTimers();
+  });
+
+  it('is renewed while it is used, and ends after half a day without', async () => {
+    const person = await makePerson();
+    const browser = await signedIn(person);
+    const first = [...browser.cookies];
+    const hours = (count: number) =>
+      vi.useFakeTimers({ toFake: ['Date'], now: Date.now() + count * 3_600_000 });
+    hours(7);
+    expect(await pages.whoAmI(browser)).toEqual(person);
+    expect([...browser.cookies]).not.toEqual(first);
+    hours(7);
+    expect(await pages.whoAmI(browser)).toEqual(person);
+    hours(13);
+    expect(await pages.whoAmI(browser)).toBeNull();
+    expect(browser.cookies.size).toBe(0);
+  });
+
   it('is not written anew with every answer, so that a slow one cannot undo a faster one', async () => {
     const person = await makePerson();
     const browser = await signedIn(person);
