@@ -21,7 +21,7 @@ const micro = /[\u00b5\u03bc]/g;
 function parted(text: string): readonly [string, string] {
   const match = /^(.*?)\s*([A-Za-z\u00b5\u03bc][A-Za-z\u00b5\u03bc/·.\s]*)$/u.exec(text);
   // "1e3" is a number, not one with the unit e3.
-  return match ? [match[1] ?? '', match[2] ?? ''] : [text, ''];
+  return match && /\d/.test(match[1] ?? '') ? [match[1] ?? '', match[2] ?? ''] : [text, ''];
 }
 
 /** Repairs the last digits that a change of unit rounds away: 0.3 µg is 300 ng, not 299.99999999999994. */

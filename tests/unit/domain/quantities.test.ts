@@ -76,6 +76,10 @@ describe('a typed quantity', () => {
     expect(readQuantity(text, unit).ok).toBe(false);
   });
 
+  test('without a digit is named as it was typed', () => {
+    expect(readQuantity('abc', 'ng')).toEqual({ ok: false, message: "'abc' is not a number." });
+  });
+
   test('of another kind names the units that would do', () => {
     expect(readQuantity('5 mL', 'ng')).toEqual({
       ok: false,

@@ -1,4 +1,5 @@
 import type { SubmitFunction } from '@sveltejs/kit';
+import { invalidateAll } from '$app/navigation';
 
 type Answered = Exclude<Awaited<ReturnType<SubmitFunction>>, void>;
 
@@ -30,6 +31,8 @@ export function submission(after?: Answered): Submission {
         try {
           if (after) await after(options);
           else await options.update({ reset: false });
+          // Somebody else was faster: the page shows what is stored now, and a second save knows of it.
+          if (options.result.type === 'failure' && options.result.status === 409) await invalidateAll();
         } finally {
           busy = false;
         }

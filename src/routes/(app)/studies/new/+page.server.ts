@@ -1,4 +1,4 @@
-import { redirect } from '@sveltejs/kit';
+import { fail, redirect } from '@sveltejs/kit';
 import { chemistryGroups } from '$lib/domain/chemistry-groups';
 import { isAllowed } from '$lib/domain/permissions';
 import { formObject } from '$lib/schemas/form-object';
@@ -51,6 +51,6 @@ export const actions: Actions = {
     });
     // The list that was looked up stays on the page while the form is mended.
     const text = (await copy.formData()).get('panelText');
-    return { ...answer, data: { ...answer.data, lookup: await lookUp(actor, String(text ?? '')) } };
+    return fail(answer.status, { ...answer.data, lookup: await lookUp(actor, String(text ?? '')) });
   }
 };
