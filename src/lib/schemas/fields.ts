@@ -37,18 +37,21 @@ function boundsProblem(value: number, { above, least, most }: Bounds): string | 
 
 /** A number or what was typed for one, through `read`; null where nothing was typed. */
 function typed(read: (text: string) => NumberReading, bounds: Bounds) {
-  return z.unknown().optional().transform((value, context): number | null => {
-    if (blank(value) || (typeof value === 'string' && value.trim() === '')) return null;
-    const reading: NumberReading =
-      typeof value === 'number' && Number.isFinite(value)
-        ? { ok: true, value }
-        : typeof value === 'string'
-          ? read(value)
-          : { ok: false, message: 'Enter a number.' };
-    const problem = reading.ok ? boundsProblem(reading.value, bounds) : reading.message;
-    if (problem !== null) context.issues.push({ code: 'custom', message: problem, input: value });
-    return reading.ok ? reading.value : null;
-  });
+  return z
+    .unknown()
+    .optional()
+    .transform((value, context): number | null => {
+      if (blank(value) || (typeof value === 'string' && value.trim() === '')) return null;
+      const reading: NumberReading =
+        typeof value === 'number' && Number.isFinite(value)
+          ? { ok: true, value }
+          : typeof value === 'string'
+            ? read(value)
+            : { ok: false, message: 'Enter a number.' };
+      const problem = reading.ok ? boundsProblem(reading.value, bounds) : reading.message;
+      if (problem !== null) context.issues.push({ code: 'custom', message: problem, input: value });
+      return reading.ok ? reading.value : null;
+    });
 }
 
 const present =

@@ -8,7 +8,11 @@ export const number = (text: string | number): FormulaNode => ({ kind: 'number',
 export const operator = (text: string): FormulaNode => ({ kind: 'operator', text });
 export const words = (text: string): FormulaNode => ({ kind: 'words', text });
 export const row = (...items: readonly FormulaNode[]): FormulaNode => ({ kind: 'row', items });
-export const sub = (base: FormulaNode, below: FormulaNode): FormulaNode => ({ kind: 'sub', base, sub: below });
+export const sub = (base: FormulaNode, below: FormulaNode): FormulaNode => ({
+  kind: 'sub',
+  base,
+  sub: below
+});
 export const power = (base: FormulaNode, above: FormulaNode): FormulaNode => ({
   kind: 'super',
   base,
