@@ -1,4 +1,5 @@
 import type { SubmitFunction } from '@sveltejs/kit';
+import { tick } from 'svelte';
 import { invalidateAll } from '$app/navigation';
 
 type Answered = Exclude<Awaited<ReturnType<SubmitFunction>>, void>;
@@ -33,10 +34,20 @@ export function submission(after?: Answered): Submission {
           else await options.update({ reset: false });
           // Somebody else was faster: the page shows what is stored now, and a second save knows of it.
           if (options.result.type === 'failure' && options.result.status === 409) await invalidateAll();
+          if (!after && options.result.type === 'failure') await showTrouble(options.formElement);
         } finally {
           busy = false;
         }
       };
     }
   };
+}
+
+/** Takes the person to the first field that needs mending, or to the word on what went wrong. */
+async function showTrouble(form: HTMLFormElement): Promise<void> {
+  await tick();
+  const field = form.querySelector<HTMLElement>('[aria-invalid="true"]');
+  if (field) field.focus();
+  else
+    document.querySelector('main [role="status"], main [role="alert"]')?.scrollIntoView({ block: 'center' });
 }
