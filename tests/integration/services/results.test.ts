@@ -186,6 +186,25 @@ describe('the figures of a study', () => {
     expect(findings.lead).toContain('No variant has been measured');
   });
 
+  it('name every stage that a loss may come from when the stages below have no experiment', async () => {
+    const variant = await makeVariant(made.study);
+    await StageEvidence.create({
+      labId: actor.labId,
+      studyId: made.study.id,
+      variantId: variant.id,
+      stageId: made.stages.extraction!,
+      experimentId: experiment.experiment.id
+    });
+    await makeStoredImport(actor, made.study, amounts(experiment, entry, 0, [51, 52, 53, 54, 55]));
+    const { findings, ladder } = await stageLadderView(actor, code, {}, asAddress);
+    // 100 - 53 = 47 points.
+    expect(findings.lead).toMatch(
+      /^Concentration, drying and extraction together take 47.0 points of Atrazine/
+    );
+    expect(ladder.reaches[0]?.gap?.text).toContain('Includes what concentration and drying take');
+    expect(findings.notes.join()).toContain('held against exactly 100');
+  });
+
   it('refuse an address that is none, and one that points at nothing', async () => {
     await expect(provenanceView(actor, code, 'recovery:1:x', asAddress)).rejects.toThrow(Invalid);
     await expect(provenanceView(actor, code, `recovery:9:${entry.id}`, asAddress)).rejects.toThrow(NotFound);

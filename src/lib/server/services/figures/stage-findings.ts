@@ -8,7 +8,8 @@ import type { StudyFigures, VariantContext } from './study-figures';
 interface Named {
   readonly entryId: string;
   readonly name: string;
-  readonly stage: string;
+  /** The stage, after those below it that have no experiment and so are part of its figure. */
+  readonly stages: readonly string[];
   readonly row: StageRow;
   readonly below: StageRow | null;
 }
@@ -32,7 +33,7 @@ export function stageFindingsOf(
     item.rows.map((row, index): Named => ({
       entryId: item.entry.id,
       name: item.entry.name,
-      stage: stageName(row.stage),
+      stages: [...row.covers, row.stage].map(stageName),
       row,
       below: item.rows[index - 1] ?? null
     }))
@@ -88,11 +89,16 @@ function goneSentence(
 }
 
 /** "Drying takes 12 points of NDMA (95 %: 8 to 16; n = 7 and 6)." */
-function lossSentence({ name, stage, row, below }: Named): string {
+function lossSentence({ name, stages, row, below }: Named): string {
   const lost = row.lost?.estimate ?? 0;
   const ci = row.lost?.ci ? `${intervalText(row.lost.ci)}; ` : '';
-  const n = below ? `n = ${row.n} and ${below.n}` : `n = ${row.n}`;
-  return `${stage} takes ${percentText(lost)} points of ${name} (${ci}${n}).`;
+  const n = below ? `n\u00a0=\u00a0${row.n} and ${below.n}` : `n\u00a0=\u00a0${row.n}`;
+  const [first = '', ...others] = stages;
+  const who =
+    others.length === 0
+      ? `${first} takes`
+      : `${listed([first, ...others.map((stage) => stage.toLowerCase())])} together take`;
+  return `${who} ${percentText(lost)} points of ${name} (${ci}${n}).`;
 }
 
 function unnamedSentence(rows: readonly Named[], context: VariantContext): string {
@@ -118,9 +124,11 @@ function notesOf(context: VariantContext, rows: readonly Named[]): string[] {
     );
   }
   for (const stage of context.stages) {
-    if (stage.evidence || stage.kind === 'signal') continue;
+    if (stage.evidence) continue;
     notes.push(
-      `${stage.name} has no experiment yet: what it takes is part of what the stage above it seems to take.`
+      stage.kind === 'signal'
+        ? `No standards stand for ${stage.name.toLowerCase()} yet: recoveries are held against exactly 100, so a bias of the signal reads as a loss.`
+        : `${stage.name} has no experiment yet: what it takes is part of what the stage above it seems to take.`
     );
   }
   return notes;

@@ -206,11 +206,22 @@ function gapOf(
       ? [{ name: item.entry.name, reason: 'nothing of it came back, so the losses cannot be told apart' }]
       : [];
   });
-  if (lacking.length === 0) return null;
+  const covers = new Set(
+    [...context.figures.entries.values()].flatMap(
+      (item) => item.rows.find((row) => row.stage === stage.key)?.covers ?? []
+    )
+  );
+  const nameOf = (key: string): string =>
+    context.stages.find((item) => item.key === key)?.name.toLowerCase() ?? key;
+  const shared =
+    covers.size > 0
+      ? `Includes what ${listed([...covers].map(nameOf))} ${covers.size > 1 ? 'take' : 'takes'}. `
+      : '';
+  if (lacking.length === 0) return shared === '' ? null : { text: shared.trim(), href: null, action: null };
   const [first] = lacking;
   const text =
     shown === 0
       ? `No analyte has a figure here yet: ${first?.reason ?? ''}`
       : `Without a figure here: ${listed(lacking.map((item) => item.name))}${lacking.length === 1 ? ` (${first?.reason ?? ''})` : ''}.`;
-  return { text, href: null, action: null };
+  return { text: shared + text, href: null, action: null };
 }
