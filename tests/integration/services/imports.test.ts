@@ -285,14 +285,14 @@ describe('who may bring data', () => {
     await expect(receiveFile(reviewer, study.code, file)).rejects.toBeInstanceOf(Forbidden);
     await expect(storeImport(reviewer, study.code, importId, unasked)).rejects.toBeInstanceOf(Forbidden);
     for (const attempt of [
-      receiveFile(stranger, study.code, file),
-      importFile(stranger, study.code, importId),
-      previewImport(stranger, study.code, importId, firstWindow),
-      storeImport(stranger, study.code, importId, unasked),
-      dropImport(stranger, study.code, importId),
-      listImports(stranger, study.code)
+      () => receiveFile(stranger, study.code, file),
+      () => importFile(stranger, study.code, importId),
+      () => previewImport(stranger, study.code, importId, firstWindow),
+      () => storeImport(stranger, study.code, importId, unasked),
+      () => dropImport(stranger, study.code, importId),
+      () => listImports(stranger, study.code)
     ]) {
-      await expect(attempt).rejects.toBeInstanceOf(NotFound);
+      await expect(attempt()).rejects.toBeInstanceOf(NotFound);
     }
     expect(await counting()).toEqual([]);
   });

@@ -88,14 +88,14 @@ test('another lab neither lists nor opens nor changes a study, its panel or its 
   expect(await listStudies(stranger)).toEqual([]);
   const form = { title: 'x', matrix: 'x', criteriaSetId: criteria.id, version: 1 };
   const attempts = [
-    getStudy(stranger, study.code),
-    updateStudy(stranger, study.code, studyChangeForm.parse(form)),
-    getPanel(stranger, study.code),
-    pastePanel(stranger, study.code, { text: 'x', role: 'target' }),
-    removePanelEntry(stranger, study.code, entry.id),
-    listHistory(stranger, { study: study.code, filter: filter() })
+    () => getStudy(stranger, study.code),
+    () => updateStudy(stranger, study.code, studyChangeForm.parse(form)),
+    () => getPanel(stranger, study.code),
+    () => pastePanel(stranger, study.code, { text: 'x', role: 'target' }),
+    () => removePanelEntry(stranger, study.code, entry.id),
+    () => listHistory(stranger, { study: study.code, filter: filter() })
   ];
-  for (const attempt of attempts) await expect(attempt).rejects.toBeInstanceOf(NotFound);
+  for (const attempt of attempts) await expect(attempt()).rejects.toBeInstanceOf(NotFound);
 });
 
 test('criteria of another lab cannot be chosen', async () => {
