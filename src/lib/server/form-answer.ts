@@ -49,13 +49,18 @@ export async function answerForm<Result>(
   work: (fields: Fields, form: FormData) => Promise<Result>
 ): Promise<Result | ActionFailure<FormTrouble>> {
   const form = await request.formData();
-  const fields = Object.fromEntries(
-    [...form].filter((entry): entry is [string, string] => typeof entry[1] === 'string')
-  );
+  const fields = textFields(form);
   try {
     return await work(fields, form);
   } catch (error) {
-    const shown = Object.entries(fields).filter(([name]) => !secretFields.has(name));
-    return trouble(error, Object.fromEntries(shown));
+    return trouble(error, typedFields(form));
   }
+}
+
+const textFields = (form: FormData): Record<string, string> =>
+  Object.fromEntries([...form].filter((entry): entry is [string, string] => typeof entry[1] === 'string'));
+
+/** What was typed into a form, to be given back to it: without files, and without passwords. */
+export function typedFields(form: FormData): Fields {
+  return Object.fromEntries(Object.entries(textFields(form)).filter(([name]) => !secretFields.has(name)));
 }

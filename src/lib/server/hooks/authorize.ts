@@ -5,6 +5,7 @@ import { refusalSentence } from '../auth/refusal';
 import { isPermission, requiredAccess } from '../auth/route-access';
 import { Forbidden, NotFound, Unauthenticated, type ExpectedError } from '../errors';
 import { logger } from '../logger';
+import { isEnhancedForm, keepForm } from './kept-form';
 import { problemResponse } from './problem';
 
 const isApi = (routeId: string): boolean => routeId.startsWith('/api/');
@@ -14,9 +15,10 @@ function refuse(routeId: string, refusal: ExpectedError): Response {
   error(refusal.status, refusal.message);
 }
 
-/** Sends a stranger to the sign-in page and back; programs get 401 and its reason. */
-function turnAway(routeId: string, { url, request }: RequestEvent): Response {
+/** Sends a stranger to the sign-in page and back; programs get 401 and its reason, a page its form with what was typed. */
+async function turnAway(routeId: string, { url, request }: RequestEvent): Promise<Response> {
   if (isApi(routeId)) return problemResponse(new Unauthenticated());
+  if (isEnhancedForm(request)) return keepForm(request);
   // After a form was sent, the way back is to the page that held it, not to its action.
   const search = request.method === 'GET' ? url.search : '';
   redirect(303, signInPath(url.pathname, search));
