@@ -30,8 +30,8 @@ const pictures: readonly Picture[] = [
     name: 'provenance-dark',
     theme: 'dark',
     open: async (page) => {
-      await page.goto(`${study}/validation`);
-      await page.getByRole('link', { name: 'Caffeine', exact: true }).first().click();
+      await page.goto(`${study}/balance`);
+      await page.getByRole('link', { name: /Caffeine/ }).first().click();
       await page.getByText('Provenance', { exact: true }).first().waitFor();
     }
   }
