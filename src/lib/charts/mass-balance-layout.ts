@@ -1,5 +1,6 @@
 import { scaleBand, scaleLinear } from 'd3-scale';
 import { percentText } from '$lib/domain/figure-text';
+import { bandLimits } from '$lib/domain/recovery-band';
 import type { MassBalanceRow, MassBalanceView } from '$lib/views/mass-balance';
 
 /** Percent of the spike beyond which a bar is cut and says so: one wild row must not flatten the others. */
@@ -40,9 +41,11 @@ export interface MassBalanceLayout {
   /** Percent of the spike at the right edge. */
   readonly max: number;
   readonly ticks: readonly { readonly value: number; readonly at: number }[];
-  readonly band: { readonly from: number; readonly to: number; readonly highShown: boolean };
+  /** Null where the study asks nothing of a mean recovery. */
+  readonly band: { readonly from: number; readonly to: number } | null;
+  /** The limits that lie on the plot, with their place. */
+  readonly limits: readonly { readonly value: number; readonly at: number }[];
   readonly bandPath: string;
-  /** The limits that lie on the plot. */
   readonly limitPath: string;
   readonly hundredPath: string;
   readonly zeroPath: string;
@@ -90,8 +93,14 @@ export function massBalanceLayout(
       cut: end > max ? `${percentText(end)} %` : null
     };
   });
-  const { low, high } = view.criteria;
-  const band = { from: round(x(low)), to: round(x(high)), highShown: high <= max };
+  const { criteria } = view;
+  const band = criteria && {
+    from: round(x(criteria.low ?? 0)),
+    to: criteria.high === null ? 100 : round(x(criteria.high))
+  };
+  const limits = bandLimits(criteria)
+    .filter((value) => value <= max)
+    .map((value) => ({ value, at: round(x(value)) }));
   const spans: readonly (readonly [number, number])[] =
     guides === 'whole' ? [[0, 100]] : bars.map(({ top, bottom }) => [top, bottom]);
   const lines = (at: number): string => spans.map(([from, to]) => `M${at} ${from}V${to}`).join('');
@@ -99,8 +108,11 @@ export function massBalanceLayout(
     max,
     ticks: x.ticks(Math.min(10, Math.round(max / 20))).map((value) => ({ value, at: round(x(value)) })),
     band,
-    bandPath: spans.map(([from, to]) => `M${band.from} ${from}H${band.to}V${to}H${band.from}Z`).join(''),
-    limitPath: lines(band.from) + (band.highShown ? lines(band.to) : ''),
+    limits,
+    bandPath: band
+      ? spans.map(([from, to]) => `M${band.from} ${from}H${band.to}V${to}H${band.from}Z`).join('')
+      : '',
+    limitPath: limits.map(({ at }) => lines(at)).join(''),
     hundredPath: lines(round(x(100))),
     zeroPath: lines(0),
     bars,

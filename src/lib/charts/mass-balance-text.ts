@@ -1,4 +1,5 @@
 import { percentText } from '$lib/domain/figure-text';
+import { bandText } from '$lib/domain/recovery-band';
 import type { MassBalanceRow, MassBalanceView } from '$lib/views/mass-balance';
 
 /** What the chart shows, in a sentence for those who do not see it. */
@@ -12,8 +13,8 @@ export function massBalanceDescription(view: MassBalanceView): string {
     ...(count('too few') > 0 ? [`${count('too few')} with too few preparations`] : []),
     ...(count(null) > 0 ? [`${count(null)} without a verdict`] : [])
   ];
-  const { low, high } = view.criteria;
-  return `${view.rows.length} analytes, percent of the spike by fraction; criteria ${low} to ${high} % on the extract: ${parts.join(', ')}.`;
+  const limits = bandText(view.criteria);
+  return `${view.rows.length} analytes, percent of the spike by fraction; ${limits === null ? 'no criteria for mean recovery' : `criteria ${limits} on the extract`}: ${parts.join(', ')}.`;
 }
 
 /** A row as it is read aloud: "NDMA, 49.3 ± 3.6 %, outside: 49.3 < 70". */

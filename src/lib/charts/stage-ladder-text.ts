@@ -13,11 +13,11 @@ export interface NamedPoint {
 export function namedPoints(
   points: readonly StagePoint[],
   kind: 'whole' | 'loss' | 'signal',
-  limits?: { readonly low: number; readonly high: number }
+  limits: readonly number[] = []
 ): NamedPoint[] {
   const named = (point: StagePoint): NamedPoint => ({
     point,
-    text: `${point.name} ${percentText(point.value, limits ? [limits.low, limits.high] : [])}`
+    text: `${point.name} ${percentText(point.value, limits)}`
   });
   const size = ({ value }: StagePoint): number =>
     kind === 'loss' ? value : Math.abs(value - (kind === 'whole' ? 100 : 0));

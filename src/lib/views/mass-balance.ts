@@ -1,3 +1,4 @@
+import type { RecoveryBand } from '$lib/domain/recovery-band';
 import type { CountsAs } from '$lib/domain/vocabulary';
 import type { Verdict } from './verdict';
 
@@ -58,7 +59,8 @@ export interface MassBalanceRow {
 }
 
 export interface MassBalanceView {
-  readonly criteria: { readonly low: number; readonly high: number };
+  /** What the study asks of a mean recovery; null: it has no such rule, and no band is drawn. */
+  readonly criteria: RecoveryBand | null;
   readonly fractions: readonly MassBalanceFraction[];
   readonly rows: readonly MassBalanceRow[];
 }

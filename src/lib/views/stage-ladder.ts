@@ -1,3 +1,4 @@
+import type { RecoveryBand } from '$lib/domain/recovery-band';
 import type { StageKind } from '$lib/domain/stages';
 import type { Verdict } from './verdict';
 
@@ -44,7 +45,8 @@ export interface StageReach {
 }
 
 export interface StageLadderView {
-  readonly criteria: { readonly low: number; readonly high: number };
+  /** What the study asks of a mean recovery; null: it has no such rule, and no band is drawn. */
+  readonly criteria: RecoveryBand | null;
   /** What the extract holds, held against the criteria. */
   readonly wholeMethod: {
     /** "what the extract holds, variant D" */

@@ -85,12 +85,23 @@ describe('massBalanceLayout', () => {
 
   it('marks the limits that lie on the plot and no other', () => {
     const near = massBalanceLayout(balanceView(balanceRow('A', { first: 90 })));
-    expect(near.band.highShown).toBe(false);
-    expect(value(near, near.band.from)).toBeCloseTo(70, 1);
+    expect(near.limits.map((limit) => limit.value)).toEqual([70]);
+    expect(value(near, near.limits[0]?.at ?? 0)).toBeCloseTo(70, 1);
     expect(near.limitPath.match(/M/g)).toHaveLength(1);
     const far = massBalanceLayout(balanceView(balanceRow('A', { first: 150 })));
-    expect(far.band.highShown).toBe(true);
+    expect(far.limits.map((limit) => limit.value)).toEqual([70, 130]);
     expect(far.limitPath.match(/M/g)).toHaveLength(2);
+  });
+
+  it.each([
+    ['no band where nothing is asked of a mean recovery', null, '', 0],
+    ['a band that is open above from its limit to the edge', { low: 70, high: null }, 'H100V', 1],
+    ['a band that is open below from zero on', { low: null, high: 80 }, 'M0 0H', 1]
+  ])('draws %s', (_, criteria, path, limits) => {
+    const layout = massBalanceLayout({ ...balanceView(balanceRow('A', { first: 90 })), criteria });
+    expect(layout.bandPath === '').toBe(criteria === null);
+    expect(layout.bandPath).toContain(path);
+    expect(layout.limits).toHaveLength(limits);
   });
 
   it('keeps lines beside the bars where text stands between them', () => {

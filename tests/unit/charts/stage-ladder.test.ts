@@ -108,10 +108,7 @@ describe('streamSlices', () => {
 describe('the words of the ladder', () => {
   it('names what is outside on the whole method, the furthest first', () => {
     const points = [point('a', 63, 'outside'), point('b', 96, 'inside'), point('c', 49.3, 'outside')];
-    expect(namedPoints(points, 'whole', { low: 70, high: 130 }).map(({ text }) => text)).toEqual([
-      'c 49.3',
-      'a 63.0'
-    ]);
+    expect(namedPoints(points, 'whole', [70, 130]).map(({ text }) => text)).toEqual(['c 49.3', 'a 63.0']);
   });
 
   it('names the worst loss, and the largest bias of either sign', () => {

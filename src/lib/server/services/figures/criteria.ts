@@ -1,4 +1,5 @@
 import type { CriterionRule, RecoveryCriteria } from '../../../domain/criteria';
+import type { RecoveryBand } from '../../../domain/recovery-band';
 import type { StudyData, StudyPanelEntry } from './study-data';
 
 /** What one analyte is held against, and where that comes from. */
@@ -23,6 +24,12 @@ export function studyCriteria(rules: readonly CriterionRule[]): RecoveryCriteria
     rsdMax: rsd?.high ?? null,
     nMin: preparations?.low ?? preparations?.high ?? 1
   };
+}
+
+/** The study's limits of mean recovery as they are written, or null when it has no such rule. */
+export function recoveryBand(rules: readonly CriterionRule[]): RecoveryBand | null {
+  const mean = ruleOf(rules, 'mean recovery');
+  return mean && { low: mean.low, high: mean.high };
 }
 
 export function ruleOf(rules: readonly CriterionRule[], type: CriterionRule['type']): CriterionRule | null {

@@ -8,7 +8,7 @@ import type {
 import { balanceOf, type MethodFigures } from '../../amounts/method-figures';
 import { fractionsOf } from '../../amounts/portions';
 import type { Link } from './addresses';
-import { studyCriteria } from './criteria';
+import { recoveryBand } from './criteria';
 import { halfWidth, intervalOf } from './figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { EntryFigures, StudyFigures } from './study-figures';
@@ -16,10 +16,9 @@ import type { Subject } from './subject';
 
 /** The mass balance of one experiment, with what its variant's other stages say of the rest; rows in panel order. */
 export function massBalanceOf(figures: StudyFigures, subject: Subject, link: Link): MassBalanceView {
-  const criteria = studyCriteria(figures.data.criteriaSet.rules);
   const { experiment } = subject;
   return {
-    criteria: { low: criteria?.low ?? 0, high: criteria?.high ?? 0 },
+    criteria: recoveryBand(figures.data.criteriaSet.rules),
     fractions: experiment ? fractionViews(experiment) : [],
     rows: experiment
       ? figures.targets.flatMap((entry) => {
