@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { changeRows, worded } from '../../../src/lib/components/history/change-rows';
-import { momentText } from '../../../src/lib/components/people/moment-text';
+import { momentText } from '../../../src/lib/domain/moment-text';
 
 describe('what an event changed', () => {
   it('is shown member by member, before beside after, without what stayed', () => {

@@ -1,8 +1,9 @@
+import { dayText } from '../../../domain/moment-text';
 import type { StageExperiment, StageLadderView, StagePoint, StageReach } from '../../../views/stage-ladder';
 import { checkCalibration } from '../../amounts/calibration-check';
 import type { EntryInVariant } from '../../amounts/variant-figures';
 import type { Link } from './addresses';
-import { studyCriteria } from './criteria';
+import { recoveryBand } from './criteria';
 import { countsText, listed } from './figure-parts';
 import type { StudyExperiment, StudyStageData } from './study-data';
 import type { StudyFigures, VariantContext } from './study-figures';
@@ -13,11 +14,10 @@ export function stageLadderOf(
   context: VariantContext | null,
   link: Link
 ): StageLadderView {
-  const criteria = studyCriteria(figures.data.criteriaSet.rules);
   const base = `/studies/${figures.data.code}`;
   const variant = context?.variant;
   return {
-    criteria: { low: criteria?.low ?? 0, high: criteria?.high ?? 0 },
+    criteria: recoveryBand(figures.data.criteriaSet.rules),
     wholeMethod: {
       note: variant ? `what the extract holds, variant ${variant.code}` : 'what the extract holds',
       href: variant ? `${base}/balance?variant=${variant.code}` : `${base}/balance`,
@@ -90,7 +90,7 @@ function experimentView(experiment: StudyExperiment, base: string, stands: boole
   const parts = [
     countsText(experiment.replicates),
     experiment.medium,
-    ...(experiment.performedOn ? [experiment.performedOn] : []),
+    ...(experiment.performedOn ? [dayText(experiment.performedOn)] : []),
     ...(stands ? [] : ['shown beside, not pooled'])
   ];
   return {

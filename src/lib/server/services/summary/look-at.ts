@@ -1,3 +1,4 @@
+import { dayText } from '../../../domain/moment-text';
 import { listed, plainEnd } from '../figures/figure-parts';
 import type {
   LookAt,
@@ -22,7 +23,7 @@ export function lookAtOf(
       items: exclusions
         .filter((item) => item.lifted === null)
         .map((item) => ({
-          text: `Experiment ${item.experiment}, ${item.what}: ${plainEnd(item.cause)} (${item.by}, ${item.at.slice(0, 10)})`,
+          text: `Experiment ${item.experiment}, ${item.what}: ${plainEnd(item.cause)} (${item.by}, ${dayText(item.at)})`,
           href: item.href
         })),
       none: 'Nothing is set aside.'

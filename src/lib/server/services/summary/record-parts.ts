@@ -1,3 +1,4 @@
+import { dayText } from '../../../domain/moment-text';
 import type { SummaryCalibration, SummaryExclusion, SummaryImport } from '../../../views/summary';
 import { calibrate } from '../../amounts/calibration';
 import { checkCalibration } from '../../amounts/calibration-check';
@@ -66,8 +67,7 @@ export function exclusionView(figures: StudyFigures, record: ExclusionRecord): S
     by: record.by,
     at: record.at,
     lifted:
-      record.lifted &&
-      `lifted by ${record.lifted.by}, ${record.lifted.at.slice(0, 10)}: ${record.lifted.reason}`,
+      record.lifted && `lifted by ${record.lifted.by}, ${dayText(record.lifted.at)}: ${record.lifted.reason}`,
     href: `/studies/${data.code}/experiments/${experiment?.number ?? ''}`
   };
 }

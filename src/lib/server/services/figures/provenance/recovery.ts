@@ -1,4 +1,5 @@
 import { figureText, percentText } from '../../../../domain/figure-text';
+import { dayText } from '../../../../domain/moment-text';
 import type { ProvenanceTable, ProvenanceView } from '../../../../views/provenance';
 import type { Portion } from '../../../amounts/portions';
 import type { Value } from '../../../stats';
@@ -129,7 +130,7 @@ export function setAsideOf(portions: readonly Portion[]): ProvenanceView['setAsi
         : []
     );
     return [...whole, ...parts].map(({ what, exclusion }) => ({
-      text: `${what} is set aside: ${plainEnd(exclusion.cause)}. ${exclusion.by}, ${exclusion.at.slice(0, 10)}.`
+      text: `${what} is set aside: ${plainEnd(exclusion.cause)}. ${exclusion.by}, ${dayText(exclusion.at)}.`
     }));
   });
 }

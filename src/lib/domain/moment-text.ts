@@ -7,3 +7,6 @@ export function momentText(at: string, dateOnly = false): string {
   const date = `${moment.getUTCDate()} ${months[moment.getUTCMonth()]} ${moment.getUTCFullYear()}`;
   return dateOnly ? date : `${date}, ${two(moment.getUTCHours())}:${two(moment.getUTCMinutes())} UTC`;
 }
+
+/** A day as fields and the database hold it (YYYY-MM-DD), or the day of a moment in UTC: "4 Mar 2026". */
+export const dayText = (day: string): string => momentText(day, true);
