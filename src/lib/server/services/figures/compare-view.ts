@@ -36,9 +36,9 @@ function cellOf(
   entry: StudyPanelEntry,
   link: Link
 ): CompareCell | string {
-  const { top } = context;
-  if (!top) return 'not measured yet';
-  const found = figures.entry(top.id, entry.id);
+  const { whole } = context;
+  if (!whole) return context.top ? 'not spiked in the sample yet' : 'not measured yet';
+  const found = figures.entry(whole.id, entry.id);
   if (!found.ready) return found.reason;
   const { method } = found.balance;
   if (!method) return found.reasons.join('; ');
@@ -48,7 +48,7 @@ function cellOf(
     n: method.n,
     verdict: found.verdict,
     reason: found.reasons.join('; '),
-    href: link({ kind: 'recovery', experiment: top.number, entry: entry.id })
+    href: link({ kind: 'recovery', experiment: whole.number, entry: entry.id })
   };
 }
 
@@ -70,9 +70,9 @@ function variantView(
   return {
     code: context.variant.code,
     name: context.variant.name,
-    experiment: context.top && experimentChoice(figures, context.top),
+    experiment: context.whole && experimentChoice(figures, context.whole),
     counts,
-    withoutVerdict: context.top ? cells.length - formed.filter((cell) => cell.verdict !== null).length : 0,
+    withoutVerdict: context.whole ? cells.length - formed.filter((cell) => cell.verdict !== null).length : 0,
     worst,
     solventMl: sumOver(context.variant, (parameters) =>
       typeof parameters.solvent === 'string' && !/^\s*(?:\w+\s+)?water\s*$/i.test(parameters.solvent)

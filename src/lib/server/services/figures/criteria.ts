@@ -1,6 +1,6 @@
 import type { CriterionRule, RecoveryCriteria } from '../../../domain/criteria';
 import type { RecoveryBand } from '../../../domain/recovery-band';
-import type { StudyData, StudyPanelEntry } from './study-data';
+import type { StudyData, StudyExperiment, StudyPanelEntry } from './study-data';
 
 /** What one analyte is held against, and where that comes from. */
 export interface AppliedCriteria {
@@ -34,6 +34,15 @@ export function recoveryBand(rules: readonly CriterionRule[]): RecoveryBand | nu
 
 export function ruleOf(rules: readonly CriterionRule[], type: CriterionRule['type']): CriterionRule | null {
   return rules.find((rule) => rule.type === type) ?? null;
+}
+
+/**
+ * True for an experiment that was spiked in the sample. It alone shows what the whole method recovers, and that is what the
+ * criteria are for: an experiment further down has left part of the procedure out.
+ */
+export function showsWholeMethod(data: StudyData, experiment: StudyExperiment): boolean {
+  const farthest = data.stages.findLast((stage) => stage.kind === 'loss');
+  return experiment.stageKey === farthest?.key;
 }
 
 /** The criteria of one panel entry: its own where it has some, else the study's. */

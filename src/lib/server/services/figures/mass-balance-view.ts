@@ -8,7 +8,7 @@ import type {
 import { balanceOf, type MethodFigures } from '../../amounts/method-figures';
 import { fractionsOf } from '../../amounts/portions';
 import type { Link } from './addresses';
-import { recoveryBand } from './criteria';
+import { recoveryBand, showsWholeMethod } from './criteria';
 import { halfWidth, intervalOf } from './figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { EntryFigures, StudyFigures } from './study-figures';
@@ -18,7 +18,10 @@ import type { Subject } from './subject';
 export function massBalanceOf(figures: StudyFigures, subject: Subject, link: Link): MassBalanceView {
   const { experiment } = subject;
   return {
-    criteria: recoveryBand(figures.data.criteriaSet.rules),
+    criteria:
+      experiment && !showsWholeMethod(figures.data, experiment)
+        ? null
+        : recoveryBand(figures.data.criteriaSet.rules),
     fractions: experiment ? fractionViews(experiment) : [],
     rows: experiment
       ? figures.targets.flatMap((entry) => {

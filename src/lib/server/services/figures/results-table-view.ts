@@ -1,6 +1,6 @@
 import type { ResultRow, ResultsTableView } from '../../../views/findings';
 import type { Link } from './addresses';
-import { criteriaFor } from './criteria';
+import { criteriaFor, showsWholeMethod } from './criteria';
 import { criteriaText, intervalOf, plainEnd, ruleView } from './figure-parts';
 import { incompleteSentence } from './mass-balance-view';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
@@ -26,7 +26,9 @@ export function resultsTableOf(
     experiment: experimentChoice(figures, experiment),
     rows: rows.map((row) => ({ ...row, notes: row.notes.filter((note) => !notes.includes(note)) })),
     notes,
-    rules: rules.filter((rule) => used.includes(rule.type)).map(ruleView)
+    rules: showsWholeMethod(figures.data, experiment)
+      ? rules.filter((rule) => used.includes(rule.type)).map(ruleView)
+      : []
   };
 }
 
@@ -45,7 +47,9 @@ function rowOf(
   link: Link
 ): ResultRow {
   const applied = criteriaFor(figures.data, entry);
-  const criteria = `${criteriaText(applied.criteria)}${applied.overrideReason ? ` (of its own: ${applied.overrideReason})` : ''}`;
+  const criteria = showsWholeMethod(figures.data, experiment)
+    ? `${criteriaText(applied.criteria)}${applied.overrideReason ? ` (of its own: ${applied.overrideReason})` : ''}`
+    : 'none';
   const base = {
     panelEntryId: entry.id,
     name: entry.name,

@@ -123,12 +123,17 @@ function notesOf(context: VariantContext, rows: readonly Named[]): string[] {
           : 'No post-extraction spikes tell the matrix effect, so part of a loss may be masking at the detector.')
     );
   }
+  const highest = context.stages.findLastIndex((stage) => stage.kind === 'loss' && stage.evidence !== null);
+  const above = new Set(context.stages.slice(highest + 1).map((stage) => stage.key));
+  const topName = context.stages[highest]?.name.toLowerCase() ?? '';
   for (const stage of context.stages) {
     if (stage.evidence) continue;
     notes.push(
       stage.kind === 'signal'
         ? `No standards stand for ${stage.name.toLowerCase()} yet: recoveries are held against exactly 100, so a bias of the signal reads as a loss.`
-        : `${stage.name} has no experiment yet: what it takes is part of what the stage above it seems to take.`
+        : above.has(stage.key)
+          ? `${stage.name} has no experiment yet: losses are points of 100 that reach ${topName}, not of 100 in the sample.`
+          : `${stage.name} has no experiment yet: what it takes is part of what the stage above it seems to take.`
     );
   }
   return notes;

@@ -19,7 +19,10 @@ export function stageLadderOf(
   return {
     criteria: recoveryBand(figures.data.criteriaSet.rules),
     wholeMethod: {
-      note: variant ? `what the extract holds, variant ${variant.code}` : 'what the extract holds',
+      note: [
+        context?.top && !context.whole ? 'nothing was spiked in the sample yet' : 'what the extract holds',
+        ...(variant ? [`variant ${variant.code}`] : [])
+      ].join(', '),
       href: variant ? `${base}/balance?variant=${variant.code}` : `${base}/balance`,
       points: wholeMethodPoints(figures, context, link)
     },
@@ -28,7 +31,7 @@ export function stageLadderOf(
 }
 
 function wholeMethodPoints(figures: StudyFigures, context: VariantContext | null, link: Link): StagePoint[] {
-  const top = context?.top;
+  const top = context?.whole;
   if (!top) return [];
   return figures.targets.flatMap((entry) => {
     const found = figures.entry(top.id, entry.id);

@@ -6,7 +6,7 @@ import { relativeFigures, type RelativeFigures } from '../../amounts/relative-re
 import { surrogateFigures, type SurrogateFigures } from '../../amounts/surrogates';
 import { variantFigures, type StageOfVariant, type VariantFigures } from '../../amounts/variant-figures';
 import { NotFound } from '../../errors';
-import { criteriaFor, ruleOf } from './criteria';
+import { criteriaFor, ruleOf, showsWholeMethod } from './criteria';
 import type { StudyData, StudyExperiment, StudyPanelEntry, StudyVariant } from './study-data';
 
 /** One analyte of one experiment: figures, or the reason why there are none. */
@@ -19,6 +19,8 @@ export interface VariantContext {
   readonly variant: StudyVariant;
   /** The experiment that stands for the stage farthest upstream that has one; null: nothing is measured. */
   readonly top: StudyExperiment | null;
+  /** `top` where it was spiked in the sample; null: nothing is known of the whole method yet. */
+  readonly whole: StudyExperiment | null;
   readonly stages: readonly StageOfVariant[];
   readonly figures: VariantFigures;
 }
@@ -65,7 +67,12 @@ export function studyFigures(data: StudyData): StudyFigures {
       const relative = input.kind === 'relative only' ? relativeFigures(of, item) : null;
       return { ...input, relative };
     }
-    return { ready: true, ...methodFigures(input, criteriaFor(data, item).criteria) };
+    if (showsWholeMethod(data, orNotFound(experiments.get(of.experiment.id))))
+      return { ready: true, ...methodFigures(input, criteriaFor(data, item).criteria) };
+    const figures = methodFigures(input, null);
+    return figures.balance.method
+      ? { ready: true, ...figures, reasons: ['criteria are for the whole method, spiked in the sample'] }
+      : { ready: true, ...figures };
   });
 
   const contexts = remembered((key: string): VariantContext => {
@@ -83,7 +90,8 @@ export function studyFigures(data: StudyData): StudyFigures {
       .reverse()
       .find((stage) => stage.kind === 'loss' && evidence.has(stage.key))?.key;
     const top = topKey ? (experiments.get(evidence.get(topKey) ?? '') ?? null) : null;
-    return { variant, top, stages, figures: variantFigures(stages, targets) };
+    const whole = top && showsWholeMethod(data, top) ? top : null;
+    return { variant, top, whole, stages, figures: variantFigures(stages, targets) };
   });
 
   return {

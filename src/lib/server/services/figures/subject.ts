@@ -17,7 +17,7 @@ export interface Subject {
 
 /**
  * Resolves what a page is about. An experiment that stands for a variant brings that variant; without a wish, the last variant
- * with an experiment at its top comes, else the last extraction experiment.
+ * that was measured from the sample on comes, else the last with any experiment, else the last experiment spiked farthest up.
  * @throws NotFound for a variant or an experiment that the study does not have
  */
 export function subjectOf(figures: StudyFigures, query: SubjectQuery): Subject {
@@ -33,10 +33,14 @@ export function subjectOf(figures: StudyFigures, query: SubjectQuery): Subject {
     // An experiment below the top of the variant is looked at by itself.
     return { experiment, context: context?.top?.id === experiment.id ? context : null };
   }
-  const variant = asked ?? [...data.variants].reverse().find((item) => figures.variant(item).top) ?? null;
+  const variant =
+    asked ??
+    data.variants.findLast((item) => figures.variant(item).whole) ??
+    data.variants.findLast((item) => figures.variant(item).top) ??
+    null;
   if (variant) {
     const context = figures.variant(variant);
-    return { experiment: context.top, context };
+    return { experiment: context.whole, context };
   }
   return { experiment: farthestExperiments(figures).at(-1) ?? null, context: null };
 }

@@ -66,17 +66,17 @@ function findingsOf(figures: StudyFigures, link: Link): SummaryFindings[] {
   const { data } = figures;
   const ofVariants = data.variants.flatMap((variant): SummaryFindings[] => {
     const context = figures.variant(variant);
-    if (!context.top) return [];
-    const subject = { experiment: context.top, context };
+    if (!context.whole) return [];
+    const subject = { experiment: context.whole, context };
     return [
       {
         key: variant.code,
         heading: `Variant ${variant.code}, ${variant.name}`,
         findings: stageFindingsOf(figures, context, link),
-        results: resultsTableOf(figures, context.top, link),
+        results: resultsTableOf(figures, context.whole, link),
         balance: massBalanceOf(figures, subject, link),
         walkBack: walkBackOf(figures, context, link),
-        portions: portionsOf(figures, context.top, link)
+        portions: portionsOf(figures, context.whole, link)
       }
     ];
   });

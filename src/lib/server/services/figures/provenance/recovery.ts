@@ -4,7 +4,7 @@ import type { ProvenanceTable, ProvenanceView } from '../../../../views/provenan
 import type { Portion } from '../../../amounts/portions';
 import type { Value } from '../../../stats';
 import { addressText, type Link } from '../addresses';
-import { criteriaFor } from '../criteria';
+import { criteriaFor, showsWholeMethod } from '../criteria';
 import { criteriaText, intervalOf, intervalText, plainEnd, sentence } from '../figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from '../study-data';
 import type { EntryFigures, StudyFigures } from '../study-figures';
@@ -39,6 +39,7 @@ export function recoveryProvenance(
     };
   }
   const { criteria, overrideReason } = criteriaFor(figures.data, entry);
+  const judged = showsWholeMethod(figures.data, experiment);
   const limits = criteria ? [criteria.low, criteria.high] : [];
   const { method } = found.balance;
   const several = found.input.fractions.filter((fraction) => fraction.countsAs === 'method').length > 1;
@@ -54,7 +55,9 @@ export function recoveryProvenance(
       ...spreadSentences(found),
       ...subtractedSentences(found),
       ...endsSentences(found),
-      `Held against ${criteriaText(criteria)}${overrideReason ? `, of its own: ${overrideReason}` : `, ${figures.data.criteriaSet.name}`}.`
+      judged
+        ? `Held against ${criteriaText(criteria)}${overrideReason ? `, of its own: ${overrideReason}` : `, ${figures.data.criteriaSet.name}`}.`
+        : 'Held against nothing: the criteria are for the whole method, spiked in the sample.'
     ],
     inputs: [
       input('Amount spiked', found.input.spikeNg, 'ng', { note: spikeNote(found) }),
