@@ -15,14 +15,17 @@ export const load: PageServerLoad = async ({ locals, params, url, parent }) => {
   if (!may.plan)
     throw new Forbidden('Experiments are planned by a chemist or a lab manager, while the study is open.');
   const { matrix, sampleVolumeMl } = await getStudy(actor, params.study);
+  const stageKey = url.searchParams.get('stage') ?? 'instrument';
+  const inSample = stageKey === 'extraction';
   return {
     choices: await experimentChoices(actor, params.study),
     first: {
-      stageKey: url.searchParams.get('stage') ?? 'instrument',
+      stageKey,
       variantCode: url.searchParams.get('variant') ?? '',
-      matrix,
+      // Work further down is in solvent as a rule, to which the study's matrix does not belong.
+      matrix: inSample ? matrix : '',
       sampleVolumeMl: String(sampleVolumeMl ?? ''),
-      medium: 'solvent',
+      medium: inSample ? 'sample matrix' : 'solvent',
       subtract: 'none',
       'fractions.0.name': 'Elution',
       'fractions.0.kind': 'elution',
