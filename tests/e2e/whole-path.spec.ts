@@ -363,7 +363,7 @@ test('four people take a study from its first line to the summary', async ({ bro
   const openTable = (page: Page) => page.getByText('The same figures as a table').click();
 
   await test.step('the chemist reads five portions, of which one pulls the recovery out of its limits', async () => {
-    await chemist.goto(`${base}/balance?variant=A`);
+    await chemist.goto(`${base}/balance`);
     await openTable(chemist);
     const texts = await cells(balanceRow(chemist));
     expect(texts[0]).toContain('Outside');
@@ -377,7 +377,7 @@ test('four people take a study from its first line to the summary', async ({ bro
     await chemist.getByLabel('Why?').fill('The bed ran dry while loading');
     await chemist.getByRole('button', { name: 'Set it aside' }).click();
     await expect(chemist.getByText('It is set aside.')).toBeVisible();
-    await chemist.goto(`${base}/balance?variant=A`);
+    await chemist.goto(`${base}/balance`);
     await openTable(chemist);
     const { mean, halfWidth, rsd, n } = byHand.withoutS5;
     // Verdict, recovery, ±, RSD, n, three fractions, lost downstream, open, found in all.
@@ -397,7 +397,7 @@ test('four people take a study from its first line to the summary', async ({ bro
   });
 
   await test.step('reads what each stage takes, on the ladder and in the walk-back', async () => {
-    await chemist.goto(`${base}?variant=A`);
+    await chemist.goto(base);
     await openTable(chemist);
     const ladder = rowOf(chemist.getByRole('table', { name: /Stage ladder/ }), 'Carbamazepine');
     const texts = await cells(ladder);
@@ -409,7 +409,7 @@ test('four people take a study from its first line to the summary', async ({ bro
       concentrationTakes,
       '0.0'
     ]);
-    await chemist.goto(`${base}/walk-back?variant=A`);
+    await chemist.goto(`${base}/walk-back`);
     await openTable(chemist);
     const walk = rowOf(chemist.getByRole('table', { name: /Walk-back, variant A/ }), 'Carbamazepine');
     for (const figure of [extractionTakes, dryingTakes, concentrationTakes])
@@ -420,13 +420,22 @@ test('four people take a study from its first line to the summary', async ({ bro
       await expect(surrogates.filter({ hasText: portion })).toContainText(byHand.surrogate);
   });
 
+  await test.step('is told that variant B, not spiked in the sample yet, has no figure of the whole method', async () => {
+    await chemist.goto(`${base}/compare`);
+    const row = rowOf(chemist.getByRole('table', { name: /Method recovery/ }), 'Carbamazepine');
+    await expect(row.getByRole('cell').nth(0)).toContainText(byHand.withoutS5.mean);
+    await expect(row.getByRole('cell').nth(1)).toHaveText('not spiked in the sample yet');
+    await chemist.goto(`${base}/balance?variant=B`);
+    await expect(chemist.getByText('There is nothing to add up yet')).toBeVisible();
+  });
+
   await test.step('lifts the exclusion, finds the old figure, and sets it aside again', async () => {
     await chemist.goto(`${base}/experiments/4`);
     await chemist.getByRole('link', { name: 'Lift the exclusion of E4-S5' }).click();
     await chemist.getByLabel('Why?').fill('The bench notes are read once more');
     await chemist.getByRole('button', { name: 'Let it count' }).click();
     await expect(chemist.getByText('It counts again.')).toBeVisible();
-    await chemist.goto(`${base}/balance?variant=A`);
+    await chemist.goto(`${base}/balance`);
     await openTable(chemist);
     expect(await cells(balanceRow(chemist))).toContain(byHand.all.mean);
     await chemist.goto(`${base}/experiments/4`);
