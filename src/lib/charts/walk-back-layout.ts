@@ -38,7 +38,7 @@ export function walkBackLayout(
   const ends = view.rows.flatMap(({ losses }) =>
     losses.flatMap((loss) => (loss ? [loss.lost, loss.interval?.lower ?? 0, loss.interval?.upper ?? 0] : []))
   );
-  const x = scaleLinear([Math.min(0, ...ends), Math.max(20, ...ends)], [3, 97]).nice(4);
+  const x = scaleLinear([Math.min(0, ...ends), Math.max(20, ...ends)], [3, 97]).nice(10);
   const y = (index: number): number => round(((index + middle) / view.rows.length) * 100);
   const beside = 16 / Math.max(1, view.rows.length);
   const line = (value: number): string =>

@@ -17,3 +17,17 @@ export function walkBackSentence(row: WalkBackRow, stages: WalkBackView['stages'
   const left = row.remaining === null ? [] : [`${percentText(row.remaining)} of 100 left`];
   return `${row.name}: ${[...parts, ...left].join(', ')}${row.gap === null ? '' : `; ${row.gap}`}`;
 }
+
+export interface WalkBackNote {
+  readonly text: string;
+  readonly names: readonly string[];
+}
+
+/** What the rows cannot show, each reason once with the analytes it holds for, in the order of the rows. */
+export function walkBackNotes({ rows }: WalkBackView): readonly WalkBackNote[] {
+  const names = new Map<string, string[]>();
+  for (const { gap, name } of rows) {
+    if (gap !== null) names.set(gap, [...(names.get(gap) ?? []), name]);
+  }
+  return [...names].map(([text, found]) => ({ text, names: found }));
+}

@@ -71,7 +71,7 @@ function gapOf(
     parts.push(`What ${nameOf(row.stage).toLowerCase()} seems to take includes ${missing}.`);
   }
   if (item.rows.some((row) => row.lost !== null && row.lost.estimate === null)) {
-    parts.push(`Nothing of ${item.entry.name} came back at some stage, so its losses cannot be told apart.`);
+    parts.push('Nothing came back at some stage, so the losses cannot be told apart.');
   }
   return parts.length > 0 ? parts.join(' ') : null;
 }

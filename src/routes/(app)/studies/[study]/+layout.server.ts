@@ -10,6 +10,7 @@ export const load: LayoutServerLoad = async ({ locals, params }) => {
     params.study
   );
   return {
+    openedAt: new Date().toISOString(),
     study: { code, title, state, isOpen, revision, counts, stages, matrix },
     /** What the member may do here now: their role allows it and the study is open. */
     may: {
