@@ -42,7 +42,7 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
       remove: 'members.manage'
     }
   },
-  '/(app)/lab/settings': { read: 'member', write: { default: 'lab.settings' } },
+  '/(app)/lab/settings': { read: 'lab.settings', write: { default: 'lab.settings' } },
   '/(app)/lab/history': { read: 'lab.settings' },
   '/(app)/studies/[study]/history': { read: 'studies.see' },
   '/(app)/library': { read: 'studies.see' },
