@@ -262,7 +262,7 @@ export async function listImports(actor: Actor, studyCode: string): Promise<read
   const rows = await sequelize.query<ListRow>(
     `SELECT i.id, i.file_name, i.byte_size, i.sha256, i.state, i.counts, i.received_at, r.name AS received_by,
         i.stored_at, s.name AS stored_by, i.stored_by AS stored_by_id, i.ended_at, e.name AS ended_by, i.end_reason,
-        (SELECT array_agg(x.number || ' ' || x.title ORDER BY x.number) FROM experiments x
+        (SELECT array_agg('experiment ' || x.number || ', ' || x.title ORDER BY x.number) FROM experiments x
           WHERE x.id IN (SELECT DISTINCT experiment_id FROM extracts WHERE import_id = i.id)) AS experiments
       FROM imports i JOIN users r ON r.id = i.received_by
         LEFT JOIN users s ON s.id = i.stored_by LEFT JOIN users e ON e.id = i.ended_by

@@ -38,12 +38,3 @@ export function sizeText(bytes: number): string {
   if (bytes < 1024 * 1024) return `${Math.round(bytes / 1024)} kB`;
   return `${(bytes / 1024 / 1024).toFixed(1)} MB`;
 }
-
-const months = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
-
-/** "14 Oct 2026, 09:12 UTC": the same on the server and in every browser. */
-export function whenText(iso: string): string {
-  const at = new Date(iso);
-  const two = (value: number): string => String(value).padStart(2, '0');
-  return `${at.getUTCDate()} ${months[at.getUTCMonth()]} ${at.getUTCFullYear()}, ${two(at.getUTCHours())}:${two(at.getUTCMinutes())} UTC`;
-}
