@@ -35,7 +35,7 @@ function measurements(rows: number): Promise<Buffer> {
 }
 
 /** The floor: the sheet inflated by zlib and scanned by the SAX parser, with nothing done about what it finds. */
-async function inflateAndScan(bytes: Buffer): Promise<number> {
+export async function inflateAndScan(bytes: Buffer): Promise<number> {
   const zip = await yauzl.fromBufferPromise(bytes, { lazyEntries: true });
   let events = 0;
   for await (const entry of zip.eachEntry()) {
