@@ -8,11 +8,8 @@ import { createCalibrationSet } from '../../../src/lib/server/services/calibrati
 import { createExperiment, getExperiment } from '../../../src/lib/server/services/experiments';
 import { storeImport } from '../../../src/lib/server/services/import-storing';
 import { receiveFile } from '../../../src/lib/server/services/imports';
-import {
-  massBalanceView,
-  provenanceView,
-  resultsTableView
-} from '../../../src/lib/server/services/results';
+import { getPanel } from '../../../src/lib/server/services/panels';
+import { massBalanceView, provenanceView, resultsTableView } from '../../../src/lib/server/services/results';
 import type { ResultRow } from '../../../src/lib/views/findings';
 import type { MassBalanceRow } from '../../../src/lib/views/mass-balance';
 import type { ProvenanceView } from '../../../src/lib/views/provenance';
@@ -34,10 +31,15 @@ export interface Bench {
   readonly experiment: (typed: Typed) => Promise<number>;
   /** Uploads a text file parted by semicolons and stores it. @returns the import */
   readonly upload: (rows: readonly Row[], options?: UploadOptions) => Promise<string>;
-  readonly uploadBook: (sheets: Readonly<Record<string, readonly Row[]>>, options?: UploadOptions) => Promise<string>;
+  readonly uploadBook: (
+    sheets: Readonly<Record<string, readonly Row[]>>,
+    options?: UploadOptions
+  ) => Promise<string>;
   readonly result: (experiment: number, name: string) => Promise<ResultRow>;
   readonly balance: (experiment: number, name: string) => Promise<MassBalanceRow>;
   readonly provenance: (experiment: number, entry: PanelEntry) => Promise<ProvenanceView>;
+  /** Ids of the panel entries, in panel order. */
+  readonly panel: () => Promise<readonly string[]>;
   /** Replicate ids by label and fraction ids by name. */
   readonly places: (experiment: number) => Promise<Places>;
 }
@@ -132,6 +134,7 @@ export async function openBench(): Promise<Bench> {
     },
     provenance: (experiment, entry) =>
       provenanceView(actor, code, `recovery:${experiment}:${entry.id}`, (address) => address),
+    panel: async () => (await getPanel(actor, code)).map(({ id }) => id),
     places: async (experiment) => {
       const view = await getExperiment(actor, code, experiment);
       return {
@@ -149,10 +152,6 @@ function named<Item extends { readonly name: string }>(rows: readonly Item[], na
 }
 
 /** A group of preparations as it is typed. */
-export function portions(
-  kind: string,
-  labels: readonly string[],
-  more: Typed = {}
-): Typed {
+export function portions(kind: string, labels: readonly string[], more: Typed = {}): Typed {
   return { kind, count: labels.length, labels: labels.join('\n'), ...more };
 }

@@ -20,19 +20,83 @@ import { openBench, portions, type Bench, type Row } from './bench';
  * External: mean of 40.5, 40, 48 = 42.8333; the others: 41, 40, 48 = 43, SD sqrt((4 + 9 + 25)/2) = sqrt(19).
  */
 const levels: Readonly<Record<string, Readonly<Record<string, number>>>> = {
-  L1: { Extern: 1000, Vialin: 2000, VialStd: 4000, Extractin: 1000, ExtractStd: 20000, Labelled: 2500, LabelStd: 16000 },
-  L2: { Extern: 2000, Vialin: 4000, VialStd: 5000, Extractin: 2000, ExtractStd: 20000, Labelled: 5000, LabelStd: 16000 },
-  L3: { Extern: 10000, Vialin: 20000, VialStd: 5000, Extractin: 10000, ExtractStd: 20000, Labelled: 25000, LabelStd: 16000 }
+  L1: {
+    Extern: 1000,
+    Vialin: 2000,
+    VialStd: 4000,
+    Extractin: 1000,
+    ExtractStd: 20000,
+    Labelled: 2500,
+    LabelStd: 16000
+  },
+  L2: {
+    Extern: 2000,
+    Vialin: 4000,
+    VialStd: 5000,
+    Extractin: 2000,
+    ExtractStd: 20000,
+    Labelled: 5000,
+    LabelStd: 16000
+  },
+  L3: {
+    Extern: 10000,
+    Vialin: 20000,
+    VialStd: 5000,
+    Extractin: 10000,
+    ExtractStd: 20000,
+    Labelled: 25000,
+    LabelStd: 16000
+  }
 };
 const standards = { VialStd: 5000, ExtractStd: 20000, LabelStd: 16000 };
 const injections = [
-  { sample: 'S1', injection: 1, volume: '500,0', dilution: 1, share: '50', areas: { Extern: 8000, Vialin: 16000, Extractin: 4000, Labelled: 16000 } },
-  { sample: 'S1', injection: 2, volume: '500,0', dilution: 1, share: '50', areas: { Extern: 8200, Vialin: 16800, Extractin: 4200, Labelled: 16800 } },
-  { sample: 'S2', injection: 1, volume: '500,0', dilution: 1, share: '100', areas: { Extern: 15000, Vialin: 30000, Extractin: 13000, Labelled: 32000 } },
-  { sample: 'S2', injection: 2, volume: '500,0', dilution: 4, share: '100', areas: { Extern: 4000, Vialin: 8000, Extractin: 8000, Labelled: 16000 } },
-  { sample: 'S3', injection: 1, volume: '400,0', dilution: 2, share: '25', areas: { Extern: 3000, Vialin: 6000, Extractin: 2400, Labelled: 19200 } }
+  {
+    sample: 'S1',
+    injection: 1,
+    volume: '500,0',
+    dilution: 1,
+    share: '50',
+    areas: { Extern: 8000, Vialin: 16000, Extractin: 4000, Labelled: 16000 }
+  },
+  {
+    sample: 'S1',
+    injection: 2,
+    volume: '500,0',
+    dilution: 1,
+    share: '50',
+    areas: { Extern: 8200, Vialin: 16800, Extractin: 4200, Labelled: 16800 }
+  },
+  {
+    sample: 'S2',
+    injection: 1,
+    volume: '500,0',
+    dilution: 1,
+    share: '100',
+    areas: { Extern: 15000, Vialin: 30000, Extractin: 13000, Labelled: 32000 }
+  },
+  {
+    sample: 'S2',
+    injection: 2,
+    volume: '500,0',
+    dilution: 4,
+    share: '100',
+    areas: { Extern: 4000, Vialin: 8000, Extractin: 8000, Labelled: 16000 }
+  },
+  {
+    sample: 'S3',
+    injection: 1,
+    volume: '400,0',
+    dilution: 2,
+    share: '25',
+    areas: { Extern: 3000, Vialin: 6000, Extractin: 2400, Labelled: 19200 }
+  }
 ] as const;
-const standardOf = { Extern: null, Vialin: 'VialStd', Extractin: 'ExtractStd', Labelled: 'LabelStd' } as const;
+const standardOf = {
+  Extern: null,
+  Vialin: 'VialStd',
+  Extractin: 'ExtractStd',
+  Labelled: 'LabelStd'
+} as const;
 const targets = ['Extern', 'Vialin', 'Extractin', 'Labelled'] as const;
 
 /** Decimal commas throughout: "8000,0". */
@@ -40,18 +104,48 @@ const comma = (value: number): string => value.toFixed(1).replace('.', ',');
 
 function longFile(): Row[] {
   const rows: Row[] = [
-    ['Sample', 'Fraction', 'Analyte', 'Peak area', 'IS area', 'Final volume (µL)', 'Dilution', 'Aliquot share (%)', 'Injection']
+    [
+      'Sample',
+      'Fraction',
+      'Analyte',
+      'Peak area',
+      'IS area',
+      'Final volume (µL)',
+      'Dilution',
+      'Aliquot share (%)',
+      'Injection'
+    ]
   ];
   for (const [level, areas] of Object.entries(levels)) {
     for (const target of targets) {
       const standard = standardOf[target];
-      rows.push([level, '', target, comma(areas[target]!), standard ? comma(areas[standard]!) : '', '', '', '', 1]);
+      rows.push([
+        level,
+        '',
+        target,
+        comma(areas[target]!),
+        standard ? comma(areas[standard]!) : '',
+        '',
+        '',
+        '',
+        1
+      ]);
     }
   }
   for (const { sample, injection, volume, dilution, share, areas } of injections) {
     for (const target of targets) {
       const standard = standardOf[target];
-      rows.push([sample, 'Elution', target, comma(areas[target]), standard ? comma(standards[standard]) : '', volume, dilution, share, injection]);
+      rows.push([
+        sample,
+        'Elution',
+        target,
+        comma(areas[target]),
+        standard ? comma(standards[standard]) : '',
+        volume,
+        dilution,
+        share,
+        injection
+      ]);
     }
   }
   return rows;
@@ -61,7 +155,15 @@ function longFile(): Row[] {
 function wideFile(): Row[] {
   const order = ['ExtractStd', 'Labelled', 'VialStd', 'Extern', 'Vialin', 'LabelStd', 'Extractin'] as const;
   return [
-    ['Aliquot share (%)', ...order.slice(0, 3).map((name) => `${name} area`), 'Sample', 'Injection', ...order.slice(3).map((name) => `${name} area`), 'Dilution', 'Final volume (µL)'],
+    [
+      'Aliquot share (%)',
+      ...order.slice(0, 3).map((name) => `${name} area`),
+      'Sample',
+      'Injection',
+      ...order.slice(3).map((name) => `${name} area`),
+      'Dilution',
+      'Final volume (µL)'
+    ],
     ...Object.entries(levels).map(([level, areas]): Row => [
       '',
       ...order.slice(0, 3).map((name) => comma(areas[name]!)),
@@ -142,6 +244,10 @@ describe.each([
     expect(row.verdict).toBeNull();
     expect(row.relative).toMatchObject({ n: 3, standard: 'LabelStd' });
     expect(row.relative?.mean).toBeCloseTo(43, 10);
-    expect(await bench.balance(experiment, 'Labelled')).toMatchObject({ method: null, total: null, open: null });
+    expect(await bench.balance(experiment, 'Labelled')).toMatchObject({
+      method: null,
+      total: null,
+      open: null
+    });
   });
 });

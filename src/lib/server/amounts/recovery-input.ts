@@ -138,11 +138,18 @@ function subtracting(given: SubtractionGiven): RecoveryInput {
   // Portions of their own size or spike lose their own amount; that is exact only with natives complete in every fraction.
   const natives = alike ? given.usable : given.usable.filter(isComplete);
   const takenFrom = natives.length > 0 ? natives : given.usable;
+  const dropped = given.usable.filter((portion) => !takenFrom.includes(portion));
+  if (dropped.length > 0) {
+    const labels = dropped.map(({ replicate }) => replicate.label).join(', ');
+    notes.push(
+      `${labels} lacks a fraction, so it is not subtracted where portions differ in volume or spike`
+    );
+  }
   const native = takenFrom.map((portion) => percentOf(portion, reference / (sizes?.(portion) ?? 1)));
   if (!alike)
     notes.push('portions of another volume or spike lose what their own volume and spike make of it');
 
-  const batches = batchesOf(counted, takenFrom);
+  const batches = batchesOf(counted, takenFrom, fractions);
   notes.push(...batches.notes);
   const meanOfFraction = (fraction: Fraction, batch: string | undefined): number => {
     const values = native.map((record) => record[fraction.id] ?? null);
@@ -205,6 +212,10 @@ function isComplete(portion: Portion): boolean {
   return portion.places.every((place) => place.ng !== null);
 }
 
+function isMethodComplete(portion: Portion): boolean {
+  return portion.places.every((place) => place.ng !== null || place.fraction.countsAs !== 'method');
+}
+
 function someSized(portions: readonly Portion[]): boolean {
   return portions.some(
     ({ replicate }) => replicate.sampleVolumeMl !== null || replicate.sampleMassG !== null
@@ -218,13 +229,21 @@ interface Batches {
 }
 
 /** Batch labels for matching each portion with its own batch, or nulls where pooling is all there is. */
-function batchesOf(counted: readonly Portion[], natives: readonly Portion[]): Batches {
+function batchesOf(
+  counted: readonly Portion[],
+  natives: readonly Portion[],
+  fractions: readonly Fraction[]
+): Batches {
   const label = (portion: Portion, unlabelled: string): string => portion.replicate.batch ?? unlabelled;
   const spiked = counted.map((portion) => label(portion, ' spiked without a batch'));
   const native = natives.map((portion) => label(portion, ' unspiked without a batch'));
-  // A batch can be matched only where one of its portions is complete, since totals are formed per portion.
-  const known = new Set(native.filter((_, index) => isComplete(natives[index]!)));
-  const without = [...new Set(spiked.filter((batch) => !known.has(batch)))];
+  const lacking = (holds: (portion: Portion) => boolean): string[] => {
+    const known = new Set(native.filter((_, index) => holds(natives[index]!)));
+    return [...new Set(spiked.filter((batch) => !known.has(batch)))];
+  };
+  // Totals are formed per portion, so a batch can be matched only where one of its portions is complete: for the method in the
+  // method's fractions, for the balance in all.
+  const without = lacking(isMethodComplete);
   if (without.length === new Set(spiked).size) {
     const labelled = counted.some((portion) => portion.replicate.batch !== null);
     return {
@@ -233,14 +252,15 @@ function batchesOf(counted: readonly Portion[], natives: readonly Portion[]): Ba
       notes: labelled ? ['pooled over all batches: none of the batches has a portion of its own'] : []
     };
   }
-  const notes =
-    without.length > 0
-      ? [
-          `pooled for ${without.map((batch) => `batch ${batch.trim()}`).join(', ')}, which has no portion of its own`
-        ]
-      : known.size > 1
-        ? ['each portion loses the mean of its own batch']
-        : [];
+  const pooled = (batches: readonly string[], where: string): string =>
+    `pooled ${where}for ${batches.map((batch) => `batch ${batch.trim()}`).join(', ')}, which has no portion of its own`;
+  const inBalance = lacking(isComplete).filter((batch) => !without.includes(batch));
+  const notes: string[] = [];
+  if (without.length > 0) notes.push(pooled(without, ''));
+  else if (new Set(native).size > 1) notes.push('each portion loses the mean of its own batch');
+  if (inBalance.length > 0 && fractions.some(({ countsAs }) => countsAs === 'balance')) {
+    notes.push(`${pooled(inBalance, 'in the balance ')} that is complete`);
+  }
   return { spiked, native, notes };
 }
 
