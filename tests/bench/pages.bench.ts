@@ -2,6 +2,7 @@ import { readFileSync } from 'node:fs';
 import { resolve } from 'node:path';
 import { Readable } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
+import { gzipSync } from 'node:zlib';
 import { Client } from 'pg';
 import { from as copyFrom } from 'pg-copy-streams';
 import { largeInjections, largeSubstances } from '../../seeders/demo/large-study';
@@ -48,14 +49,17 @@ async function signInToFirstTable(context: BenchContext): Promise<BenchResult> {
   return { figure, floor: password + 2 * bare, unit: 'ms' };
 }
 
-/** The mass balance of 150 analytes, figures formed, against a bare page of the same signed-in person. */
+/** The mass balance of 150 analytes, figures formed, against a bare page of the same person and compressing the same HTML. */
 async function largePage(context: BenchContext): Promise<BenchResult> {
   const { lab } = await demoLab(context);
   const visitor = new Visitor(lab.origin);
   await visitor.signIn('chemist');
   const bare = await medianMs(() => visitor.page('/account'));
+  const html = await visitor.page(`${large}/balance`);
+  const compressing = await medianMs(() => gzipSync(html));
   const figure = await medianMs(() => visitor.page(`${large}/balance`));
-  return { figure, floor: bare, unit: 'ms' };
+  context.note(`the HTML of that page: ${(html.length / 1024).toFixed(0)} kB`);
+  return { figure, floor: bare + compressing, unit: 'ms' };
 }
 
 async function copyFloor(databaseUrl: string, rows: number): Promise<number> {
@@ -137,9 +141,7 @@ async function upload(context: BenchContext): Promise<Upload> {
 
   const readMs = await medianMs(() => inflateAndScan(bytes), { runs: 5, warmUps: 1 });
   const copyMs = await copyFloor(databaseUrl, count);
-  context.note(
-    `upload of ${count} values: ${wholeMs.toFixed(0)} ms to the mass balance; the file was read twice, for the look and for storing`
-  );
+  context.note(`upload of ${count} values: ${wholeMs.toFixed(0)} ms to the mass balance`);
   return { wholeMs, floorMs: readMs + copyMs, quiet, meanwhile };
 }
 
@@ -159,7 +161,7 @@ async function scriptWeight(context: BenchContext): Promise<BenchResult> {
       total += readFileSync(resolve('build', 'client', `${script}.gz`)).byteLength;
     return total / 1024;
   };
-  return { figure: await weigh('/studies/TARROW-1/balance'), floor: await weigh('/sign-in'), unit: 'kB' };
+  return { figure: await weigh('/studies/TARROW-1/balance'), floor: await weigh('/help'), unit: 'kB' };
 }
 
 export const benchmarks: readonly Benchmark[] = [
@@ -169,13 +171,13 @@ export const benchmarks: readonly Benchmark[] = [
     run: signInToFirstTable
   },
   {
-    name: 'mass-balance page of 150 analytes against a bare page',
-    goal: { ratio: 6, is: 'at most' },
+    name: 'mass-balance page of 150 analytes against a bare page and compressing it',
+    goal: { ratio: 2, is: 'at most' },
     run: largePage
   },
   {
     name: 'upload of 150 analytes × 60 injections, stored and shown, against inflate + scan + COPY',
-    goal: { ratio: 12, is: 'at most' },
+    goal: { ratio: 3, is: 'at most' },
     run: async (context) => {
       const { wholeMs, floorMs } = await uploadOnce(context);
       return { figure: wholeMs, floor: floorMs, unit: 'ms' };
@@ -193,7 +195,7 @@ export const benchmarks: readonly Benchmark[] = [
     }
   },
   {
-    name: 'JavaScript of the mass-balance page (gzip) against the sign-in page',
+    name: 'JavaScript of the mass-balance page (gzip) against a page of text',
     goal: { ratio: 2, is: 'at most' },
     run: scriptWeight
   }

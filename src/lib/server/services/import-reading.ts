@@ -1,3 +1,5 @@
+import { createHash } from 'node:crypto';
+import { LRUCache } from 'lru-cache';
 import pLimit from 'p-limit';
 import type { Study } from '../db/models/study';
 import { mapInChild } from '../imports/read-in-child';
@@ -8,6 +10,30 @@ import { loadExpectation, nothingDeclared, type Declared } from './import-expect
 
 /** A reading child may take a few hundred MB: no more than this many at once in one process; others wait their turn. */
 const turns = pLimit(2);
+
+type Read = Awaited<ReturnType<typeof mapInChild>>;
+
+/**
+ * What was read a moment ago: a person looks at a file page by page and then stores it. The bytes of an import never change,
+ * and the key holds all of what else the reading depends on, so that a kept reading is the one a new reading would give.
+ */
+const recent = new LRUCache<string, Read>({ maxSize: 100_000, sizeCalculation: weightOf, ttl: 10 * 60_000 });
+
+/** In records; ten cells of the sheet weigh about as much as one. */
+function weightOf({ workbook, mapped }: Read): number {
+  const cells = workbook.sheets.reduce((sum, sheet) => sum + sheet.values.length, 0);
+  return 1 + mapped.records.length + Math.ceil(cells / 10);
+}
+
+async function readOnce(importId: string, expectation: Expectation): Promise<Read> {
+  const key = createHash('sha256').update(importId).update(JSON.stringify(expectation)).digest('hex');
+  const known = recent.get(key);
+  if (known) return known;
+  const bytes = await bytesOf(importId);
+  const read = await turns(() => mapInChild(bytes, expectation));
+  recent.set(key, read);
+  return read;
+}
 
 export type ImportReading =
   | { readonly kind: 'refused'; readonly sentence: string }
@@ -27,12 +53,9 @@ export async function readKeptFile(
   kept: Readonly<{ id: string; declared: unknown }>
 ): Promise<ImportReading> {
   const declared: Declared = { ...nothingDeclared, ...(kept.declared as Partial<Declared>) };
-  const [bytes, expectation] = await Promise.all([
-    bytesOf(kept.id),
-    loadExpectation({ labId: study.labId, studyId: study.id }, declared)
-  ]);
+  const expectation = await loadExpectation({ labId: study.labId, studyId: study.id }, declared);
   try {
-    return { kind: 'read', expectation, ...(await turns(() => mapInChild(bytes, expectation))) };
+    return { kind: 'read', expectation, ...(await readOnce(kept.id, expectation)) };
   } catch (error) {
     if (error instanceof Refusal) return { kind: 'refused', sentence: error.message };
     throw error;
