@@ -36,7 +36,7 @@ describe('what an event changed', () => {
   });
 
   it('words names written in either way', () => {
-    expect(worded('criteriaSetVersionId')).toBe('criteria set version id');
+    expect(worded('criteriaSetVersionId')).toBe('criteria set version');
     expect(worded('sample_volume')).toBe('sample volume');
   });
 });

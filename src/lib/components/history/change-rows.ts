@@ -8,9 +8,10 @@ export interface ChangeRow {
 const isRecord = (value: unknown): value is Readonly<Record<string, unknown>> =>
   typeof value === 'object' && value !== null && !Array.isArray(value);
 
-/** "sampleVolumeMl" and "sample_volume" as words. */
+/** "sampleVolumeMl" and "sample_volume" as words; "replicateId" is the replicate. */
 export function worded(name: string): string {
   return name
+    .replace(/(?<=.)(?:_id|Id)(s?)$/, '$1')
     .replace(/_/g, ' ')
     .replace(/([a-z0-9])([A-Z])/g, (_all, left: string, right: string) => `${left} ${right.toLowerCase()}`);
 }

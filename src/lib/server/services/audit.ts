@@ -4,6 +4,7 @@ import type { HistoryFilter } from '../../schemas/history';
 import type { HistoryChoices, HistoryEvent, HistoryPage } from '../../views/history';
 import { AuditEvent } from '../db/models/audit-event';
 import { Study } from '../db/models/study';
+import { namesOfIds, withNames } from './history-names';
 import { require } from './permissions';
 import { studyOf } from './study-of';
 
@@ -28,7 +29,11 @@ function conditions(actor: Actor, studyId: string | null, filter: HistoryFilter)
   return { [Op.and]: all };
 }
 
-function eventView(event: AuditEvent, codes: ReadonlyMap<string, string>): HistoryEvent {
+function eventView(
+  event: AuditEvent,
+  codes: ReadonlyMap<string, string>,
+  names: ReadonlyMap<string, string>
+): HistoryEvent {
   return {
     seq: Number(event.seq),
     at: event.at.toISOString(),
@@ -38,8 +43,8 @@ function eventView(event: AuditEvent, codes: ReadonlyMap<string, string>): Histo
     studyCode: event.studyId ? (codes.get(event.studyId) ?? null) : null,
     sentence: event.sentence,
     reason: event.reason,
-    before: event.before ?? null,
-    after: event.after ?? null,
+    before: withNames(event.before ?? null, names),
+    after: withNames(event.after ?? null, names),
     hash: event.hash
   };
 }
@@ -81,8 +86,12 @@ export async function listHistory(
   const ids = [...new Set(events.map(({ studyId }) => studyId).filter((id) => id !== null))];
   const studies = await Study.findAll({ where: { labId: actor.labId, id: ids }, attributes: ['id', 'code'] });
   const codes = new Map(studies.map(({ id, code }) => [id, code]));
+  const names = await namesOfIds(
+    actor.labId,
+    events.flatMap(({ before, after }) => [before, after])
+  );
   return {
-    events: events.map((event) => eventView(event, codes)),
+    events: events.map((event) => eventView(event, codes, names)),
     older: found.length > pageSize ? Number(events.at(-1)?.seq) : null,
     choices: await choicesOf(actor, study?.id ?? null)
   };
