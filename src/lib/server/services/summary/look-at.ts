@@ -17,7 +17,13 @@ export function lookAtOf(
   missingEvidence: readonly string[]
 ): LookAt[] {
   return [
-    { title: 'Deviations', items: deviations(findings), none: 'No figure is outside its criteria.' },
+    {
+      title: 'Deviations',
+      items: deviations(findings),
+      none: findings.some(({ results }) => results.rows.some(({ verdict }) => verdict !== null))
+        ? 'No figure is outside its criteria.'
+        : 'No figure was held against criteria yet.'
+    },
     {
       title: 'Exclusions',
       items: exclusions
