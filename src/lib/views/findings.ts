@@ -57,6 +57,8 @@ export interface ResultRow {
   readonly reasons: readonly string[];
   /** "70 to 130 %, RSD at most 20 %, n at least 5" and "of its own" where it has its own. */
   readonly criteria: string;
+  /** The limits that its figures are held against, in percent, so that none is written as if it lay on the other side. */
+  readonly limits: { readonly mean: readonly number[]; readonly rsd: readonly number[] };
   /** Relative recovery, where that is all there is. */
   readonly relative: { readonly mean: number; readonly n: number; readonly standard: string } | null;
   /** Replicates that were set aside or lack something. */
@@ -88,7 +90,12 @@ export interface CompareVariant {
   readonly experiment: ExperimentChoice | null;
   readonly counts: Readonly<Record<Verdict, number>>;
   readonly withoutVerdict: number;
-  readonly worst: { readonly name: string; readonly mean: number } | null;
+  readonly worst: {
+    readonly name: string;
+    readonly mean: number;
+    /** How many more stand equally low. */
+    readonly others: number;
+  } | null;
   /** Sums over the written steps; null where no step states one. */
   readonly solventMl: number | null;
   readonly minutes: number | null;

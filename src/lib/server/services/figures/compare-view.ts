@@ -62,18 +62,13 @@ function variantView(
     verdicts.map((verdict) => [verdict, formed.filter((cell) => cell.verdict === verdict).length])
   ) as Record<Verdict, number>;
   const names = figures.targets.map((entry) => entry.name);
-  let worst: CompareVariant['worst'] = null;
-  cells.forEach((cell, index) => {
-    if (typeof cell === 'string' || (worst && worst.mean <= cell.mean)) return;
-    worst = { name: names[index] ?? '', mean: cell.mean };
-  });
   return {
     code: context.variant.code,
     name: context.variant.name,
     experiment: context.whole && experimentChoice(figures, context.whole),
     counts,
     withoutVerdict: context.whole ? cells.length - formed.filter((cell) => cell.verdict !== null).length : 0,
-    worst,
+    worst: worstOf(cells, names),
     solventMl: sumOver(context.variant, (parameters) =>
       typeof parameters.solvent === 'string' && !/^\s*(?:\w+\s+)?water\s*$/i.test(parameters.solvent)
         ? parameters.volumeMl
@@ -81,6 +76,18 @@ function variantView(
     ),
     minutes: sumOver(context.variant, (parameters) => parameters.minutes)
   };
+}
+
+/** The lowest recovery, with the first analyte that has it and how many more do: nothing found of nine is not one of nine. */
+function worstOf(
+  cells: readonly (CompareCell | string)[],
+  names: readonly string[]
+): CompareVariant['worst'] {
+  const means = cells.map((cell) => (typeof cell === 'string' ? Infinity : cell.mean));
+  const lowest = means.reduce((least, mean) => Math.min(least, mean), Infinity);
+  if (lowest === Infinity) return null;
+  const others = means.filter((mean) => mean === lowest).length - 1;
+  return { name: names[means.indexOf(lowest)] ?? '', mean: lowest, others };
 }
 
 /** Sum of a figure over the written steps; null where no step states it. */
