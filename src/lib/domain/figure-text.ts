@@ -23,6 +23,16 @@ export function figureText(value: number, digits = 3): string {
   return sign + grouped(rounded.toFixed(Math.max(0, digits - 1 - exponent)));
 }
 
+/** How many decimals, `least` or more and at most six, keep a rounded figure on its own side of every limit. */
+export function decimalsBeside(value: number, limits: readonly number[], least: number): number {
+  const crosses = (decimals: number): boolean =>
+    limits.some((limit) => Math.sign(Number(value.toFixed(decimals)) - limit) !== Math.sign(value - limit));
+  let decimals = least;
+  while (decimals < 6 && crosses(decimals)) decimals += 1;
+  // What six decimals do not part from its limit lies on it.
+  return crosses(decimals) ? least : decimals;
+}
+
 /**
  * A percentage or a difference in points, with one decimal below 100 and none from there on, so that a column of
  * them reads alike. A figure on the wrong side of a limit never rounds onto it: 69.97 against 70 is written 69.97.
@@ -31,10 +41,6 @@ export function percentText(value: number, limits: readonly number[] = []): stri
   if (!Number.isFinite(value)) throw new RangeError('A percentage must be a finite number.');
   const size = Math.abs(value);
   const start = Number(size.toFixed(1)) >= 100 ? 0 : 1;
-  const crosses = (decimals: number): boolean =>
-    limits.some((limit) => limit !== value && Number(value.toFixed(decimals)) === limit);
-  let decimals = start;
-  while (decimals < 6 && crosses(decimals)) decimals += 1;
-  const text = size.toFixed(decimals);
+  const text = size.toFixed(decimalsBeside(value, limits, start));
   return (value < 0 && Number(text) !== 0 ? minus : '') + grouped(text);
 }

@@ -35,6 +35,7 @@ export interface Bench {
     sheets: Readonly<Record<string, readonly Row[]>>,
     options?: UploadOptions
   ) => Promise<string>;
+  /** A row of the results, with the notes that are common to all. */
   readonly result: (experiment: number, name: string) => Promise<ResultRow>;
   readonly balance: (experiment: number, name: string) => Promise<MassBalanceRow>;
   readonly provenance: (experiment: number, entry: PanelEntry) => Promise<ProvenanceView>;
@@ -126,7 +127,8 @@ export async function openBench(): Promise<Bench> {
     },
     result: async (experiment, name) => {
       const { results } = await resultsTableView(actor, code, { experiment }, (address) => address);
-      return named(results?.rows ?? [], name);
+      const row = named(results?.rows ?? [], name);
+      return { ...row, notes: [...row.notes, ...(results?.notes ?? [])] };
     },
     balance: async (experiment, name) => {
       const { balance } = await massBalanceView(actor, code, { experiment }, (address) => address);

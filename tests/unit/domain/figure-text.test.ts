@@ -46,4 +46,16 @@ describe('percentText', () => {
   ])('never lets %d round onto a limit of 70 or 130: %s', (value, text) => {
     expect(percentText(value, [70, 130])).toBe(text);
   });
+
+  it.each([
+    [120.45, 120.4, '120.5'],
+    [119.6, 119.8, '119.6'],
+    [70.23, 70.22, '70.23']
+  ])('nor %d past a limit of %d: %s', (value, limit, text) => {
+    expect(percentText(value, [limit])).toBe(text);
+  });
+
+  it('takes what only rounding parts from its limit as lying on it', () => {
+    expect(percentText(70 - 1e-13, [70])).toBe('70.0');
+  });
 });

@@ -105,6 +105,17 @@ export function calibrate(
   }
 }
 
+/** Lowest concentration (ng/mL) of the entry among the levels of the set that are not left out; null: none holds it. */
+export function lowestConcentration({ set, entryId }: Calibration): number | null {
+  if (!set) return null;
+  const { levelsLeftOut } = fitChoiceOf(set, entryId);
+  const held = set.levels
+    .filter((level) => !levelsLeftOut.includes(level.id))
+    .map((level) => level.concentrations.get(entryId) ?? 0)
+    .filter((concentration) => concentration > 0);
+  return held.length > 0 ? Math.min(...held) : null;
+}
+
 /** True when an internal area was recorded for another standard than the one asked for, or for an unnamed one. */
 export function wrongStandard(
   reported: { readonly internalArea: number | null; readonly internalEntryId: string | null },

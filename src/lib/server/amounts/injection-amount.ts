@@ -1,5 +1,5 @@
 import { solveCalibration } from '../stats';
-import { namedStandard, wrongStandard, type Calibration } from './calibration';
+import { lowestConcentration, namedStandard, wrongStandard, type Calibration } from './calibration';
 import type { Practice } from './practice';
 import type { ExtractReported, PanelEntry, Replicate } from './types';
 
@@ -64,7 +64,7 @@ export interface AmountContext {
  * - ng/mL in the vial: m = x DF V/a; ng: m as reported; ng/L: m = c V_sample/1000.
  *
  * Not detected gives its limit as an amount by the same equation; without a limit of its own it takes the lowest level of
- * the line. Above range gives no amount. Never throws: a refusal carries its reason.
+ * the line (reported in the vial: the lowest concentration among the levels of the set). Above range gives no amount. Never throws: a refusal carries its reason.
  */
 export function injectionAmount(reported: ExtractReported, context: AmountContext): InjectionAmount {
   if (reported.state === 'missing') return { state: 'missing', reported };
@@ -181,9 +181,9 @@ function fromReported(reported: ExtractReported, context: AmountContext): Signal
     const limitSource = reported.state === 'value' ? null : 'reported';
     return { ...plain, calibration: null, x: stated, limitSource };
   }
-  const calibration = context.calibration();
-  if (reported.basis === 'vial' && calibration.usable && calibration.scale === 'concentration') {
-    return { ...plain, calibration, x: calibration.fit.range[0], limitSource: 'lowest level' };
+  if (reported.basis === 'vial') {
+    const lowest = lowestConcentration(context.calibration());
+    if (lowest !== null) return { ...plain, calibration: null, x: lowest, limitSource: 'lowest level' };
   }
   return {
     state: 'refused',

@@ -15,12 +15,15 @@ export type RelativeFigures =
       readonly estimate: ReturnType<typeof netMean>;
       /** Mean of what was subtracted, percent of the spike; null: nothing. */
       readonly subtractedPercent: number | null;
+      /** How portions were matched with what they lose, in sentences. */
+      readonly notes: readonly string[];
     }
   | { readonly available: false; readonly entry: PanelEntry; readonly reason: string };
 
 /**
  * Relative recovery of an analyte read against an extraction internal standard, with a single method fraction:
- * 100 (q m_added - n)/m_spike per replicate, n the mean of q m_added in the portions that are subtracted.
+ * 100 (q m_added - n)/m_spike per replicate, n the mean of q m_added in the portions that are subtracted: those of the same batch where
+ * there are some, else all; a native amount scaled by sample volume (or mass) where every portion has one.
  */
 export function relativeFigures(amounts: ExperimentAmounts, entry: PanelEntry): RelativeFigures | null {
   const { experiment, panel } = amounts;
@@ -43,39 +46,89 @@ export function relativeFigures(amounts: ExperimentAmounts, entry: PanelEntry): 
     .filter((portion) => portion.spikeNg !== null && portion.exclusion === null && ngIn(portion) !== null);
   if (portions.length === 0) return no(`No spiked portion of ${entry.name} has a usable figure.`);
 
-  const spike = portions.reduce((sum, portion) => sum + (portion.spikeNg ?? 0), 0) / portions.length;
+  const taken = subtractedPortions(amounts, entry, ngIn);
+  if (taken?.length === 0) return no(`Nothing that could be subtracted from ${entry.name} counts.`);
   const values = portions.map((portion) => (100 * (ngIn(portion) ?? 0)) / (portion.spikeNg ?? 1));
-  const native = nativeValues(amounts, entry, ngIn, portions, spike);
-  if (native?.length === 0) return no(`Nothing that could be subtracted from ${entry.name} counts.`);
-  const subtracted = native ? native.reduce((sum, value) => sum + value, 0) / native.length : 0;
-  const net = values.map((value) => value - subtracted);
+  const native = taken && nativeOf(experiment, taken, portions, ngIn);
+  const net = values.map((value, index) => value - (native?.ofPortion[index] ?? 0));
+  // A portion of its own size or spike loses its own amount: written so that the mean of its batch leaves exactly that.
+  const estimate = netMean(
+    native
+      ? {
+          values: net.map((value, index) => value + native.ofBatch[index]!),
+          native: native.values,
+          batches: portions.map(batchOf),
+          nativeBatches: native.batches
+        }
+      : { values }
+  );
   return {
     available: true,
     entry,
     standardName: panel.get(entry.internalStandardId ?? '')?.name ?? 'its standard',
     portions: portions.map((portion, index) => ({ portion, percent: net[index]! })),
     description: describe(net),
-    estimate: netMean({ values, ...(native ? { native } : {}) }),
-    subtractedPercent: native ? subtracted : null
+    estimate,
+    subtractedPercent: native ? meanOf(native.values) : null,
+    notes: native?.notes ?? []
   };
 }
 
-/** What is subtracted, in percent of the spike; a native amount is scaled to the mean size of the spiked portions. */
-function nativeValues(
-  amounts: ExperimentAmounts,
+/** The portions that are subtracted from an entry; null: nothing is. */
+function subtractedPortions(
+  { experiment, ...amounts }: ExperimentAmounts,
   entry: PanelEntry,
-  ngIn: (portion: Portion) => number | null,
-  spiked: readonly Portion[],
-  spike: number
-): number[] | null {
-  const { experiment } = amounts;
+  ngIn: (portion: Portion) => number | null
+): Portion[] | null {
   if (entry.role !== 'target' || experiment.subtract === 'none') return null;
   const kind = experiment.subtract === 'native' ? 'unspiked' : 'method blank';
-  const taken = experiment.replicates
+  return experiment.replicates
     .filter((replicate) => replicate.kind === kind)
-    .map((replicate) => portionOf(amounts, entry.id, replicate))
+    .map((replicate) => portionOf({ experiment, ...amounts }, entry.id, replicate))
     .filter((portion) => portion.exclusion === null && ngIn(portion) !== null);
-  const sizes = kind === 'unspiked' ? sampleSizes(spiked, taken) : null;
-  const size = sizes ? spiked.reduce((sum, portion) => sum + sizes(portion), 0) / spiked.length : 1;
-  return taken.map((portion) => (100 * (ngIn(portion) ?? 0) * (sizes ? size / sizes(portion) : 1)) / spike);
+}
+
+interface Native {
+  /** Percent of a mean spike, at the mean size of the spiked portions. */
+  readonly values: readonly number[];
+  readonly batches: readonly string[];
+  /** By spiked portion: what it loses, in percent of its own spike, and what its batch holds on the scale of `values`. */
+  readonly ofPortion: readonly number[];
+  readonly ofBatch: readonly number[];
+  readonly notes: readonly string[];
+}
+
+/** What each spiked portion loses: the mean of its own batch where there is one, else of all, by its own size where sizes are known. */
+function nativeOf(
+  experiment: Pick<ExperimentAmounts['experiment'], 'subtract'>,
+  taken: readonly Portion[],
+  spiked: readonly Portion[],
+  ngIn: (portion: Portion) => number | null
+): Native {
+  const sizes = experiment.subtract === 'native' ? sampleSizes(spiked, taken) : null;
+  const size = (portion: Portion): number => sizes?.(portion) ?? 1;
+  const factors = spiked.map((portion) => (100 * size(portion)) / (portion.spikeNg ?? 1));
+  const reference = meanOf(factors);
+  const values = taken.map((portion) => ((ngIn(portion) ?? 0) / size(portion)) * reference);
+  const batches = taken.map(batchOf);
+  const ofBatch = spiked.map((portion) => {
+    const own = values.filter((_, index) => batches[index] === batchOf(portion));
+    return meanOf(own.length > 0 ? own : values);
+  });
+  const without = [...new Set(spiked.map(batchOf).filter((batch) => !batches.includes(batch)))];
+  return {
+    values,
+    batches,
+    ofPortion: ofBatch.map((percent, index) => (percent * factors[index]!) / reference),
+    ofBatch,
+    notes: without
+      .filter((batch) => batch !== '')
+      .map((batch) => `pooled for batch ${batch}, which has no portion of its own`)
+  };
+}
+
+const batchOf = ({ replicate }: Portion): string => replicate.batch ?? '';
+
+function meanOf(values: readonly number[]): number {
+  return values.reduce((sum, value) => sum + value, 0) / values.length;
 }

@@ -2,6 +2,7 @@ import { cellAddress } from './cell-address';
 import type { DraftRecord } from './map-sheet';
 import type { ProblemList } from './problems';
 import type { Expectation, PanelExpectation } from './types';
+import { expectedWords } from './value-words';
 
 /** Where the final volume stands in a sheet, so that a missing one can be pointed at; null: there is no such column. */
 export type VolumeColumn = (sheet: string) => number | null;
@@ -230,7 +231,10 @@ function checkLimits(
   for (const record of records) {
     const isBare = (record.state === 'not detected' || record.state === 'below') && record.limit === null;
     const entry = panel.get(record.panelEntryId);
-    if (!isBare || record.place.kind !== 'extract' || entry?.hasLowestLevel) continue;
+    if (!isBare || record.place.kind !== 'extract') continue;
+    // A lowest level is a content of the vial: it says nothing of a whole fraction, nor of a litre of sample.
+    const isOfVial = record.basis === 'area' || record.basis === 'vial';
+    if (isOfVial && entry?.hasLowestLevel) continue;
     if (entry?.role === 'injection internal standard') continue;
     problems.oncePer(record.panelEntryId, 'question', {
       code: 'limit missing',
@@ -239,8 +243,8 @@ function checkLimits(
       column: record.column,
       found: `“${record.rawText}”`,
       expected: 'a limit, such as <0.5',
-      what: `${entry?.name ?? 'This analyte'} was not detected, but the file gives no limit and there is no calibration level to take one from.`,
-      fix: 'Write the limit (<x) in the unit of the column, or confirm: totals are then formed with zero alone, and say so.'
+      what: `${entry?.name ?? 'This analyte'} was not detected, but the file gives no limit and ${isOfVial ? 'there is no calibration level to take one from' : `a calibration level cannot stand for ${expectedWords[record.basis]}`}.`,
+      fix: 'Write the limit (<x) in the unit of the column, or confirm: the portion then counts as incomplete for this analyte.'
     });
   }
 }

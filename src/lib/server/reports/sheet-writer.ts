@@ -1,8 +1,11 @@
 import type ExcelJS from 'exceljs';
 
-/** A cell of a report: text, an unrounded figure, or either with the address that opens it. */
+/** A cell of a report: text, an unrounded figure, or either with the address that opens it or a number format of its own. */
 export type ReportCell =
-  string | number | null | { readonly value: string | number | null; readonly href: string | null };
+  | string
+  | number
+  | null
+  | { readonly value: string | number | null; readonly href: string | null; readonly format?: string };
 
 export interface ReportColumn {
   readonly head: string;
@@ -59,11 +62,11 @@ function writeRow(
   const row = sheet.addRow([]);
   row.alignment = { vertical: 'top', wrapText: true };
   cells.forEach((given, index) => {
-    const { value, href } =
-      typeof given === 'object' && given !== null ? given : { value: given, href: null };
+    const cellGiven = typeof given === 'object' && given !== null ? given : { value: given, href: null };
+    const { value, href } = cellGiven;
     if (value === null || value === '') return;
     const cell = row.getCell(index + 1);
-    const format = columns[index]?.format;
+    const format = cellGiven.format ?? columns[index]?.format;
     if (href !== null && typeof value === 'string') {
       cell.value = { text: value, hyperlink: href };
       cell.font = { color: { argb: 'FF0F6B74' } };

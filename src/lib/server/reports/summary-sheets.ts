@@ -1,3 +1,4 @@
+import { decimalsBeside } from '../../domain/figure-text';
 import type { SummaryFindings, SummaryView } from '../../views/summary';
 import type { ReportCell, ReportColumn } from './sheet-writer';
 
@@ -160,6 +161,12 @@ function stagesSheet(view: SummaryView, origin: string): ReportSheet {
   };
 }
 
+/** A figure shown with as many decimals as keep it on its own side of the limits. */
+function beside(value: number | null, limits: readonly number[]): ReportCell {
+  if (value === null) return null;
+  return { value, href: null, format: `0.${'0'.repeat(decimalsBeside(value, limits, 1))}` };
+}
+
 /** The first three columns of every sheet of findings. */
 const subjectColumns = [text('Of', 34), text('Experiment', 11), text('Analyte', 24)];
 const subjectCells = (findings: SummaryFindings, name: string, href: string): ReportCell[] => [
@@ -191,11 +198,11 @@ function resultsSheet(view: SummaryView): ReportSheet {
       findings.results.rows.map((row): ReportCell[] => [
         ...subjectCells(findings, row.name, row.href),
         row.n,
-        row.mean,
-        row.interval?.lower ?? null,
-        row.interval?.upper ?? null,
+        beside(row.mean, row.limits.mean),
+        beside(row.interval?.lower ?? null, row.limits.mean),
+        beside(row.interval?.upper ?? null, row.limits.mean),
         row.sd,
-        row.rsd,
+        beside(row.rsd, row.limits.rsd),
         row.subtracted,
         row.verdict ?? 'no verdict',
         row.reasons.join('; '),

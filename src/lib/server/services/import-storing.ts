@@ -168,6 +168,8 @@ async function storeInjections(
         finalVolumeMl: record.finalVolumeMl ?? volumes.get(place.replicateId) ?? null,
         aliquotShare: record.aliquotShare ?? 1
       };
+      // Numbers whose basis takes no share may come first; it belongs to the extract all the same.
+      if (record.aliquotShare !== null) extract.aliquotShare = record.aliquotShare;
       extracts.set(key, extract);
       extractId = extract.id;
     }
@@ -185,6 +187,7 @@ async function storeInjections(
       dilution: record.dilution ?? 1,
       runAt: record.acquiredAt === null ? null : new Date(`${record.acquiredAt}Z`)
     };
+    if (record.dilution !== null) injection.dilution = record.dilution;
     injections.set(key, injection);
     return injection.id;
   };

@@ -32,6 +32,16 @@ export function recoveryBand(rules: readonly CriterionRule[]): RecoveryBand | nu
   return mean && { low: mean.low, high: mean.high };
 }
 
+/** The numbers that figures are held against. */
+export function limitsOf(criteria: RecoveryCriteria | null): {
+  readonly mean: readonly number[];
+  readonly rsd: readonly number[];
+} {
+  if (!criteria) return { mean: [], rsd: [] };
+  const { low, high, rsdMax } = criteria;
+  return { mean: [low, high], rsd: rsdMax === null ? [] : [rsdMax] };
+}
+
 export function ruleOf(rules: readonly CriterionRule[], type: CriterionRule['type']): CriterionRule | null {
   return rules.find((rule) => rule.type === type) ?? null;
 }

@@ -1,6 +1,6 @@
 import type { ResultRow, ResultsTableView } from '../../../views/findings';
 import type { Link } from './addresses';
-import { criteriaFor, showsWholeMethod } from './criteria';
+import { criteriaFor, limitsOf, showsWholeMethod } from './criteria';
 import { criteriaText, intervalOf, plainEnd, ruleView } from './figure-parts';
 import { incompleteSentence } from './mass-balance-view';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
@@ -32,11 +32,11 @@ export function resultsTableOf(
   };
 }
 
-/** What is said of every row is said once. */
+/** What is said of every row with a figure, of two at least, is said once. */
 function commonNotes(rows: readonly ResultRow[]): string[] {
-  const [first] = rows;
-  if (!first || rows.length < 2) return [];
-  return first.notes.filter((note) => rows.every((row) => row.n === null || row.notes.includes(note)));
+  const [first, ...others] = rows.filter(({ n }) => n !== null);
+  if (!first || others.length === 0) return [];
+  return first.notes.filter((note) => others.every(({ notes }) => notes.includes(note)));
 }
 
 function rowOf(
@@ -55,7 +55,8 @@ function rowOf(
     name: entry.name,
     role: entry.role,
     class: entry.class ?? '',
-    criteria
+    criteria,
+    limits: limitsOf(applied.criteria)
   };
   const nothing = { n: null, mean: null, sd: null, rsd: null, interval: null, subtracted: null };
   if (!found.ready) {
@@ -70,7 +71,11 @@ function rowOf(
         n: relative.description.n,
         standard: relative.standardName
       },
-      notes: found.relative && !found.relative.available ? [found.relative.reason] : [],
+      notes: found.relative
+        ? found.relative.available
+          ? [...found.relative.notes]
+          : [found.relative.reason]
+        : [],
       href: link({ kind: relative ? 'relative' : 'recovery', experiment: experiment.number, entry: entry.id })
     };
   }

@@ -121,7 +121,8 @@ function inputsOf(
     );
   } else {
     const unit = { vial: 'ng/mL in the vial', ng: 'ng', ng_per_l: 'ng/L of sample' }[reported.basis];
-    add('As reported', trace.x, unit);
+    if (trace.limitSource === 'lowest level') add('Lowest calibration level', trace.x, unit);
+    else add('As reported', trace.x, unit);
   }
   factorsOf(trace).forEach((given) => add(...given));
   return inputs;

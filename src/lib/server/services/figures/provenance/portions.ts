@@ -2,7 +2,7 @@ import { figureText, percentText } from '../../../../domain/figure-text';
 import type { ProvenanceTable, ProvenanceView } from '../../../../views/provenance';
 import type { Portion } from '../../../amounts/portions';
 import { addressText, type Link } from '../addresses';
-import { intervalText } from '../figure-parts';
+import { intervalText, sentence } from '../figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from '../study-data';
 import type { StudyFigures } from '../study-figures';
 import { matrixFormula, portionFormula, relativeFormula } from './formulas';
@@ -73,7 +73,8 @@ export function relativeProvenance(
       'Shown beside the method recovery, never held against its criteria.',
       ...(relative.subtractedPercent === null
         ? []
-        : [`${percentText(relative.subtractedPercent)} % of the spike is subtracted.`])
+        : [`${percentText(relative.subtractedPercent)} % of the spike is subtracted.`]),
+      ...relative.notes.map(sentence)
     ],
     tables: [
       portionTable(
