@@ -77,6 +77,8 @@ export interface ResultsTableView {
 /** One variant's recovery of one analyte. */
 export interface CompareCell {
   readonly mean: number;
+  /** The limits that the mean is held against, in percent. */
+  readonly limits: readonly number[];
   readonly halfWidth: number | null;
   readonly n: number;
   readonly verdict: Verdict | null;

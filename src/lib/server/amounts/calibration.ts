@@ -71,10 +71,10 @@ export function calibrate(
     if (reported.entryId !== entry.id) continue;
     const level = levels.get(reported.levelId);
     if (!level) continue;
-    if (entry.internalStandardId && wrongStandard(reported, entry.internalStandardId)) {
+    if (wrongStandard(reported, entry.internalStandardId)) {
       return refuse(
-        `Level ${level.label} of ${set.name} was recorded against ${namedStandard(reported.internalEntryId, nameOf)}, but the panel now ` +
-          `divides ${entry.name} by ${nameOf(entry.internalStandardId)}.`
+        `Level ${level.label} of ${set.name} was recorded against ${namedStandard(reported.internalEntryId, nameOf)}, but ` +
+          `${panelNow(entry.name, entry.internalStandardId, nameOf)}.`
       );
     }
     const point = pointOf(reported, level, entry, choice, nameOf);
@@ -116,12 +116,27 @@ export function lowestConcentration({ set, entryId }: Calibration): number | nul
   return held.length > 0 ? Math.min(...held) : null;
 }
 
-/** True when an internal area was recorded for another standard than the one asked for, or for an unnamed one. */
+/**
+ * True when an area was recorded against another standard than the one asked for: an internal area of another or an unnamed one, or, where
+ * none is asked for now (null), of any that was named.
+ */
 export function wrongStandard(
   reported: { readonly internalArea: number | null; readonly internalEntryId: string | null },
-  standardId: string
+  standardId: string | null
 ): boolean {
+  if (standardId === null) return reported.internalEntryId !== null;
   return reported.internalArea !== null && reported.internalEntryId !== standardId;
+}
+
+/** "the panel now divides Caffeine by Label", "the panel now reads Caffeine without a standard" */
+export function panelNow(
+  name: string,
+  standardId: string | null,
+  nameOf: (entryId: string) => string
+): string {
+  return standardId === null
+    ? `the panel now reads ${name} without a standard`
+    : `the panel now divides ${name} by ${nameOf(standardId)}`;
 }
 
 export function namedStandard(id: string | null, nameOf: (entryId: string) => string): string {

@@ -1,5 +1,5 @@
 import { solveCalibration } from '../stats';
-import { lowestConcentration, namedStandard, wrongStandard, type Calibration } from './calibration';
+import { lowestConcentration, namedStandard, panelNow, wrongStandard, type Calibration } from './calibration';
 import type { Practice } from './practice';
 import type { ExtractReported, PanelEntry, Replicate } from './types';
 
@@ -107,10 +107,9 @@ function fromArea(reported: ExtractReported, context: AmountContext): Signal | I
   const { practice, entry, nameOf } = context;
   if (practice.kind === 'undeclared') return refuse(practice.reason);
   const standardId = practice.kind === 'external' ? null : practice.standardId;
-  if (standardId && wrongStandard(reported, standardId)) {
+  if (wrongStandard(reported, standardId)) {
     return refuse(
-      `the area was recorded against ${namedStandard(reported.internalEntryId, nameOf)}, but the panel now divides ${entry.name} ` +
-        `by ${nameOf(standardId)}`
+      `the area was recorded against ${namedStandard(reported.internalEntryId, nameOf)}, but ${panelNow(entry.name, standardId, nameOf)}`
     );
   }
   const calibration = context.calibration();

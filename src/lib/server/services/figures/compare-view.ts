@@ -1,6 +1,7 @@
 import type { CompareCell, CompareVariant, CompareView } from '../../../views/findings';
 import { verdicts, type Verdict } from '../../../views/verdict';
 import type { Link } from './addresses';
+import { criteriaFor, limitsOf } from './criteria';
 import { halfWidth, intervalOf } from './figure-parts';
 import type { StudyPanelEntry, StudyVariant } from './study-data';
 import type { StudyFigures, VariantContext } from './study-figures';
@@ -44,6 +45,7 @@ function cellOf(
   if (!method) return found.reasons.join('; ');
   return {
     mean: method.mean,
+    limits: limitsOf(criteriaFor(figures.data, entry).criteria).mean,
     halfWidth: halfWidth(intervalOf(method)),
     n: method.n,
     verdict: found.verdict,
