@@ -31,7 +31,10 @@ const pictures: readonly Picture[] = [
     theme: 'dark',
     open: async (page) => {
       await page.goto(`${study}/balance`);
-      await page.getByRole('link', { name: /Caffeine/ }).first().click();
+      await page
+        .getByRole('link', { name: /Caffeine/ })
+        .first()
+        .click();
       await page.getByText('Provenance', { exact: true }).first().waitFor();
     }
   }
