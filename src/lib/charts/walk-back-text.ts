@@ -23,11 +23,14 @@ export interface WalkBackNote {
   readonly names: readonly string[];
 }
 
-/** What the rows cannot show, each reason once with the analytes it holds for, in the order of the rows. */
+/** What the rows cannot show, each reason once with the analytes it holds for; what holds for all is not a list of names. */
 export function walkBackNotes({ rows }: WalkBackView): readonly WalkBackNote[] {
   const names = new Map<string, string[]>();
   for (const { gap, name } of rows) {
     if (gap !== null) names.set(gap, [...(names.get(gap) ?? []), name]);
   }
-  return [...names].map(([text, found]) => ({ text, names: found }));
+  return [...names].map(([text, found]) => ({
+    text,
+    names: found.length > 1 && found.length === rows.length ? [`All ${rows.length} analytes`] : found
+  }));
 }

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { standsOut, walkBackLayout } from '../../../src/lib/charts/walk-back-layout';
-import { walkBackSentence } from '../../../src/lib/charts/walk-back-text';
+import { walkBackNotes, walkBackSentence } from '../../../src/lib/charts/walk-back-text';
 import type { WalkBackRow, WalkBackView } from '../../../src/lib/views/walk-back';
 
 const loss = (stageKey: string, lost: number, pAdjusted: number | null) => ({
@@ -60,5 +60,16 @@ it('reads a row aloud with its intervals and what is not known', () => {
   expect(view.rows.map((each) => walkBackSentence(each, view.stages))).toEqual([
     'NDMA: Extraction takes 9.0 (5.0 to 13.0), Drying takes 12.0 (8.0 to 16.0), 50.0 of 100 left',
     'Phenol: Extraction takes 2.0 (−2.0 to 6.0), Drying not known, 50.0 of 100 left'
+  ]);
+});
+
+it('says each reason once, with its analytes, and does not list all of them', () => {
+  const noted = (name: string, gap: string | null): WalkBackRow => ({ ...row(name, []), gap });
+  const notesOf = (...rows: WalkBackRow[]) => walkBackNotes({ ...view, rows });
+  expect(notesOf(noted('A', 'No drying.'), noted('B', null), noted('C', 'No drying.'))).toEqual([
+    { text: 'No drying.', names: ['A', 'C'] }
+  ]);
+  expect(notesOf(noted('A', 'No drying.'), noted('B', 'No drying.'))).toEqual([
+    { text: 'No drying.', names: ['All 2 analytes'] }
   ]);
 });
