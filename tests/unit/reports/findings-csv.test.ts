@@ -82,7 +82,15 @@ describe('findings as CSV', () => {
           name: 'Phenol',
           class: 'phenol',
           cells: [
-            { mean: 0, halfWidth: null, n: 5, verdict: 'outside', reason: 'mean 0 < 70', href: '' },
+            {
+              mean: 0,
+              halfWidth: null,
+              n: 5,
+              verdict: 'outside',
+              reason: 'mean 0 < 70',
+              href: '',
+              limits: [70, 130]
+            },
             null
           ],
           gaps: [null, 'not measured yet']
