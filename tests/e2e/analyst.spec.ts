@@ -125,7 +125,7 @@ test('two requests to store the same file at the same moment store it once', asy
       ['E2-S1', 'Elution', 'Atrazine', 91]
     ])
   );
-  await expect(analyst.getByRole('button', { name: 'Store 1 values' })).toBeVisible();
+  await expect(analyst.getByRole('button', { name: 'Store 1 value' })).toBeVisible();
   const { origin, pathname } = new URL(analyst.url());
   const store = () =>
     analyst.request.post(`${pathname}?/store`, {

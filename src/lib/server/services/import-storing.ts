@@ -80,9 +80,9 @@ export async function storeImport(
       entity: 'import',
       entityId: locked.id,
       studyId: study.id,
-      sentence: `${mapped.records.length} values of ${locked.fileName} were stored${
-        covered.count > 0 ? `; ${covered.count} of them cover earlier ones` : ''
-      }.`,
+      sentence: `${mapped.records.length === 1 ? '1 value' : `${mapped.records.length} values`} of ${locked.fileName} ${
+        mapped.records.length === 1 ? 'was' : 'were'
+      } stored${covered.count > 0 ? `; ${covered.count} earlier ${covered.count === 1 ? 'one is' : 'ones are'} covered` : ''}.`,
       after: {
         sha256: locked.sha256,
         values: mapped.records.length,

@@ -33,6 +33,10 @@ export const meaningWords: Readonly<Record<string, string>> = {
   'not used': 'not used'
 };
 
+/** "1 value", "1,204 values". */
+export const valuesText = (count: number): string =>
+  `${count.toLocaleString('en')} ${count === 1 ? 'value' : 'values'}`;
+
 export function sizeText(bytes: number): string {
   if (bytes < 1024) return `${bytes} bytes`;
   if (bytes < 1024 * 1024) return `${Math.round(bytes / 1024)} kB`;
