@@ -1,4 +1,5 @@
 import ExcelJS from 'exceljs';
+import type { CriterionRule } from '../../../src/lib/domain/criteria';
 import type { Actor } from '../../../src/lib/domain/actor';
 import { calibrationSetForm } from '../../../src/lib/schemas/calibration';
 import { experimentForm } from '../../../src/lib/schemas/experiment';
@@ -13,6 +14,7 @@ import { massBalanceView, provenanceView, resultsTableView } from '../../../src/
 import type { ResultRow } from '../../../src/lib/views/findings';
 import type { MassBalanceRow } from '../../../src/lib/views/mass-balance';
 import type { ProvenanceView } from '../../../src/lib/views/provenance';
+import { makeCriteriaSet, makeRule } from '../../factories/criteria-set';
 import { makeMember } from '../../factories/member';
 import { makePanelEntry } from '../../factories/panel-entry';
 import { makeStudy, type MadeStudy } from '../../factories/study';
@@ -57,10 +59,15 @@ interface UploadOptions {
   readonly reason?: string;
 }
 
-export async function openBench(): Promise<Bench> {
+/** @param rules criteria in place of the usual ones (mean 70 to 130 %, RSD 20 %, five preparations) */
+export async function openBench(rules: readonly Partial<CriterionRule>[] = []): Promise<Bench> {
   const actor = await makeMember({ role: 'chemist' });
   const made = await makeStudy(actor);
   const { code } = made.study;
+  if (rules.length > 0) {
+    const own = await makeCriteriaSet(actor.labId, { rules: rules.map((rule) => makeRule(rule)) });
+    await made.study.update({ criteriaSetId: own.id, criteriaSetVersionId: own.versionId });
+  }
   let files = 0;
 
   async function store(fileName: string, bytes: Buffer, options: UploadOptions): Promise<string> {

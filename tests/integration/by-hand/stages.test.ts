@@ -168,6 +168,9 @@ describe('a matrix that halves the signal', () => {
         stageKey: 'extraction',
         medium: 'sample matrix',
         subtract: 'native',
+        fractions: [
+          { name: 'Elution', kind: 'elution', countsAs: 'method', passedStages: ['concentration'] }
+        ],
         spikes: [
           { kind: 'spiked', targetsNg: '100' },
           { kind: 'post-extraction spike', targetsNg: '100' },
@@ -198,5 +201,10 @@ describe('a matrix that halves the signal', () => {
     expect(row?.losses[2]?.lost).toBeCloseTo(15, 9);
     expect(row?.remaining).toBeCloseTo(60, 9);
     expect(row?.gap).toContain('includes drying');
+    // The same 25 stay open in the balance: the fraction passed the concentration and is masked by half, 30/(0.8 · 0.5) = 75 collected.
+    const balance = await bench.balance(extraction, 'Maskin');
+    expect(balance.total).toBeCloseTo(30, 9);
+    expect(balance.downstream).toBeCloseTo(45, 9);
+    expect(balance.open).toBeCloseTo(25, 9);
   });
 });

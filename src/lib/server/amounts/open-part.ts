@@ -11,8 +11,22 @@ export type OpenPart =
       readonly open: Estimate;
       /** The open part differs from zero, whatever not-detected stands for: only then is it one. */
       readonly significant: boolean;
+      /** The matrix effect (percent, 100 = none) that `downstream` holds as well; null: none was divided out. */
+      readonly matrixEffect: number | null;
     }
   | { readonly available: false; readonly reason: string };
+
+/** The matrix effect of one fraction, as it enters the step recoveries of the stage. */
+export interface FractionEffect {
+  readonly fractionId: string;
+  /** Percent, 100 = none. */
+  readonly estimate: number;
+  readonly se: number;
+  readonly df: number;
+}
+
+/** Not the key of a stage: these begin with a letter. */
+const masking = ' matrix effect';
 
 /**
  * Of 100 spiked: what the fractions hold, what was lost between their collection and the instrument, and what is open.
@@ -20,21 +34,24 @@ export type OpenPart =
  * @param stepRecoveries by stage key, as far as they are known
  * @param reference signal reference (percent); null: exactly 100
  * @param stageName what a stage key is called, for the reason
+ * @param effect where the step recoveries are free of a matrix effect, what the fraction's signal is still masked by; null: nothing
  */
 export function openPart(
   input: RecoveryInput,
   stepRecoveries: Readonly<Record<string, Estimate>>,
   reference: Estimate | null,
-  stageName: (key: string) => string
+  stageName: (key: string) => string,
+  effect: FractionEffect | null = null
 ): OpenPart {
-  const part = openPartOf(input, stepRecoveries, reference, stageName);
+  const part = openPartOf(input, stepRecoveries, reference, stageName, effect);
   if (!part.available) return part;
   if (!hasNotDetected(input)) return { ...part, significant: excludesZero(part.open) !== 0 };
   const atLimits = openPartOf(
     { ...input, replicates: atEnd(input, 'high').replicates },
     stepRecoveries,
     reference,
-    stageName
+    stageName,
+    effect
   );
   const differs = excludesZero(part.open);
   return {
@@ -53,7 +70,8 @@ function openPartOf(
   input: RecoveryInput,
   stepRecoveries: Readonly<Record<string, Estimate>>,
   reference: Estimate | null,
-  stageName: (key: string) => string
+  stageName: (key: string) => string,
+  effect: FractionEffect | null
 ): OpenPart {
   const passed = new Set(input.fractions.flatMap((fraction) => fraction.passedStages));
   const unknown = [...passed].filter((key) => (stepRecoveries[key]?.estimate ?? null) === null);
@@ -79,12 +97,23 @@ function openPartOf(
   }
   const result = openLoss({
     replicates: native ? pooledForm(input, native) : complete,
-    fractions: input.fractions.map((fraction) => ({ name: fraction.id, passed: fraction.passedStages })),
-    stepRecoveries: Object.fromEntries([...passed].map((key) => [key, stepRecoveries[key]!])),
+    fractions: input.fractions.map(({ id, passedStages }) => ({
+      name: id,
+      passed: effect?.fractionId === id ? [...passedStages, masking] : passedStages
+    })),
+    stepRecoveries: {
+      ...Object.fromEntries([...passed].map((key) => [key, stepRecoveries[key]!])),
+      ...(effect ? { [masking]: asStep(effect) } : {})
+    },
     ...(reference ? { reference } : {}),
     ...(native ? { native } : {})
   });
-  return { available: true, ...result, significant: false };
+  return { available: true, ...result, significant: false, matrixEffect: effect?.estimate ?? null };
+}
+
+/** A matrix effect as the ratio that it passes on; `se` that of the logarithm. */
+function asStep({ estimate, se, df }: FractionEffect): Estimate {
+  return { estimate: estimate / 100, se: se / estimate, df, ci: null };
 }
 
 /**

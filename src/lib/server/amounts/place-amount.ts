@@ -28,7 +28,7 @@ export const nothingMeasured: PlaceAmount = {
 /**
  * Joins the injections of one place. Repeated injections at one dilution are averaged. A result above range is replaced by
  * an injection diluted further, and makes the place unusable while there is none. Of several dilutions in range the least
- * diluted counts. Where some repeats found the analyte and others did not, the place counts as not detected below the
+ * diluted counts. What is above range at first and not detected diluted contradicts itself and gives no amount. Where some repeats found the analyte and others did not, the place counts as not detected below the
  * largest of their figures, which both ends of the truth lie within.
  */
 export function placeAmount(injections: readonly InjectionAmount[]): PlaceAmount {
@@ -50,6 +50,10 @@ export function placeAmount(injections: readonly InjectionAmount[]): PlaceAmount
 
   const dilution = Math.min(...usable.map(dilutionOf));
   const used = usable.filter((item) => dilutionOf(item) === dilution);
+  if (above.length > 0 && used.every((item) => item.state === 'not detected')) {
+    const reason = `above range at first, yet not detected in the injection diluted ${dilution}-fold: the two contradict each other`;
+    return { amount: { state: 'refused', reason }, used: [], unused: injections, notes: [] };
+  }
   const unused = injections.filter((item) => !(used as readonly InjectionAmount[]).includes(item));
   return { ...joined(used), used, unused, notes: notesOn(used, unused, dilution) };
 }

@@ -70,7 +70,12 @@ export function relativeFigures(amounts: ExperimentAmounts, entry: PanelEntry): 
     description: describe(net),
     estimate,
     subtractedPercent: native ? meanOf(native.values) : null,
-    notes: native?.notes ?? []
+    notes: [
+      ...(native?.notes ?? []),
+      ...([...portions, ...(taken ?? [])].some((portion) => isNotDetected(portion, only.id))
+        ? ['not detected counts as zero here']
+        : [])
+    ]
   };
 }
 
@@ -125,6 +130,11 @@ function nativeOf(
       .filter((batch) => batch !== '')
       .map((batch) => `pooled for batch ${batch}, which has no portion of its own`)
   };
+}
+
+function isNotDetected(portion: Portion, fractionId: string): boolean {
+  const ng = portion.places.find((place) => place.fraction.id === fractionId)?.ng ?? null;
+  return ng !== null && typeof ng === 'object';
 }
 
 const batchOf = ({ replicate }: Portion): string => replicate.batch ?? '';

@@ -13,7 +13,7 @@ export interface SurrogatePortion {
   /** Percent with everything not detected at its limit; equals `percent` where all was found. */
   readonly high: number | null;
   readonly reason: string | null;
-  /** Against the rule for surrogates; null where there is none or no figure. */
+  /** Against the rule for surrogates; null where there is none or no figure, or where it hangs on what was not detected (`reason`). */
   readonly holds: boolean | null;
 }
 
@@ -75,8 +75,17 @@ function surrogatePortion(
     high += typeof ng === 'number' ? ng : ng.below;
   }
   const percent = (100 * low) / portion.spikeNg;
-  const holds = rule
-    ? (rule.low === null || percent >= rule.low) && (rule.high === null || percent <= rule.high)
-    : null;
-  return { portion, percent, high: (100 * high) / portion.spikeNg, reason: null, holds };
+  const atLimit = (100 * high) / portion.spikeNg;
+  const { low: least, high: most } = rule ?? { low: null, high: null };
+  const within = (value: number): boolean =>
+    (least === null || value >= least) && (most === null || value <= most);
+  if (rule && within(percent) !== within(atLimit)) {
+    const reason = `not detected counts between zero and its limit, ${figure(percent)} to ${figure(atLimit)} %`;
+    return { portion, percent, high: atLimit, reason, holds: null };
+  }
+  return { portion, percent, high: atLimit, reason: null, holds: rule ? within(percent) : null };
+}
+
+function figure(value: number): string {
+  return String(Number(value.toPrecision(3)));
 }

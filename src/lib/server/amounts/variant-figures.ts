@@ -213,5 +213,8 @@ function openOf(item: Taken, rows: readonly StageRow[], stages: readonly StageOf
     item.samples.some((stage) => stage.key === row.stage && stage.kind === 'signal')
   );
   const name = (key: string): string => stages.find((stage) => stage.key === key)?.name ?? key;
-  return openPart(top.input, steps, signal?.recovered ?? null, name);
+  const masked = top.sample.matrixEffect;
+  const only = top.input.fractions.find((fraction) => fraction.countsAs === 'method');
+  const effect = masked && only ? { ...masked, fractionId: only.id } : null;
+  return openPart(top.input, steps, signal?.recovered ?? null, name, effect);
 }

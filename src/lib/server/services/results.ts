@@ -71,9 +71,17 @@ function openNotes({ context }: ReturnType<typeof subjectOf>): string[] {
   for (const { open, refusal } of context.figures.entries.values()) {
     if (!open.available && refusal === null) reasons.add(open.reason);
   }
+  const masked = [...context.figures.entries.values()].some(
+    ({ open }) => open.available && open.matrixEffect !== null
+  );
+  const notes = masked
+    ? [
+        'The stages were made in different media: what the matrix masks of a signal counts with what is lost downstream, as in the stage losses.'
+      ]
+    : [];
   return reasons.size > 3
-    ? [`For ${reasons.size} analytes what is lost downstream cannot be told from what is open.`]
-    : [...reasons];
+    ? [`For ${reasons.size} analytes what is lost downstream cannot be told from what is open.`, ...notes]
+    : [...reasons, ...notes];
 }
 
 /** The stage ladder of a variant with the finding in a sentence. */

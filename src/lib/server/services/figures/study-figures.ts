@@ -121,10 +121,17 @@ function evidenceOf(
   const chosen = new Map<string, string>();
   for (const stage of data.stages) {
     const ofStage = variant.evidence.filter((item) => item.stageKey === stage.key);
-    const match =
-      ofStage.find((item) => item.matrix === context?.matrix && item.levelLabel === context.levelLabel) ??
-      ofStage.find((item) => item.matrix === null && item.levelLabel === null) ??
-      ofStage[0];
+    // The closest of those that speak for this matrix and level: of both, of one of them, in general. What was made in another
+    // matrix or at another level stands for nothing here.
+    const speaks = ofStage.filter(
+      (item) =>
+        (item.matrix === null || context?.matrix == null || item.matrix === context.matrix) &&
+        (item.levelLabel === null || context?.levelLabel == null || item.levelLabel === context.levelLabel)
+    );
+    const closeness = (item: (typeof ofStage)[number]): number =>
+      Number(item.matrix === (context?.matrix ?? null)) * 2 +
+      Number(item.levelLabel === (context?.levelLabel ?? null));
+    const match = [...speaks].sort((a, b) => closeness(b) - closeness(a))[0];
     if (match) chosen.set(stage.key, match.experimentId);
   }
   if (asked) chosen.set(asked.stageKey, asked.experimentId);
