@@ -30,13 +30,48 @@ export async function medianMs(
   work: () => unknown,
   { runs = 7, warmUps = 2 }: Readonly<{ runs?: number; warmUps?: number }> = {}
 ): Promise<number> {
+  const [time = NaN] = await mediansInTurn([work], { runs, warmUps });
+  return time;
+}
+
+/** The medians of several works that take turns, so that whatever else the machine does falls on all of them alike. */
+export async function mediansInTurn(
+  works: readonly (() => unknown)[],
+  { runs = 7, warmUps = 2 }: Readonly<{ runs?: number; warmUps?: number }> = {}
+): Promise<number[]> {
+  const times = works.map((): number[] => []);
+  for (let run = -warmUps; run < runs; run++) {
+    for (const [index, work] of works.entries()) {
+      const begun = performance.now();
+      await work();
+      if (run >= 0) times[index]?.push(performance.now() - begun);
+    }
+  }
+  return times.map(median);
+}
+
+/**
+ * The median processor time in milliseconds of `work`, for goals that are a time and not a ratio: unlike wall time it does not
+ * grow with what else the machine has to do.
+ */
+export async function medianCpuMs(
+  work: () => unknown,
+  { runs = 25, warmUps = 15 }: Readonly<{ runs?: number; warmUps?: number }> = {}
+): Promise<number> {
   const times: number[] = [];
   for (let run = -warmUps; run < runs; run++) {
-    const begun = performance.now();
+    const begun = process.cpuUsage();
     await work();
-    if (run >= 0) times.push(performance.now() - begun);
+    const { user, system } = process.cpuUsage(begun);
+    if (run >= 0) times.push((user + system) / 1000);
   }
-  times.sort((a, b) => a - b);
-  const middle = Math.floor(times.length / 2);
-  return times.length % 2 === 1 ? times[middle]! : (times[middle - 1]! + times[middle]!) / 2;
+  return median(times);
+}
+
+/** NaN of nothing. */
+export function median(values: readonly number[]): number {
+  const sorted = values.toSorted((a, b) => a - b);
+  const middle = Math.floor(sorted.length / 2);
+  const [below = NaN, at = NaN] = [sorted[middle - 1], sorted[middle]];
+  return sorted.length % 2 === 1 ? at : (below + at) / 2;
 }

@@ -7,8 +7,7 @@ import { readInChild } from '../../src/lib/server/imports/read-in-child';
 import { readWorkbook } from '../../src/lib/server/imports/read-workbook';
 import { lyingSize, oneHugeCell, sharedStringFlood } from '../fixtures/workbooks/bombs';
 import { streamed } from '../fixtures/workbooks/exceljs-files';
-import { medianMs } from './benchmark';
-import type { Benchmark } from './benchmark';
+import { medianMs, mediansInTurn, type Benchmark } from './benchmark';
 
 /** A table as instruments export it: eight columns, of which four are texts that repeat. */
 function measurements(rows: number): Promise<Buffer> {
@@ -70,28 +69,20 @@ async function peakGrowth(bytes: Buffer): Promise<number> {
   return (peak - before) / 1e6;
 }
 
-function median(times: readonly number[]): number {
-  const sorted = [...times].sort((one, other) => one - other);
-  return sorted[Math.floor(sorted.length / 2)] ?? NaN;
-}
-
 function reading(rows: number, ratio: number, runs: number): Benchmark {
   return {
     name: `read a workbook of ${rows} rows × 8, guards included`,
     goal: { ratio, is: 'at most' },
     async run({ note }) {
       const bytes = await measurements(rows);
-      // In turn, so that what else the machine does falls on both alike.
-      const floors: number[] = [];
-      const figures: number[] = [];
-      for (let run = 0; run < runs; run++) {
-        floors.push(await medianMs(() => inflateAndScan(bytes), { runs: 1, warmUps: run === 0 ? 2 : 0 }));
-        figures.push(await medianMs(() => readWorkbook(bytes), { runs: 1, warmUps: run === 0 ? 2 : 0 }));
-      }
+      const [floor = NaN, figure = NaN] = await mediansInTurn(
+        [() => inflateAndScan(bytes), () => readWorkbook(bytes)],
+        { runs }
+      );
       note(
         `${rows} rows × 8: memory grew by ${(await peakGrowth(bytes)).toFixed(0)} MB at the most (goal: under 100)`
       );
-      return { figure: median(figures), floor: median(floors), unit: 'ms' };
+      return { figure, floor, unit: 'ms' };
     }
   };
 }
