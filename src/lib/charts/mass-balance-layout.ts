@@ -104,6 +104,7 @@ export function massBalanceLayout(
   const spans: readonly (readonly [number, number])[] =
     guides === 'whole' ? [[0, 100]] : bars.map(({ top, bottom }) => [top, bottom]);
   const lines = (at: number): string => spans.map(([from, to]) => `M${at} ${from}V${to}`).join('');
+  const paths = boxes(bars);
   return {
     max,
     ticks: x.ticks(Math.min(10, Math.round(max / 20))).map((value) => ({ value, at: round(x(value)) })),
@@ -116,12 +117,9 @@ export function massBalanceLayout(
     hundredPath: lines(round(x(100))),
     zeroPath: lines(0),
     bars,
-    fractionPaths: view.fractions.map(({ key }) => ({
-      key,
-      path: boxes(bars, (segment) => segment.fractionKey === key)
-    })),
-    downstreamPath: boxes(bars, (segment) => segment.kind === 'downstream'),
-    openPath: boxes(bars, (segment) => segment.kind === 'open'),
+    fractionPaths: view.fractions.map(({ key }) => ({ key, path: paths.fractions.get(key) ?? '' })),
+    downstreamPath: paths.downstream,
+    openPath: paths.open,
     whiskerPath: bars.map(whiskerMarks).join('')
   };
 }
@@ -140,40 +138,31 @@ function stack(
   view: MassBalanceView,
   x: (value: number) => number
 ): { segments: BarSegment[]; end: number } {
-  const parts: Omit<BarSegment, 'from' | 'to'>[] = [];
+  const segments: BarSegment[] = [];
+  let end = 0;
+  let from = x(0);
+  const add = (
+    kind: SegmentKind,
+    fractionKey: string | null,
+    name: string,
+    value: number,
+    href: string
+  ): void => {
+    if (!(value > 0)) return;
+    end += value;
+    const to = x(end);
+    segments.push({ kind, fractionKey, name, value, from, to, href });
+    from = to;
+  };
   for (const countsAs of ['method', 'balance'] as const) {
     for (const { key } of view.fractions.filter((fraction) => fraction.countsAs === countsAs)) {
       const found = row.segments.find((segment) => segment.fractionKey === key);
-      if (found)
-        parts.push({
-          kind: countsAs,
-          fractionKey: key,
-          name: found.name,
-          value: found.mean,
-          href: found.href
-        });
+      if (found) add(countsAs, key, found.name, found.mean, found.href);
     }
   }
-  if (row.downstream !== null)
-    parts.push({
-      kind: 'downstream',
-      fractionKey: null,
-      name: 'Lost downstream',
-      value: row.downstream,
-      href: row.href
-    });
-  if (row.open !== null && row.openSignificant)
-    parts.push({ kind: 'open', fractionKey: null, name: 'Open', value: row.open, href: row.href });
-
-  let at = 0;
-  const segments = parts
-    .filter((part) => part.value > 0)
-    .map((part) => {
-      const from = at;
-      at += part.value;
-      return { ...part, from: x(from), to: x(at) };
-    });
-  return { segments, end: at };
+  if (row.downstream !== null) add('downstream', null, 'Lost downstream', row.downstream, row.href);
+  if (row.open !== null && row.openSignificant) add('open', null, 'Open', row.open, row.href);
+  return { segments, end };
 }
 
 function whiskerOf(row: MassBalanceRow, x: (value: number) => number): MassBalanceBar['whisker'] {
@@ -182,14 +171,32 @@ function whiskerOf(row: MassBalanceRow, x: (value: number) => number): MassBalan
   return { from: x(mean - halfWidth), to: x(mean + halfWidth) };
 }
 
-function boxes(bars: readonly MassBalanceBar[], belongs: (segment: BarSegment) => boolean): string {
-  return bars
-    .flatMap((bar) =>
-      bar.segments
-        .filter((segment) => belongs(segment) && segment.to > segment.from)
-        .map(({ from, to }) => `M${from} ${bar.top}H${to}V${bar.bottom}H${from}Z`)
-    )
-    .join('');
+interface Boxes {
+  /** Of each fraction that has any width, by its key. */
+  readonly fractions: ReadonlyMap<string, string>;
+  readonly downstream: string;
+  readonly open: string;
+}
+
+/** All boxes in one pass: writing a number as text is most of the work, and neighbours share their edges. */
+function boxes(bars: readonly MassBalanceBar[]): Boxes {
+  const fractions = new Map<string, string>();
+  let downstream = '';
+  let open = '';
+  for (const bar of bars) {
+    const [top, bottom] = [String(bar.top), String(bar.bottom)];
+    let right = '0';
+    for (const { kind, fractionKey, from, to } of bar.segments) {
+      const left = right;
+      if (to <= from) continue;
+      right = String(to);
+      const box = `M${left} ${top}H${right}V${bottom}H${left}Z`;
+      if (kind === 'downstream') downstream += box;
+      else if (kind === 'open') open += box;
+      else if (fractionKey !== null) fractions.set(fractionKey, (fractions.get(fractionKey) ?? '') + box);
+    }
+  }
+  return { fractions, downstream, open };
 }
 
 function whiskerMarks(bar: MassBalanceBar): string {
