@@ -57,6 +57,19 @@ describe('MassBalanceChart', () => {
     await expectNoViolations();
   });
 
+  it('asks for the table of a long chart by a link, prints it all the same, and comes with it where it was asked for', async () => {
+    const rows = Array.from({ length: 41 }, (_, index) => balanceRow(`Compound ${index}`, { first: 90 }));
+    const long = { view: balanceView(...rows), title: 'Mass balance', tableHref: '?table=shown#table' };
+    const screen = await render(MassBalanceChart, long);
+    const link = screen.getByRole('link', { name: 'The same figures as a table' });
+    await expect.element(link).toHaveAttribute('href', '?table=shown#table');
+    expect(document.querySelector('table')).toBeNull();
+    window.dispatchEvent(new Event('beforeprint'));
+    expect(document.querySelectorAll('details[open] tbody tr')).toHaveLength(41);
+    await screen.rerender({ ...long, tableHref: undefined, tableId: 'table' });
+    expect(document.querySelectorAll('details#table[open] tbody tr')).toHaveLength(41);
+  });
+
   it('sets name, figure and mark above a full-width bar on a phone', async () => {
     await page.viewport(390, 800);
     const screen = await render(MassBalanceChart, { view: balance, title: 'Mass balance' });

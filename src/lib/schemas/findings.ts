@@ -14,7 +14,9 @@ export const massBalanceOrderNames = ['verdict', 'open', 'name', 'class', 'panel
 export const massBalanceQuery = subjectQuery.extend({
   order: z.enum(massBalanceOrderNames).catch('verdict'),
   /** Class of substance; empty: all. */
-  group: z.string().max(80).catch('')
+  group: z.string().max(80).catch(''),
+  /** The table twin of a large chart comes when it is asked for. */
+  table: z.literal('shown').optional().catch(undefined)
 });
 
 /** The same for programs: what cannot be read is refused. */

@@ -9,7 +9,7 @@ import type { PageServerLoad } from './$types';
 export const load: PageServerLoad = async ({ locals, params, url }) => {
   const actor = memberIn(locals);
   const links = figureLinks(url);
-  const { order, group, ...query } = massBalanceQuery.parse(Object.fromEntries(url.searchParams));
+  const { order, group, table, ...query } = massBalanceQuery.parse(Object.fromEntries(url.searchParams));
   const { subject, balance, notes } = await massBalanceView(actor, params.study, query, links.figureLink);
   const groups = [...new Set(balance.rows.map((row) => row.class))].filter((name) => name !== '').sort();
   const rows = balance.rows.filter((row) => group === '' || row.class === group);
@@ -20,6 +20,7 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
     order,
     group,
     groups,
+    table,
     figure: await openFigure(actor, params.study, links)
   };
 };
