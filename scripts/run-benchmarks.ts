@@ -1,12 +1,14 @@
 import { fork } from 'node:child_process';
 import { readdirSync } from 'node:fs';
-import { resolve } from 'node:path';
+import { basename, join, resolve } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { Client } from 'pg';
+import { build } from 'vite';
 import type { BenchContext, Benchmark, BenchResult } from '../tests/bench/benchmark';
 
 /** Runs the benchmarks one after the other and prints one table; ends with code 1 when one fails or misses its goal. */
 const folder = resolve('tests', 'bench');
+const output = resolve('build', 'bench');
 const words = process.argv.slice(2).map((word) => word.toLowerCase());
 const serverUrl = process.env.DATABASE_URL ?? '';
 const notes: string[] = [];
@@ -75,12 +77,37 @@ function table(lines: readonly Line[]): string {
     .join('\n');
 }
 
-const files = readdirSync(folder).filter((file) => file.endsWith('.bench.ts'));
+/** Built as the server is: what a loader makes of the source while it runs is slower. */
+async function built(files: readonly string[]): Promise<readonly string[]> {
+  const names = files.map((file) => basename(file, '.ts'));
+  await build({
+    configFile: false,
+    logLevel: 'warn',
+    publicDir: false,
+    resolve: { alias: { $lib: resolve('src', 'lib') } },
+    ssr: { external: true },
+    build: {
+      ssr: true,
+      target: 'node20',
+      outDir: output,
+      emptyOutDir: true,
+      rolldownOptions: {
+        input: Object.fromEntries(names.map((name) => [name, join(folder, `${name}.ts`)])),
+        output: { entryFileNames: '[name].js' }
+      }
+    }
+  });
+  return names.map((name) => join(output, `${name}.js`));
+}
+
+const files = readdirSync(folder)
+  .filter((file) => file.endsWith('.bench.ts'))
+  .sort();
 const context: BenchContext = { databaseUrl: serverUrl, createDatabase, note: (text) => notes.push(text) };
 const lines: Line[] = [];
 let failed = false;
-for (const file of files.sort()) {
-  const { benchmarks } = (await import(pathToFileURL(resolve(folder, file)).href)) as {
+for (const file of await built(files)) {
+  const { benchmarks } = (await import(pathToFileURL(file).href)) as {
     benchmarks: readonly Benchmark[];
   };
   for (const benchmark of benchmarks) {
