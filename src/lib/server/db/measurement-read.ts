@@ -132,14 +132,21 @@ function counting<Injection extends MeasuredInjection>(
   }
   if (imports.size < 2) return joined;
 
-  const latest = new Map<string, number>();
-  const orderOf = (row: CountingMeasurement<Injection>): number => imports.get(row.importId) ?? 0;
-  const keyOf = (row: CountingMeasurement<Injection>): string => `${placeOf(row.injection)} ${row.analyteId}`;
-  for (const row of joined) {
-    const key = keyOf(row);
-    latest.set(key, Math.max(latest.get(key) ?? 0, orderOf(row)));
+  // Injections of one place share its list of analytes, so that a row costs one look-up and no text of its own.
+  const places = new Map<string, Map<string, number>>();
+  const latest = new Map<Injection, Map<string, number>>();
+  for (const injection of injections.values()) {
+    const place = placeOf(injection);
+    const known = places.get(place) ?? new Map<string, number>();
+    places.set(place, known);
+    latest.set(injection, known);
   }
-  return joined.filter((row) => orderOf(row) === latest.get(keyOf(row)));
+  const orderOf = (row: CountingMeasurement<Injection>): number => imports.get(row.importId) ?? 0;
+  for (const row of joined) {
+    const known = latest.get(row.injection);
+    known?.set(row.analyteId, Math.max(known.get(row.analyteId) ?? 0, orderOf(row)));
+  }
+  return joined.filter((row) => orderOf(row) === latest.get(row.injection)?.get(row.analyteId));
 }
 
 async function storedImports(

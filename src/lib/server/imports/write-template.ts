@@ -1,4 +1,4 @@
-import ExcelJS from 'exceljs';
+import type ExcelJS from 'exceljs';
 import { markNames, markSheet, readMeSheet, templateVersion } from './template-mark';
 import { fillReadMe, templateFont } from './template-read-me';
 import type { Expectation, ExperimentExpectation, PanelExpectation } from './types';
@@ -83,7 +83,9 @@ export async function writeTemplate(
 ): Promise<Buffer> {
   const experiment = expectation.experiments.find(({ id }) => id === experimentId);
   if (!experiment) throw new RangeError(`The expectation has no experiment ${experimentId}`);
-  const workbook = new ExcelJS.Workbook();
+  // Large and slow to load: pages that only speak of templates do without it.
+  const { default: excel } = await import('exceljs');
+  const workbook = new excel.Workbook();
   const results = workbook.addWorksheet('Results');
   const title = demoLabel === null ? experiment.title : `${experiment.title} (${demoLabel})`;
   results.addRow([title]).font = { ...templateFont, bold: true, size: 13 };

@@ -9,10 +9,12 @@ export interface Coverage {
   readonly fileNames: readonly string[];
 }
 
-interface PlaceRow {
+/** An injection of a stored import, and what it was measured for. */
+interface OnRecord {
   readonly place: string;
-  readonly analyte_id: string;
   readonly file_name: string;
+  /** Ids, parted by blanks: one text an injection is read many times faster than one row a value. */
+  readonly analytes: string;
 }
 
 /** Which values of stored imports the records would cover, place by place (preparation or level, fraction, analyte). */
@@ -30,31 +32,49 @@ export async function coveredPlaces(
   if (expectation.panel.length === 0 || experiments.size + sets.size === 0)
     return { count: 0, fileNames: [] };
 
-  const rows = await sequelize.query<PlaceRow>(
-    `SELECT DISTINCT x.replicate_id || ' ' || coalesce(x.fraction_id::text, '') AS place, m.analyte_id, i.file_name
-        FROM measurements m JOIN imports i ON i.id = m.import_id AND i.state = 'stored'
+  const onRecord = await sequelize.query<OnRecord>(
+    `SELECT x.replicate_id || ' ' || coalesce(x.fraction_id::text, '') AS place, i.file_name, m.analytes
+        FROM (SELECT injection_id, string_agg(analyte_id::text, ' ') AS analytes FROM measurements
+            WHERE lab_id = $1 AND experiment_id = ANY ($3::uuid[]) GROUP BY injection_id) m
           JOIN injections j ON j.id = m.injection_id JOIN extracts x ON x.id = j.extract_id
-        WHERE m.lab_id = $1 AND i.study_id = $2 AND m.experiment_id = ANY ($3::uuid[])
+          JOIN imports i ON i.id = j.import_id AND i.state = 'stored'
+        WHERE i.lab_id = $1 AND i.study_id = $2
       UNION ALL
-      SELECT DISTINCT j.level_id::text, m.analyte_id, i.file_name
-        FROM measurements m JOIN imports i ON i.id = m.import_id AND i.state = 'stored'
+      SELECT j.level_id::text, i.file_name, m.analytes
+        FROM (SELECT injection_id, string_agg(analyte_id::text, ' ') AS analytes FROM measurements
+            WHERE lab_id = $1 AND calibration_set_id = ANY ($4::uuid[]) GROUP BY injection_id) m
           JOIN injections j ON j.id = m.injection_id
-        WHERE m.lab_id = $1 AND i.study_id = $2 AND m.calibration_set_id = ANY ($4::uuid[])`,
+          JOIN imports i ON i.id = j.import_id AND i.state = 'stored'
+        WHERE i.lab_id = $1 AND i.study_id = $2`,
     { bind: [study.labId, study.id, [...experiments], [...sets]], type: QueryTypes.SELECT }
   );
+  if (onRecord.length === 0) return { count: 0, fileNames: [] };
   const entries = await sequelize.query<{ id: string; analyte_id: string }>(
     'SELECT id, analyte_id FROM panel_entries WHERE lab_id = $1 AND study_id = $2',
     { bind: [study.labId, study.id], type: QueryTypes.SELECT }
   );
   const analyteOf = new Map(entries.map((entry) => [entry.id, entry.analyte_id]));
 
-  const filled = new Set(
-    records.map(({ place, panelEntryId }) => `${placeKey(place)} ${analyteOf.get(panelEntryId)}`)
-  );
-  const covered = rows.filter((row) => filled.has(`${row.place} ${row.analyte_id}`));
+  const filled = new Map<string, Set<string | undefined>>();
+  for (const { place, panelEntryId } of records) {
+    const key = placeKey(place);
+    const analytes = filled.get(key) ?? new Set();
+    filled.set(key, analytes.add(analyteOf.get(panelEntryId)));
+  }
+  const covered = new Map<string, Set<string>>();
+  const fileNames = new Set<string>();
+  for (const { place, file_name: fileName, analytes } of onRecord) {
+    const wanted = filled.get(place);
+    const met = analytes.split(' ').filter((analyte) => wanted?.has(analyte));
+    if (met.length === 0) continue;
+    fileNames.add(fileName);
+    const known = covered.get(place) ?? new Set();
+    for (const analyte of met) known.add(analyte);
+    covered.set(place, known);
+  }
   return {
-    count: new Set(covered.map((row) => `${row.place} ${row.analyte_id}`)).size,
-    fileNames: [...new Set(covered.map((row) => row.file_name))].sort()
+    count: [...covered.values()].reduce((sum, analytes) => sum + analytes.size, 0),
+    fileNames: [...fileNames].sort()
   };
 }
 
