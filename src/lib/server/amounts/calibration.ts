@@ -67,8 +67,7 @@ export function calibrate(
   const levels = new Map(set.levels.map((level) => [level.id, level]));
   const points: CalibrationPoint[] = [];
   const unused: UnusedPoint[] = [];
-  for (const reported of set.reported) {
-    if (reported.entryId !== entry.id) continue;
+  for (const reported of reportedOfEntry(set, entry.id)) {
     const level = levels.get(reported.levelId);
     if (!level) continue;
     if (wrongStandard(reported, entry.internalStandardId)) {
@@ -103,6 +102,22 @@ export function calibrate(
       return refuse(`${set.name} gives no line for ${entry.name}: ${error.message}`);
     throw error;
   }
+}
+
+const sorted = new WeakMap<CalibrationSet, ReadonlyMap<string, readonly LevelReported[]>>();
+
+/** What a set holds of one entry; sorted once, since every entry of a panel asks. */
+function reportedOfEntry(set: CalibrationSet, entryId: string): readonly LevelReported[] {
+  const known = sorted.get(set);
+  if (known) return known.get(entryId) ?? [];
+  const byEntry = new Map<string, LevelReported[]>();
+  for (const reported of set.reported) {
+    const ofEntry = byEntry.get(reported.entryId);
+    if (ofEntry) ofEntry.push(reported);
+    else byEntry.set(reported.entryId, [reported]);
+  }
+  sorted.set(set, byEntry);
+  return byEntry.get(entryId) ?? [];
 }
 
 /** Lowest concentration (ng/mL) of the entry among the levels of the set that are not left out; null: none holds it. */

@@ -92,16 +92,20 @@ function bounded(
   { from, expected, code, isWithin }: Bound
 ): number | null | 'faulty' {
   if (!from) return null;
-  const cell = merged(row, from.column);
-  const at = { sheet: sheet.name, row, column: from.column, expected };
-  const number = readNumberCell(cell, { ...at, decimal: decimalOf(from.column) }, problems);
+  const { column } = from;
+  const cell = merged(row, column);
+  const context = { sheet: sheet.name, row, column, expected, decimal: decimalOf(column) };
+  const number = readNumberCell(cell, context, problems);
   if (number.state === 'missing') return null;
   if (number.state === 'unusable') return 'faulty';
   const value = number.state === 'value' ? convert(number.value, from.factor) : null;
   if (value !== null && isWithin(value)) return value;
   problems.error({
     code: value === null ? 'not a number' : code,
-    ...at,
+    sheet: sheet.name,
+    row,
+    column,
+    expected,
     found: `“${textOf(cell)}”`,
     what: `“${textOf(cell)}” stands where ${expected} belongs.`,
     fix: 'Correct the cell, or leave it empty.'
