@@ -1,4 +1,4 @@
-import type { CalibrationModel, CalibrationWeighting } from './calibration';
+import type { CalibrationFit, CalibrationModel, CalibrationWeighting } from './calibration';
 
 /** Weight of a level: 1, 1/x or 1/x^2; null where it does not exist. */
 export function weightAt(x: number, weighting: CalibrationWeighting): number | null {
@@ -23,6 +23,22 @@ export function slopeAt(powers: readonly number[], x: number): number {
     (sum, coefficient, power) => (power === 0 ? sum : sum * x + power * coefficient),
     0
   );
+}
+
+/** Variance of the curve's height at x: g' Cov g, g the derivatives of the height in the coefficients. Never below zero. */
+export function curveVariance(
+  fit: Pick<CalibrationFit, 'model' | 'coefficients' | 'covariance'>,
+  x: number
+): number {
+  const gradient =
+    fit.model === 'average response factor' ? [x] : fit.coefficients.map((_, power) => x ** power);
+  let sum = 0;
+  fit.covariance.forEach((row, i) =>
+    row.forEach((value, j) => {
+      sum += gradient[i]! * value * gradient[j]!;
+    })
+  );
+  return Math.max(0, sum);
 }
 
 /**

@@ -19,7 +19,9 @@ export {
   type CalibrationWeighting,
   type FittedPoint
 } from './calibration';
+export { coefficientTests } from './coefficient-tests';
 export { controlLimits, relativePercentDifference, type ControlLimits } from './control';
+export { curveBand, runsOneWay, type BandPoint } from './curve-band';
 export { describe } from './describe';
 export {
   detectionLimits,

@@ -1,5 +1,5 @@
 import type { CalibrationFit } from './calibration';
-import { heightAt, powersOf, rootOf, slopeAt, weightAt } from './calibration-curve';
+import { curveVariance, heightAt, powersOf, rootOf, slopeAt, weightAt } from './calibration-curve';
 import { StatsError } from './errors';
 import { finite } from './guards';
 
@@ -41,22 +41,9 @@ export function solveCalibration(
   const weight = weightAt(x, fit.weighting);
   const slope = slopeAt(powers, x);
   if (weight === null || slope === 0) return { x, se: null, df: null, outside };
-  const gradient =
-    fit.model === 'average response factor' ? [x] : fit.coefficients.map((_, power) => x ** power);
-  const variance = fit.residualSd ** 2 / (weight * replicates) + curveVariance(fit, gradient);
+  const variance = fit.residualSd ** 2 / (weight * replicates) + curveVariance(fit, x);
   const se = Math.sqrt(variance) / Math.abs(slope);
   return Number.isFinite(se) ? { x, se, df: fit.df, outside } : { x, se: null, df: null, outside };
-}
-
-/** g' Cov g, never below zero. */
-function curveVariance(fit: CalibrationFit, gradient: readonly number[]): number {
-  let sum = 0;
-  fit.covariance.forEach((row, i) =>
-    row.forEach((value, j) => {
-      sum += gradient[i]! * value * gradient[j]!;
-    })
-  );
-  return Math.max(0, sum);
 }
 
 /** On which side of the range a response lies that the curve never reaches. */

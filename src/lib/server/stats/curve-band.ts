@@ -1,0 +1,57 @@
+import type { CalibrationFit } from './calibration';
+import { curveVariance, heightAt, powersOf, slopeAt, weightAt } from './calibration-curve';
+import { finite, fractionOfOne } from './guards';
+import { studentQuantile } from './quantiles';
+import type { Interval } from './types';
+
+/** The curve at one x, in the unit of the responses. */
+export type BandPoint = {
+  readonly x: number;
+  readonly height: number;
+  /** Where the curve itself lies. */
+  readonly confidence: Interval;
+  /** Where one further response at x would lie; null where a weighted curve has no weight (x not above zero). */
+  readonly prediction: Interval | null;
+};
+
+/**
+ * A fitted curve at each x with its pointwise bands, two-sided at `level`:
+ *
+ * - confidence: height -+ t(df) sqrt(g' Cov g), g the derivatives of the height in the coefficients;
+ * - prediction: height -+ t(df) sqrt(residualSd^2/w(x) + g' Cov g), with w the weighting of the fit.
+ *
+ * The bands are those of each x by itself, not of all at once.
+ *
+ * @throws StatsError for an x that is not finite, or a level outside 0 to 1.
+ * Source: weighted least squares theory; the same as `predict` of an `lm` in R with `interval` and `weights`.
+ */
+export function curveBand(fit: CalibrationFit, xs: readonly number[], level = 0.95): BandPoint[] {
+  const t = studentQuantile((1 - fractionOfOne(level, 'Level of the band')) / 2, fit.df);
+  const powers = powersOf(fit.coefficients, fit.model);
+  return xs.map((x, index) => {
+    const height = heightAt(powers, finite(x, `Level ${index + 1} of the band`));
+    const curve = curveVariance(fit, x);
+    const weight = weightAt(x, fit.weighting);
+    const around = (variance: number): Interval => {
+      const half = t * Math.sqrt(variance);
+      return { lower: height - half, upper: height + half, level };
+    };
+    return {
+      x,
+      height,
+      confidence: around(curve),
+      prediction: weight === null ? null : around(curve + fit.residualSd ** 2 / weight)
+    };
+  });
+}
+
+/**
+ * True when the curve only rises, or only falls, between the lowest and the highest level: one response then belongs to one
+ * level. A curve of second order has a straight slope, so its two ends decide.
+ *
+ * Source: EPA SW-846 Method 8000D, 11.5 (the tangents of a curve keep one sign over the range).
+ */
+export function runsOneWay(fit: Pick<CalibrationFit, 'model' | 'coefficients' | 'range'>): boolean {
+  const powers = powersOf(fit.coefficients, fit.model);
+  return slopeAt(powers, fit.range[0]) * slopeAt(powers, fit.range[1]) > 0;
+}
