@@ -23,6 +23,7 @@ export function experimentExpectation(over: Partial<ExperimentExpectation> = {})
   return {
     id: 'experiment 1',
     title: 'Extraction at pH 7',
+    calibrationSetId: 'calibration 1',
     replicates: ['S1', 'S2'].map((label) => replicateExpectation(label)),
     fractions: ['Elution 1', 'Aqueous layer'].map((name) => ({ id: `fraction ${name}`, name })),
     ...over
@@ -54,10 +55,12 @@ export function expectation(over: Partial<Expectation> = {}): Expectation {
       {
         id: 'calibration 1',
         name: 'Week 9',
+        instrument: 'Instrument 1',
         levels: [
           { id: 'level 1', name: 'Level 1' },
           { id: 'level 2', name: 'Level 2' }
-        ]
+        ],
+        checks: []
       }
     ],
     experimentId: null,

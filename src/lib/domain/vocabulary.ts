@@ -72,6 +72,10 @@ export type CalibrationModelName = (typeof calibrationModels)[number];
 export const calibrationWeightings = ['none', '1/x', '1/x2'] as const;
 export type CalibrationWeighting = (typeof calibrationWeightings)[number];
 
+/** What is run to tell whether a calibration still holds; an instrument blank tells whether the instrument is clean. */
+export const checkStandardKinds = ['second source', 'continuing', 'instrument blank'] as const;
+export type CheckStandardKind = (typeof checkStandardKinds)[number];
+
 export const stepKinds = [
   'condition',
   'load',

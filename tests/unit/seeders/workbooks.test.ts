@@ -15,6 +15,7 @@ function expectationOf(experiment: PlannedExperiment): Expectation {
       {
         id: experiment.key,
         title: experiment.title,
+        calibrationSetId: null,
         replicates: experiment.portions.map(({ label, kind }) => ({
           id: label,
           label,

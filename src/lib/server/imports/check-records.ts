@@ -1,4 +1,5 @@
 import { cellAddress } from './cell-address';
+import { numberedChecks } from './check-injections';
 import type { DraftRecord } from './map-sheet';
 import type { ProblemList } from './problems';
 import type { Expectation, PanelExpectation } from './types';
@@ -21,7 +22,7 @@ export function checkRecords(
   problems: ProblemList
 ): readonly DraftRecord[] {
   const panel = new Map(expectation.panel.map((entry) => [entry.id, entry]));
-  const records = withoutRepeats(drafts, panel, problems);
+  const records = withoutRepeats(numberedChecks(drafts, panel, problems), panel, problems);
   shareWithin(records, extractKey, 'finalVolumeMl', 'final volume', problems);
   shareWithin(records, extractKey, 'aliquotShare', 'aliquot share', problems);
   shareWithin(records, injectionKey, 'dilution', 'dilution', problems);
@@ -33,9 +34,14 @@ export function checkRecords(
 }
 
 function extractKey({ place }: DraftRecord): string {
-  return place.kind === 'extract'
-    ? `${place.experimentId} ${place.replicateId} ${place.fractionId}`
-    : `${place.calibrationSetId} ${place.levelId}`;
+  switch (place.kind) {
+    case 'extract':
+      return `${place.experimentId} ${place.replicateId} ${place.fractionId}`;
+    case 'level':
+      return `${place.calibrationSetId} ${place.levelId}`;
+    case 'check':
+      return `${place.calibrationSetId} ${place.checkStandardId}`;
+  }
 }
 
 function injectionKey(record: DraftRecord): string {
@@ -99,11 +105,11 @@ function shareWithin(
   for (const record of records) record[property] ??= given.get(keyOf(record))?.value ?? null;
 }
 
-/** Amounts of a whole fraction and concentrations in the sample take no dilution and share any more, calibration levels neither. */
+/** Amounts of a whole fraction and concentrations in the sample take no dilution and share any more, levels and checks neither. */
 function dropWhatBasisTakesNot(records: readonly DraftRecord[], problems: ProblemList): void {
   for (const record of records) {
-    const isLevel = record.place.kind === 'level';
-    if (!isLevel && record.basis !== 'ng' && record.basis !== 'ng_per_l') continue;
+    const { kind } = record.place;
+    if (kind === 'extract' && record.basis !== 'ng' && record.basis !== 'ng_per_l') continue;
     for (const [property, called] of [
       ['dilution', 'dilution'],
       ['aliquotShare', 'aliquot share']
@@ -111,11 +117,12 @@ function dropWhatBasisTakesNot(records: readonly DraftRecord[], problems: Proble
       const value = record[property];
       record[property] = null;
       if (value === null || value === 1) continue;
-      const subject = isLevel
-        ? 'calibration levels'
-        : record.basis === 'ng'
-          ? 'amounts in ng'
-          : 'results in ng/L of sample';
+      const subject =
+        kind !== 'extract'
+          ? 'calibration levels and checks'
+          : record.basis === 'ng'
+            ? 'amounts in ng'
+            : 'results in ng/L of sample';
       problems.oncePer(`${property} ${subject}`, 'question', {
         code: 'not taken by basis',
         sheet: record.sheet,

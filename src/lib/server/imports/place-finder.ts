@@ -1,5 +1,11 @@
 import { NameMatcher } from './name-matcher';
-import type { Expectation, ExperimentExpectation, FractionExpectation, ReplicateExpectation } from './types';
+import type {
+  Expectation,
+  ExperimentExpectation,
+  FractionExpectation,
+  Place,
+  ReplicateExpectation
+} from './types';
 
 export type FoundPlace =
   | {
@@ -7,7 +13,7 @@ export type FoundPlace =
       readonly experiment: ExperimentExpectation;
       readonly replicate: ReplicateExpectation;
     }
-  | { readonly kind: 'level'; readonly calibrationSetId: string; readonly levelId: string }
+  | Exclude<Place, { readonly kind: 'extract' }>
   | { readonly kind: 'many'; readonly places: readonly string[] }
   | { readonly kind: 'none'; readonly nearest: string | null };
 
@@ -16,7 +22,7 @@ interface Labelled {
   readonly described: string;
 }
 
-/** Finds the replicate or the calibration level that a sample label means. */
+/** Finds the replicate, the calibration level or the check that a sample label means. */
 export class PlaceFinder {
   readonly #experiments: readonly ExperimentExpectation[];
   readonly #preferred: ExperimentExpectation | null;
@@ -42,6 +48,20 @@ export class PlaceFinder {
             described: `level ${level.name} of calibration ${set.name}`
           },
           [level.name]
+        );
+      }
+      for (const check of set.checks) {
+        this.#levels.add(
+          {
+            place: {
+              kind: 'check',
+              calibrationSetId: set.id,
+              checkStandardId: check.id,
+              checkKind: check.kind
+            },
+            described: `${check.name} (${checkWords[check.kind]}) of calibration ${set.name}`
+          },
+          [check.name]
         );
       }
     }
@@ -83,7 +103,7 @@ export class PlaceFinder {
 
   #find(label: string, experiment: ExperimentExpectation | null): FoundPlace {
     const first = experiment ?? this.#preferred;
-    const levels = experiment ? [] : candidates(this.#levels, label);
+    const levels = experiment ? [] : ofItsSet(candidates(this.#levels, label), first);
     const anywhere = (): readonly Labelled[] =>
       this.#experiments.flatMap((each) => this.#labelled(each, label));
     const own = [...(first ? this.#labelled(first, label) : anywhere()), ...levels];
@@ -110,6 +130,19 @@ export class PlaceFinder {
   fractions(experiment: ExperimentExpectation): NameMatcher<FractionExpectation> {
     return this.#fractions.get(experiment.id) ?? new NameMatcher();
   }
+}
+
+const checkWords = {
+  'second source': 'second-source check',
+  continuing: 'continuing check',
+  'instrument blank': 'instrument blank'
+} as const;
+
+/** Sets name their levels and checks alike (L1, CCV): in a file of an experiment, those of its own set are meant. */
+function ofItsSet(found: readonly Labelled[], experiment: ExperimentExpectation | null): readonly Labelled[] {
+  const setId = experiment?.calibrationSetId ?? null;
+  const own = found.filter(({ place }) => place.kind !== 'replicate' && place.calibrationSetId === setId);
+  return own.length > 0 ? own : found;
 }
 
 function candidates(matcher: NameMatcher<Labelled>, label: string): readonly Labelled[] {

@@ -18,7 +18,7 @@ export function placeOf(mapping: SheetMapping, merged: CellReader, row: number):
       code: 'missing sample',
       ...at,
       found: 'an empty cell',
-      expected: 'a sample label or a calibration level',
+      expected: 'a sample label, a calibration level or a check',
       what: 'This row has results but no sample.',
       fix: 'Write the label of the sample, or remove the row.'
     });
@@ -29,6 +29,7 @@ export function placeOf(mapping: SheetMapping, merged: CellReader, row: number):
   const found = places.find(label, experiment);
   switch (found.kind) {
     case 'level':
+    case 'check':
       return { place: found, name: label };
     case 'replicate':
       return replicatePlace(
@@ -55,9 +56,9 @@ export function placeOf(mapping: SheetMapping, merged: CellReader, row: number):
         code: 'unknown sample',
         ...at,
         found: `“${label}”`,
-        expected: 'the label of a replicate, or a calibration level',
-        what: `No replicate and no calibration level is called “${label}”.${found.nearest ? ` Is ${found.nearest} meant?` : ''}`,
-        fix: 'Correct the label, add the replicate to its experiment, or remove the rows.'
+        expected: 'the label of a replicate, a calibration level or a check',
+        what: `No replicate, calibration level or check is called “${label}”.${found.nearest ? ` Is ${found.nearest} meant?` : ''}`,
+        fix: 'Correct the label, add the replicate to its experiment or the check to its calibration set, or remove the rows.'
       });
       return null;
   }

@@ -1,5 +1,6 @@
 import type {
   AdditionPoint,
+  CheckStandardKind,
   MeasurementState,
   PanelRole,
   ReplicateKind,
@@ -82,6 +83,8 @@ export interface FractionExpectation {
 export interface ExperimentExpectation {
   readonly id: string;
   readonly title: string;
+  /** The set its areas are read by: of levels and checks that go by one name in several sets, its own is meant. */
+  readonly calibrationSetId: string | null;
   readonly replicates: readonly ReplicateExpectation[];
   readonly fractions: readonly FractionExpectation[];
 }
@@ -102,7 +105,16 @@ export interface PanelExpectation {
 export interface CalibrationSetExpectation {
   readonly id: string;
   readonly name: string;
+  readonly instrument: string;
   readonly levels: readonly { readonly id: string; readonly name: string }[];
+  readonly checks: readonly CheckExpectation[];
+}
+
+/** A second-source or continuing check, or an instrument blank, under the name that the sample column gives it. */
+export interface CheckExpectation {
+  readonly id: string;
+  readonly name: string;
+  readonly kind: CheckStandardKind;
 }
 
 /** What the study offers for a spreadsheet to be matched with: plain data, so that it can go to the child process. */
@@ -126,7 +138,13 @@ export type Place =
       readonly replicateId: string;
       readonly fractionId: string | null;
     }
-  | { readonly kind: 'level'; readonly calibrationSetId: string; readonly levelId: string };
+  | { readonly kind: 'level'; readonly calibrationSetId: string; readonly levelId: string }
+  | {
+      readonly kind: 'check';
+      readonly calibrationSetId: string;
+      readonly checkStandardId: string;
+      readonly checkKind: CheckStandardKind;
+    };
 
 export interface MappedRecord {
   readonly sheet: string;
@@ -137,7 +155,7 @@ export interface MappedRecord {
   readonly cell: string;
   readonly place: Place;
   readonly panelEntryId: string;
-  /** 1 where the file does not number injections. */
+  /** 1 where the file does not number injections; of a check, counted through the file (see `check-injections.ts`). */
   readonly injection: number;
   readonly reported: {
     readonly kind: ReportedBasis;
@@ -223,6 +241,7 @@ export type ProblemCode =
   | 'date not understood'
   // records
   | 'same injection twice'
+  | 'check injections unclear'
   | 'internal standard area missing'
   | 'internal standard area twice'
   | 'final volume missing'

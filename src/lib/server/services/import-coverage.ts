@@ -11,13 +11,18 @@ export interface Coverage {
 
 /** An injection of a stored import, and what it was measured for. */
 interface OnRecord {
-  readonly place: string;
+  /** null: a check without a moment. */
+  readonly place: string | null;
   readonly file_name: string;
   /** Ids, parted by blanks: one text an injection is read many times faster than one row a value. */
   readonly analytes: string;
 }
 
-/** Which values of stored imports the records would cover, place by place (preparation or level, fraction, analyte). */
+/**
+ * Which values of stored imports the records would cover, place by place: preparation and fraction, level, or check and moment, and in
+ * each the analyte. A check is run many times under one label, so that the moment of its injection is part of its place: another
+ * day's check covers nothing, the same injection read anew covers itself. A check without a moment is covered by nothing.
+ */
 export async function coveredPlaces(
   study: Pick<Study, 'id' | 'labId'>,
   records: readonly MappedRecord[],
@@ -40,7 +45,8 @@ export async function coveredPlaces(
           JOIN imports i ON i.id = j.import_id AND i.state = 'stored'
         WHERE i.lab_id = $1 AND i.study_id = $2
       UNION ALL
-      SELECT j.level_id::text, i.file_name, m.analytes
+      SELECT coalesce(j.level_id::text, j.check_standard_id || ' ' || (extract(epoch FROM j.run_at) * 1000)::bigint),
+          i.file_name, m.analytes
         FROM (SELECT injection_id, string_agg(analyte_id::text, ' ') AS analytes FROM measurements
             WHERE lab_id = $1 AND calibration_set_id = ANY ($4::uuid[]) GROUP BY injection_id) m
           JOIN injections j ON j.id = m.injection_id
@@ -56,14 +62,17 @@ export async function coveredPlaces(
   const analyteOf = new Map(entries.map((entry) => [entry.id, entry.analyte_id]));
 
   const filled = new Map<string, Set<string | undefined>>();
-  for (const { place, panelEntryId } of records) {
-    const key = placeKey(place);
+  for (const record of records) {
+    const { panelEntryId } = record;
+    const key = placeKey(record);
+    if (key === null) continue;
     const analytes = filled.get(key) ?? new Set();
     filled.set(key, analytes.add(analyteOf.get(panelEntryId)));
   }
   const covered = new Map<string, Set<string>>();
   const fileNames = new Set<string>();
   for (const { place, file_name: fileName, analytes } of onRecord) {
+    if (place === null) continue;
     const wanted = filled.get(place);
     const met = analytes.split(' ').filter((analyte) => wanted?.has(analyte));
     if (met.length === 0) continue;
@@ -78,6 +87,13 @@ export async function coveredPlaces(
   };
 }
 
-function placeKey(place: MappedRecord['place']): string {
-  return place.kind === 'extract' ? `${place.replicateId} ${place.fractionId ?? ''}` : place.levelId;
+function placeKey({ place, acquiredAt }: MappedRecord): string | null {
+  switch (place.kind) {
+    case 'extract':
+      return `${place.replicateId} ${place.fractionId ?? ''}`;
+    case 'level':
+      return place.levelId;
+    case 'check':
+      return acquiredAt === null ? null : `${place.checkStandardId} ${Date.parse(`${acquiredAt}Z`)}`;
+  }
 }

@@ -1,8 +1,15 @@
 import { QueryTypes } from 'sequelize';
-import type { AdditionPoint, PanelRole, ReplicateKind, ReportedBasis } from '../../domain/vocabulary';
+import type {
+  AdditionPoint,
+  CheckStandardKind,
+  PanelRole,
+  ReplicateKind,
+  ReportedBasis
+} from '../../domain/vocabulary';
 import { sequelize } from '../db/sequelize';
 import type {
   CalibrationSetExpectation,
+  CheckExpectation,
   DecimalMark,
   Expectation,
   ExperimentExpectation,
@@ -24,6 +31,7 @@ interface ExperimentRow {
   readonly number: number;
   readonly title: string;
   readonly final_volume_ml: number | null;
+  readonly calibration_set_id: string | null;
 }
 interface ReplicateRow {
   readonly id: string;
@@ -48,8 +56,15 @@ interface PanelRow {
 interface LevelRow {
   readonly set_id: string;
   readonly set_name: string;
+  readonly instrument: string;
   readonly id: string | null;
   readonly label: string | null;
+}
+interface CheckRow {
+  readonly set_id: string;
+  readonly id: string;
+  readonly label: string;
+  readonly kind: CheckStandardKind;
 }
 interface PointRow {
   readonly experiment_id: string;
@@ -85,7 +100,7 @@ export async function loadExpectation(
     sequelize.query<Row>(sql, { bind: [where.labId, where.studyId], type: QueryTypes.SELECT });
 
   const experiments = await select<ExperimentRow>(
-    `SELECT id, number, title, final_volume_ml FROM experiments WHERE lab_id = $1 AND study_id = $2 ORDER BY number`
+    `SELECT id, number, title, final_volume_ml, calibration_set_id FROM experiments WHERE lab_id = $1 AND study_id = $2 ORDER BY number`
   );
   const replicates = await select<ReplicateRow>(
     `SELECT id, experiment_id, label, kind FROM replicates WHERE lab_id = $1 AND study_id = $2 ORDER BY kind, number`
@@ -100,9 +115,13 @@ export async function loadExpectation(
       WHERE p.lab_id = $1 AND p.study_id = $2 ORDER BY p.position`
   );
   const levels = await select<LevelRow>(
-    `SELECT s.id AS set_id, s.name AS set_name, l.id, l.label
+    `SELECT s.id AS set_id, s.name AS set_name, s.instrument, l.id, l.label
       FROM calibration_sets s LEFT JOIN calibration_levels l ON l.calibration_set_id = s.id
       WHERE s.lab_id = $1 AND s.study_id = $2 ORDER BY s.created_at, s.id, l.number`
+  );
+  const checks = await select<CheckRow>(
+    `SELECT calibration_set_id AS set_id, id, label, kind FROM check_standards
+      WHERE lab_id = $1 AND study_id = $2 ORDER BY created_at, id`
   );
   const points = await select<PointRow>(
     `SELECT experiment_id, panel_entry_id, point FROM internal_standard_additions WHERE lab_id = $1 AND study_id = $2`
@@ -125,7 +144,7 @@ export async function loadExpectation(
         hasLowestLevel: row.has_level
       };
     }),
-    calibrationSets: groupedLevels(levels),
+    calibrationSets: calibrationSetExpectations(levels, checks),
     experimentId: declared.experimentId,
     declared: { basis: declared.basis, decimal: declared.decimal }
   };
@@ -140,6 +159,7 @@ function experimentExpectation(
   return {
     id: row.id,
     title: row.title,
+    calibrationSetId: row.calibration_set_id,
     replicates: replicates
       .filter((replicate) => replicate.experiment_id === row.id)
       .map(({ id, label, kind }) => ({
@@ -153,12 +173,22 @@ function experimentExpectation(
   };
 }
 
-function groupedLevels(rows: readonly LevelRow[]): CalibrationSetExpectation[] {
-  const sets = new Map<string, { id: string; name: string; levels: { id: string; name: string }[] }>();
-  for (const { set_id, set_name, id, label } of rows) {
-    const set = sets.get(set_id) ?? { id: set_id, name: set_name, levels: [] };
-    sets.set(set_id, set);
+function calibrationSetExpectations(
+  levels: readonly LevelRow[],
+  checks: readonly CheckRow[]
+): CalibrationSetExpectation[] {
+  type Growing = CalibrationSetExpectation & {
+    readonly levels: { id: string; name: string }[];
+    readonly checks: CheckExpectation[];
+  };
+  const sets = new Map<string, Growing>();
+  for (const { set_id: setId, set_name: name, instrument, id, label } of levels) {
+    const set = sets.get(setId) ?? { id: setId, name, instrument, levels: [], checks: [] };
+    sets.set(setId, set);
     if (id !== null && label !== null) set.levels.push({ id, name: label });
+  }
+  for (const { set_id: setId, id, label, kind } of checks) {
+    sets.get(setId)?.checks.push({ id, name: label, kind });
   }
   return [...sets.values()];
 }

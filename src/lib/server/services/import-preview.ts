@@ -209,8 +209,8 @@ function namesOf(expectation: Expectation): Names {
   return {
     samples: new Map([
       ...experiments.flatMap(({ replicates }) => replicates.map(({ id, label }) => [id, label] as const)),
-      ...calibrationSets.flatMap(({ levels, name }) =>
-        levels.map((level) => [level.id, `${name}, ${level.name}`] as const)
+      ...calibrationSets.flatMap(({ levels, checks, name }) =>
+        [...levels, ...checks].map((standard) => [standard.id, `${name}, ${standard.name}`] as const)
       )
     ]),
     fractions: new Map(
@@ -232,7 +232,7 @@ function recordView(record: MappedRecord, names: Names): RecordView {
   return {
     sheet: record.sheet,
     cell: record.cell,
-    sample: names.samples.get(place.kind === 'extract' ? place.replicateId : place.levelId) ?? '',
+    sample: names.samples.get(sampleId(place)) ?? '',
     fraction:
       place.kind === 'extract' && place.fractionId ? (names.fractions.get(place.fractionId) ?? null) : null,
     analyte: names.analytes.get(record.panelEntryId) ?? '',
@@ -244,6 +244,17 @@ function recordView(record: MappedRecord, names: Names): RecordView {
     limit: record.limit,
     applied: applied.filter((part) => part !== null).join(', ')
   };
+}
+
+function sampleId(place: MappedRecord['place']): string {
+  switch (place.kind) {
+    case 'extract':
+      return place.replicateId;
+    case 'level':
+      return place.levelId;
+    case 'check':
+      return place.checkStandardId;
+  }
 }
 
 function touchedExperiments(records: readonly MappedRecord[], expectation: Expectation): string[] {

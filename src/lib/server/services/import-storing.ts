@@ -5,7 +5,6 @@ import { newId } from '../db/entity-id';
 import { Extract } from '../db/models/extract';
 import { Import } from '../db/models/import';
 import { Injection } from '../db/models/injection';
-import { Sequence } from '../db/models/sequence';
 import type { Study } from '../db/models/study';
 import { sequelize } from '../db/sequelize';
 import { audit, inTransaction } from '../db/transaction';
@@ -14,6 +13,7 @@ import type { Expectation, MappedImport, MappedRecord } from '../imports/types';
 import { coveredPlaces } from './import-coverage';
 import { loadExpectation, nothingDeclared, type Declared } from './import-expectation';
 import { readKeptFile } from './import-reading';
+import { createSequences, injectionKind } from './import-sequences';
 import { importOfStudy } from './imports';
 import { require } from './permissions';
 import { studyOf } from './study-of';
@@ -27,7 +27,8 @@ export interface StoredImport {
 /**
  * Stores what a received file says: all of it or nothing. It is read once more against what the study offers now.
  *
- * @param input.questionsConfirmed the person read the open questions and takes the values as they stand
+ * @param input.questionsConfirmed the person read the open questions and takes the values as they stand; a program says it
+ *   of each code
  * @param input.reason why values that are on record are covered; needed when any are
  * @throws Invalid naming every problem with sheet and cell; Conflict when it is not waiting, or the study changed meanwhile
  */
@@ -35,7 +36,7 @@ export async function storeImport(
   actor: Actor,
   studyCode: string,
   importId: string,
-  input: Readonly<{ questionsConfirmed: boolean; reason: string }>
+  input: Readonly<{ questionsConfirmed: boolean | ((code: string) => boolean); reason: string }>
 ): Promise<StoredImport> {
   require(actor, 'data.enter');
   const study = await studyOf(actor, studyCode);
@@ -102,11 +103,13 @@ const notWaiting = (state: string): Conflict =>
       : `This file is ${state}; it can be uploaded again.`
   );
 
-function refuseProblems(mapped: MappedImport, questionsConfirmed: boolean): void {
+function refuseProblems(mapped: MappedImport, questionsConfirmed: boolean | ((code: string) => boolean)): void {
+  const isConfirmed = (code: string): boolean =>
+    typeof questionsConfirmed === 'boolean' ? questionsConfirmed : questionsConfirmed(code);
   // A question that wants a declaration has left cells unread: confirming it would drop them without a word.
   const blocking = mapped.problems.filter(
-    ({ severity, answer }) =>
-      severity === 'error' || (severity === 'question' && (answer !== 'confirm' || !questionsConfirmed))
+    ({ severity, answer, code }) =>
+      severity === 'error' || (severity === 'question' && (answer !== 'confirm' || !isConfirmed(code)))
   );
   if (blocking.length > 0) {
     throw new Invalid(
@@ -133,7 +136,7 @@ async function requireUnchanged(study: Study, read: Expectation, declaredNow: un
   }
 }
 
-/** Creates the sequence, the extracts and the injections, and gives the measurements that hang off them. */
+/** Creates the sequences, the extracts and the injections, and gives the measurements that hang off them. */
 async function storeInjections(
   study: Study,
   kept: Import,
@@ -141,11 +144,7 @@ async function storeInjections(
   expectation: Expectation
 ): Promise<NewMeasurement[]> {
   const ids = { labId: study.labId, studyId: study.id, importId: kept.id };
-  const sequence = await Sequence.create({
-    ...ids,
-    instrument: 'as reported',
-    runOn: earliestDay(records)
-  });
+  const sequenceOf = await createSequences(ids, records, expectation);
 
   const volumes = new Map(
     expectation.experiments.flatMap((experiment) =>
@@ -174,20 +173,24 @@ async function storeInjections(
       extractId = extract.id;
     }
     const levelId = place.kind === 'level' ? place.levelId : null;
-    const key = `${extractId} ${levelId} ${record.injection}`;
+    const checkStandardId = place.kind === 'check' ? place.checkStandardId : null;
+    const key = `${extractId} ${levelId} ${checkStandardId} ${record.injection}`;
     const injection = injections.get(key) ?? {
       ...ids,
       id: newId(),
-      sequenceId: sequence.id,
+      sequenceId: sequenceOf(record),
       position: injections.size + 1,
-      kind: place.kind,
+      kind: injectionKind(place),
       extractId,
       levelId,
+      checkStandardId,
       number: record.injection,
       dilution: record.dilution ?? 1,
-      runAt: record.acquiredAt === null ? null : new Date(`${record.acquiredAt}Z`)
+      runAt: null
     };
     if (record.dilution !== null) injection.dilution = record.dilution;
+    // Given in one row of the injection at least.
+    if (record.acquiredAt !== null) injection.runAt ??= new Date(`${record.acquiredAt}Z`);
     injections.set(key, injection);
     return injection.id;
   };
@@ -214,7 +217,7 @@ async function storeInjections(
       importId: kept.id,
       injectionId: injectionOf(record),
       experimentId: place.kind === 'extract' ? place.experimentId : null,
-      calibrationSetId: place.kind === 'level' ? place.calibrationSetId : null,
+      calibrationSetId: place.kind === 'extract' ? null : place.calibrationSetId,
       analyteId: known(analytes, record.panelEntryId),
       basis: reported.kind,
       state: record.state,
@@ -248,11 +251,6 @@ async function analyteIds(study: Study): Promise<ReadonlyMap<string, string>> {
     { bind: [study.labId, study.id], type: QueryTypes.SELECT }
   );
   return new Map(rows.map((row) => [row.id, row.analyte_id]));
-}
-
-function earliestDay(records: readonly MappedRecord[]): string | null {
-  const days = records.flatMap(({ acquiredAt }) => (acquiredAt === null ? [] : [acquiredAt.slice(0, 10)]));
-  return days.length === 0 ? null : days.reduce((first, day) => (day < first ? day : first));
 }
 
 async function markStored(

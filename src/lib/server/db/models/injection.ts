@@ -8,7 +8,7 @@ import {
 import { entityId } from '../entity-id';
 import { sequelize } from '../sequelize';
 
-/** One injection of an extract or a level, as one import reported it. Never changed. */
+/** One injection of an extract, a level, a check or a blank, as one import reported it. Never changed. */
 export class Injection extends Model<InferAttributes<Injection>, InferCreationAttributes<Injection>> {
   declare id: CreationOptional<string>;
   declare labId: string;
@@ -19,6 +19,7 @@ export class Injection extends Model<InferAttributes<Injection>, InferCreationAt
   declare kind: 'level' | 'check' | 'blank' | 'extract';
   declare extractId: string | null;
   declare levelId: string | null;
+  declare checkStandardId: CreationOptional<string | null>;
   declare number: CreationOptional<number>;
   declare dilution: CreationOptional<number>;
   declare runAt: Date | null;
@@ -36,6 +37,7 @@ Injection.init(
     kind: { type: DataTypes.TEXT, allowNull: false },
     extractId: DataTypes.UUID,
     levelId: DataTypes.UUID,
+    checkStandardId: DataTypes.UUID,
     number: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 1 },
     dilution: { type: DataTypes.DOUBLE, allowNull: false, defaultValue: 1 },
     runAt: DataTypes.DATE,
