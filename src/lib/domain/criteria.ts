@@ -1,20 +1,42 @@
+/** What a rule can be about: the preparations, the line of a calibration, or what is run in the sequence to watch over it. */
+export const ruleTypes = [
+  'mean recovery',
+  'relative standard deviation',
+  'minimum preparations',
+  'surrogate recovery',
+  'individual recovery',
+  'duplicate difference',
+  'first preparation',
+  'calibration error',
+  'calibration error at the lowest level',
+  'response factor deviation',
+  'relative standard error',
+  'determination coefficient',
+  'minimum levels',
+  'minimum levels of a curve',
+  // In percent of the concentration that a check was made to.
+  'second-source check',
+  'continuing check',
+  'continuing check at the lowest level',
+  'closing check',
+  // In percent of the analytes that a check holds.
+  'analytes failing a check',
+  'time between checks',
+  // In percent of the mean area over the levels, or of that in the latest check that holds.
+  'internal standard area',
+  'internal standard area against the latest check',
+  // In percent of the lowest level.
+  'instrument blank'
+] as const;
+/** A curve runs one way whatever a set says, so that nobody writes a rule for it. */
+export type RuleType = (typeof ruleTypes)[number] | 'monotone curve';
+
 /** One acceptance rule with the document it was taken from. A citation covers only what the document says. */
 export interface CriterionRule {
-  readonly type:
-    | 'mean recovery'
-    | 'relative standard deviation'
-    | 'minimum preparations'
-    | 'surrogate recovery'
-    | 'calibration error'
-    | 'calibration error at the lowest level'
-    | 'response factor deviation'
-    | 'determination coefficient'
-    | 'duplicate difference'
-    | 'individual recovery'
-    | 'first preparation';
+  readonly type: RuleType;
   readonly low: number | null;
   readonly high: number | null;
-  readonly unit: '%' | 'count' | '1';
+  readonly unit: '%' | 'count' | '1' | 'h';
   /** Document, section, year; or "the lab's own". */
   readonly citation: string;
   readonly year: number | null;

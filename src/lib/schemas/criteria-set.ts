@@ -1,26 +1,13 @@
 import { z } from 'zod';
+import { ruleTypes } from '../domain/criteria';
 import { optionalNumber, optionalText, requiredText, wholeNumber } from './fields';
-
-export const ruleTypes = [
-  'mean recovery',
-  'relative standard deviation',
-  'minimum preparations',
-  'surrogate recovery',
-  'individual recovery',
-  'duplicate difference',
-  'first preparation',
-  'calibration error',
-  'calibration error at the lowest level',
-  'response factor deviation',
-  'determination coefficient'
-] as const;
 
 export const ruleForm = z
   .object({
     type: z.enum(ruleTypes, 'Choose what the rule is about.'),
     low: optionalNumber(),
     high: optionalNumber(),
-    unit: z.enum(['%', 'count', '1'], 'Choose the unit.'),
+    unit: z.enum(['%', 'count', '1', 'h'], 'Choose the unit.'),
     citation: requiredText('Name the document and the section, or "the lab\'s own".', 500),
     year: optionalNumber({ least: 1900, most: 2200 }),
     standing: z.enum(['seen', 'memory', 'own'], 'Say whether the document was read for this.'),

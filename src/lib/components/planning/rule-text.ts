@@ -7,7 +7,7 @@ const standings: Readonly<Record<CriterionRule['standing'], string>> = {
 };
 
 const limit = (value: number, unit: CriterionRule['unit']): string =>
-  unit === '%' ? `${value} %` : String(value);
+  unit === '%' || unit === 'h' ? `${value} ${unit}` : String(value);
 
 /** "70 to 130 %", "20 % or less", "at least 5". */
 export function limitsText({ low, high, unit }: Pick<CriterionRule, 'low' | 'high' | 'unit'>): string {

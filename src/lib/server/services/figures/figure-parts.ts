@@ -1,5 +1,5 @@
 import { percentText } from '../../../domain/figure-text';
-import type { CriterionRule, RecoveryCriteria } from '../../../domain/criteria';
+import type { CriterionRule, RecoveryCriteria, RuleType } from '../../../domain/criteria';
 import type { RuleView } from '../../../views/findings';
 import type { Interval } from '../../stats';
 
@@ -29,7 +29,7 @@ export function criteriaText(criteria: RecoveryCriteria | null): string {
   return `${criteria.low} to ${criteria.high} %${rsd}, n at least ${criteria.nMin}`;
 }
 
-const ruleNames: Readonly<Record<CriterionRule['type'], string>> = {
+const ruleNames: Readonly<Record<RuleType, string>> = {
   'mean recovery': 'Mean recovery',
   'relative standard deviation': 'Relative standard deviation',
   'minimum preparations': 'Preparations',
@@ -37,14 +37,27 @@ const ruleNames: Readonly<Record<CriterionRule['type'], string>> = {
   'calibration error': 'Back-calculated calibration level',
   'calibration error at the lowest level': 'Back-calculated lowest level',
   'response factor deviation': 'RSD of the response factors',
+  'relative standard error': 'Relative standard error of the line',
   'determination coefficient': 'Coefficient of determination',
+  'minimum levels': 'Levels of a line',
+  'minimum levels of a curve': 'Levels of a curve of second order',
+  'monotone curve': 'Curve runs one way',
+  'second-source check': 'Second-source check, of its concentration',
+  'continuing check': 'Continuing check, of its concentration',
+  'continuing check at the lowest level': 'Continuing check at the lowest level, of its concentration',
+  'closing check': 'Last continuing check of a sequence, of its concentration',
+  'analytes failing a check': 'Analytes of a check that may fail',
+  'time between checks': 'Time between continuing checks',
+  'internal standard area': 'Internal standard area, of its mean over the levels',
+  'internal standard area against the latest check': 'Internal standard area, of that in the latest check',
+  'instrument blank': 'Instrument blank, of the lowest level',
   'duplicate difference': 'Difference of duplicates',
   'individual recovery': 'Individual recovery',
   'first preparation': 'First preparation'
 };
 
 export function ruleView(rule: CriterionRule): RuleView {
-  const unit = rule.unit === '%' ? ' %' : '';
+  const unit = rule.unit === '%' || rule.unit === 'h' ? ` ${rule.unit}` : '';
   const limits =
     rule.low !== null && rule.high !== null
       ? `${rule.low} to ${rule.high}${unit}`
