@@ -1,5 +1,5 @@
 import { fail, redirect } from '@sveltejs/kit';
-import { chemistryGroups } from '$lib/domain/chemistry-groups';
+import { chemistryGroups } from '$lib/server/chemistry';
 import { isAllowed } from '$lib/domain/permissions';
 import { formObject } from '$lib/schemas/form-object';
 import { studyForm } from '$lib/schemas/study';

@@ -1,5 +1,5 @@
 import { redirect } from '@sveltejs/kit';
-import { chemistryGroups } from '$lib/domain/chemistry-groups';
+import { chemistryGroups } from '$lib/server/chemistry';
 import { formObject } from '$lib/schemas/form-object';
 import { panelEntryForm, panelPasteForm } from '$lib/schemas/panel';
 import { answerForm, checked } from '$lib/server/form-answer';

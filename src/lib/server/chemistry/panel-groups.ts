@@ -1,0 +1,251 @@
+import { documents, practice, type Finding, type Origin } from './evidence';
+import { knownCharge, type PanelAnalyte } from './panel-analyte';
+import { checkedRange, phWindows, type PhRange, type PhWindow } from './ph-windows';
+import { notNegative, share as checkedShare } from './guards';
+import { workingRanges } from './sorbents';
+import { ChemistryError } from './errors';
+import { volatility, type Volatility } from './volatility';
+
+export type ChemistryGroupKey =
+  'neutral' | 'acid' | 'base' | 'both' | 'charged' | 'hydrophilic' | 'hydrophobic' | 'volatile' | 'unknown';
+
+/** An analyte in a group, with what put it there. */
+export interface GroupMember {
+  readonly id: string;
+  readonly name: string;
+  readonly evidence: string;
+}
+
+export interface ChemistryGroup extends Origin {
+  readonly key: ChemistryGroupKey;
+  readonly title: string;
+  /** What the group asks of the procedure. */
+  readonly question: string;
+  readonly names: readonly string[];
+  readonly members: readonly GroupMember[];
+  /** What published methods say to it; for volatile analytes those of the most volatile one. */
+  readonly findings: readonly Finding[];
+}
+
+export interface GroupingOptions {
+  /** Working range of pH; that of bonded silica when left out. */
+  readonly range?: PhRange;
+  /** Share that counts as neutral or charged. */
+  readonly share?: number;
+  readonly finalVolumeMl?: number | null;
+}
+
+// Limits that are common practice, no source: they raise a question and decide nothing.
+const hydrophilicLogKow = 0;
+const hydrophobicLogKow = 5;
+
+type ChargeKey = 'neutral' | 'acid' | 'base' | 'both' | 'charged' | 'unknown';
+type Placed = { readonly key: ChargeKey; readonly evidence: string };
+
+/**
+ * Sorts a panel into the groups that argue for one pass or two, an ion exchanger, a second cartridge, a rinse or a gentler
+ * evaporation. Each analyte stands in one group of charge (or in `unknown`); the others come on top.
+ *
+ * - `neutral`: at least `share` neutral over the whole working range; an analyte without any pKa counts here and its evidence says so
+ * - `acid` and `base`: neutral below, or above, a pH; `both`: acid and base groups, neutral between two pH values or nowhere
+ * - `charged`: a permanent charge, or one sign and at least `share` charged over the whole range
+ * - `hydrophilic` log Kow below 0, `hydrophobic` above 5, `volatile` by {@link volatility}: limits are common practice
+ * @returns groups that have members, in this order
+ * @throws ChemistryError for a range that is not in order or a share outside 0 to 1; values of an analyte that are impossible put
+ * it into `unknown` with the reason
+ */
+export function chemistryGroups(
+  analytes: readonly PanelAnalyte[],
+  { range = workingRanges.c18, share = 0.99, finalVolumeMl = null }: GroupingOptions = {}
+): readonly ChemistryGroup[] {
+  const { low, high } = checkedRange(range);
+  checkedShare(share, 'The share');
+  if (finalVolumeMl !== null) notNegative(finalVolumeMl, 'The final volume');
+  const placed = analytes.map((analyte) => placeByCharge(analyte, { low, high }, share));
+  const byCharge = (key: ChargeKey): readonly GroupMember[] =>
+    analytes.flatMap(({ id, name }, i) =>
+      placed[i]!.key === key ? [{ id, name, evidence: placed[i]!.evidence }] : []
+    );
+  const byKow = (is: (logKow: number) => boolean): readonly GroupMember[] =>
+    analytes.flatMap(({ id, name, logKow, logKowIsPredicted }) =>
+      logKow !== null && is(logKow)
+        ? [{ id, name, evidence: `log Kow ${signed(logKow)}${logKowIsPredicted ? ', predicted' : ''}` }]
+        : []
+    );
+  const evaporating = analytes.flatMap((analyte) => evaporatingMember(analyte, finalVolumeMl));
+  const percent = `${Number((100 * share).toPrecision(4))} %`;
+  const group = (
+    key: ChemistryGroupKey,
+    title: string,
+    question: string,
+    members: readonly GroupMember[],
+    more: { readonly origin?: Origin; readonly findings?: readonly Finding[] } = {}
+  ): ChemistryGroup => ({
+    key,
+    title,
+    question,
+    members,
+    names: members.map(({ name }) => name),
+    findings: more.findings ?? [],
+    ...(more.origin ?? practice)
+  });
+  const phText = `from pH ${low} to ${high}`;
+  return [
+    group(
+      'neutral',
+      `Neutral ${phText}`,
+      'A reversed phase should hold them, the less the more hydrophilic they are. Does any other analyte decide the pH?',
+      byCharge('neutral')
+    ),
+    group(
+      'acid',
+      'Acids',
+      `Acidified they are neutral. Does the sorbent stand a pH at which ${percent} of them is, or would an anion exchanger serve better?`,
+      byCharge('acid'),
+      { findings: [silicaLimit, acidsAcid] }
+    ),
+    group(
+      'base',
+      'Bases',
+      `Made alkaline they are neutral. Does the sorbent stand a pH at which ${percent} of them is, or would a cation exchanger serve better?`,
+      byCharge('base'),
+      { findings: [silicaLimit, basesBasic] }
+    ),
+    group(
+      'both',
+      'Acid and base at once',
+      'Between their groups they may carry both charges. Is there a pH at which a phase holds one of them, and the other does not push away?',
+      byCharge('both')
+    ),
+    group(
+      'charged',
+      `Charged ${phText}`,
+      'No pH of this range makes them neutral. Would an ion exchanger hold them, and what releases them again?',
+      byCharge('charged')
+    ),
+    group(
+      'hydrophilic',
+      'Very hydrophilic, log Kow below 0',
+      'They may break through early. Is the sample volume too large, or a second cartridge of another kind needed?',
+      byKow((logKow) => logKow < hydrophilicLogKow)
+    ),
+    group(
+      'hydrophobic',
+      'Very hydrophobic, log Kow above 5',
+      'They cling to glass and to suspended matter. Is the bottle rinsed, and the filter measured?',
+      byKow((logKow) => logKow > hydrophobicLogKow)
+    ),
+    group(
+      'volatile',
+      'Volatile',
+      'They may leave with the solvent while it is concentrated. How far down, and how warm?',
+      evaporating.map(({ member }) => member),
+      { findings: volatileFindings(evaporating) }
+    ),
+    group(
+      'unknown',
+      'Not known',
+      'Nothing can be said of their charge. Who has their pKa and log Kow?',
+      byCharge('unknown')
+    )
+  ].filter(({ members }) => members.length > 0);
+}
+
+const silicaLimit: Finding = {
+  text: 'Bonded silica stands pH 2 to 9.',
+  evidence: 'Below and above, it hydrolyses.',
+  ...documents.solidPhase('4.3')
+};
+const acidsAcid: Finding = {
+  text: 'Phenols are extracted from acid.',
+  evidence: 'Named among what needs care.',
+  ...documents.gcMs('1.4.8')
+};
+const basesBasic: Finding = {
+  text: 'Aniline and pyridine are extracted from alkaline water.',
+  evidence: 'Named among what needs care.',
+  ...documents.gcMs('1.4.8')
+};
+
+function placeByCharge(analyte: PanelAnalyte, range: PhRange, share: number): Placed {
+  const charge = knownCharge(analyte);
+  if (!charge.known) return { key: 'unknown', evidence: charge.why };
+  const { groups, hasPka } = charge;
+  if (groups.permanentCharge !== 0) {
+    return { key: 'charged', evidence: `permanent charge ${signed(groups.permanentCharge, true)}` };
+  }
+  if (!hasPka) return { key: 'neutral', evidence: 'no pKa on file, taken to have no group' };
+  const values = pkaText(analyte);
+  const neutral = phWindows(groups, 'neutral', share, range)[0];
+  if (neutral && !neutral.lowIsEdge && !neutral.highIsEdge) return { key: 'neutral', evidence: values };
+  const percent = `${Number((100 * share).toPrecision(4))} %`;
+  if (neutral)
+    return { key: keyOf(neutral), evidence: `${values}; ${percent} neutral ${windowText(neutral)}` };
+  const bothKinds = groups.acids.length > 0 && groups.bases.length > 0;
+  const whole = phWindows(groups, 'charged', share, range)[0];
+  const always = whole !== undefined && !whole.lowIsEdge && !whole.highIsEdge;
+  if (always && !bothKinds) {
+    return { key: 'charged', evidence: `${values}; at least ${percent} charged throughout` };
+  }
+  return {
+    key: bothKinds ? 'both' : groups.acids.length > 0 ? 'acid' : 'base',
+    evidence: `${values}; nowhere ${percent} neutral in this range${always ? ', charged throughout' : ''}`
+  };
+}
+
+function keyOf({ lowIsEdge, highIsEdge }: PhWindow): ChargeKey {
+  return lowIsEdge && highIsEdge ? 'both' : highIsEdge ? 'acid' : 'base';
+}
+
+/** Rounded towards the inside, so that the pH that is read off keeps the promise. */
+function windowText({ low, high, lowIsEdge, highIsEdge }: PhWindow): string {
+  const from = (Math.ceil(low * 100) / 100).toFixed(2);
+  const to = (Math.floor(high * 100) / 100).toFixed(2);
+  return lowIsEdge && highIsEdge
+    ? `from pH ${from} to ${to}`
+    : highIsEdge
+      ? `below pH ${to}`
+      : `above pH ${from}`;
+}
+
+function pkaText({ pkaAcid, pkaBase }: PanelAnalyte): string {
+  const list = (values: readonly number[]) => values.map((value) => signed(value)).join(', ');
+  return [
+    ...(pkaAcid.length > 0 ? [`acid pKa ${list(pkaAcid)}`] : []),
+    ...(pkaBase.length > 0 ? [`base pKa ${list(pkaBase)}`] : [])
+  ].join(', ');
+}
+
+function signed(value: number, withPlus = false): string {
+  const digits = String(Number(Math.abs(value).toPrecision(12)));
+  return value < 0 ? `\u2212${digits}` : withPlus ? `+${digits}` : digits;
+}
+
+type Evaporating = { readonly member: GroupMember; readonly volatility: Volatility };
+
+function evaporatingMember(analyte: PanelAnalyte, finalVolumeMl: number | null): readonly Evaporating[] {
+  const { id, name, boilingPointC, henryPaM3Mol, vapourPressurePa = null } = analyte;
+  let found: Volatility;
+  try {
+    found = volatility({ boilingPointC, henryPaM3Mol, vapourPressurePa }, finalVolumeMl);
+  } catch (error) {
+    // A value that cannot be is no evidence; the library's own page shows it.
+    if (error instanceof ChemistryError) return [];
+    throw error;
+  }
+  const evaporates = found.level === 'high' || found.level === 'some';
+  if (!evaporates && !found.leavesWater) return [];
+  return [{ member: { id, name, evidence: found.reasons.join(', ') }, volatility: found }];
+}
+
+/** What the most volatile one asks, and what leaving water asks where any does; each text once. */
+function volatileFindings(evaporating: readonly Evaporating[]): readonly Finding[] {
+  const first = (is: (found: Volatility) => boolean) =>
+    evaporating.find(({ volatility: found }) => is(found))?.volatility.findings ?? [];
+  const byLevel = first(({ level }) => level === 'high');
+  const all = [
+    ...(byLevel.length > 0 ? byLevel : first(({ level }) => level === 'some')),
+    ...first(({ leavesWater, level }) => leavesWater && level !== 'unknown')
+  ];
+  return [...new Map(all.map((finding) => [finding.text, finding])).values()];
+}
