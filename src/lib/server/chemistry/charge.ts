@@ -138,14 +138,16 @@ export function chargeStates(groups: ChargeGroups, ph: number): readonly ChargeS
  * @throws ChemistryError as {@link fractionNeutral}
  */
 export function meanCharge(groups: ChargeGroups, ph: number): number {
-  const { acids, bases, permanentCharge } = checkedGroups(groups);
-  const sum = (shares: readonly number[]) => shares.reduce((total, share) => total + share, 0);
-  phOf(ph);
-  return (
-    permanentCharge +
-    sum(bases.map((pka) => ionisedBase(pka, ph))) -
-    sum(acids.map((pka) => ionisedAcid(pka, ph)))
-  );
+  const checked = checkedGroups(groups);
+  return checked.permanentCharge + chargeOfGroups(checked, phOf(ph));
+}
+
+/** Mean charge of the groups alone, for checked ones: falls with pH, and is the slope of ln f_n over ln 10. */
+export function chargeOfGroups({ acids, bases }: ChargeGroups, ph: number): number {
+  let charge = 0;
+  for (const pka of bases) charge += 1 / (1 + 10 ** (ph - pka));
+  for (const pka of acids) charge -= 1 / (1 + 10 ** (pka - ph));
+  return charge;
 }
 
 /**

@@ -40,7 +40,7 @@ export async function drawStructure(smiles: string, drawing: StructureDrawing): 
   const width = within(drawing.width ?? 240, 'The width', 20, 2000);
   const height = within(drawing.height ?? 180, 'The height', 20, 2000);
   const library = await loadLibrary();
-  const drawn = openMolecule(library, smiles).toSVG(width, height, undefined, plainly);
+  const drawn = openMolecule(library, smiles, 'whole').toSVG(width, height, undefined, plainly);
   const view = /<svg[^>]*\sviewBox="([-\d.\s]+)"/.exec(drawn)?.[1]?.trim();
   const [, , viewWidth, viewHeight] = view?.split(/\s+/) ?? [];
   if (view === undefined || viewWidth === undefined || viewHeight === undefined) {

@@ -25,6 +25,7 @@ export {
 export { drawStructure, type StructureDrawing } from './draw-structure';
 export { ChemistryError, type ChemistryErrorCode } from './errors';
 export type { Finding, Origin, SourcedRange, Standing } from './evidence';
+export type { IonisableGroup } from './ionisable-groups';
 export { logD, type LogD } from './log-d';
 export type { PanelAnalyte } from './panel-analyte';
 export {
@@ -35,7 +36,7 @@ export {
   type GroupingOptions
 } from './panel-groups';
 export { neutralShareOf, readPasses, type Pass, type PassReading } from './passes';
-export { phWindows, type ChargeCondition, type PhRange, type PhWindow } from './ph-windows';
+export { mostNeutral, phWindows, type ChargeCondition, type PhRange, type PhWindow } from './ph-windows';
 export {
   estimateBreakthrough,
   retentionVolumeMl,

@@ -1,6 +1,7 @@
 import { checkedGroups, lnUncharged, type ChargeGroups } from './charge';
 import { fromMemory, type Finding } from './evidence';
 import { logKowOf, phOf } from './guards';
+import { shortText } from './text';
 
 export interface LogD {
   /** null where a permanent charge leaves no neutral share to partition. */
@@ -38,11 +39,9 @@ export function logD(logKow: number, groups: ChargeGroups, ph: number): LogD {
     caution: low
       ? {
           text: 'Hardly anything is neutral at this pH. Ion pairs may partition more than this figure says: what counter-ions does the sample bring?',
-          evidence: `Ion pairs usually hold the distribution 3 to 4 log units below log Kow, here between ${text(ionPairFloor.low)} and ${text(ionPairFloor.high)}.`,
+          evidence: `Ion pairs usually hold the distribution 3 to 4 log units below log Kow, here between ${shortText(ionPairFloor.low)} and ${shortText(ionPairFloor.high)}.`,
           ...fromMemory('ion-pair floor')
         }
       : null
   };
 }
-
-const text = (value: number) => String(Number(value.toFixed(2))).replace('-', '\u2212');

@@ -15,12 +15,15 @@ const unreadable = (smiles: string, why: string): ChemistryError => {
   return new ChemistryError('unreadable-structure', `'${shown}' cannot be read as SMILES: ${why}.`);
 };
 
+/** With stereochemistry and coordinates for drawing and comparing; without them reading is far quicker. */
+export type Detail = 'whole' | 'flat';
+
 /**
- * The molecule that a SMILES describes.
+ * The molecule that a SMILES describes, with rings and aromatic atoms found.
  * @throws ChemistryError `unreadable-structure` with what is wrong and where: no text, white space, unknown atoms, open rings,
  * placeholders, too many bonds at an atom, unpaired electrons, more than 150 atoms
  */
-export function openMolecule({ Molecule: Molecules }: Library, typed: string): Molecule {
+export function openMolecule({ Molecule: Molecules }: Library, typed: string, detail: Detail): Molecule {
   const smiles = typeof typed === 'string' ? typed.trim() : '';
   if (smiles === '') throw unreadable('', 'there is no text');
   if (smiles.length > longest)
@@ -28,12 +31,12 @@ export function openMolecule({ Molecule: Molecules }: Library, typed: string): M
   const space = smiles.search(/\s/);
   if (space >= 0)
     throw unreadable(smiles, `there is a space at position ${space + 1}; give the structure alone`);
-  const molecule = parsed(Molecules, smiles);
+  const molecule = parsed(Molecules, smiles, detail);
   const atoms = molecule.getAllAtoms();
   if (atoms === 0) throw unreadable(smiles, 'it has no atoms');
   if (atoms > mostAtoms) throw unreadable(smiles, `it has ${atoms} atoms, at most ${mostAtoms}`);
   if (molecule.isFragment()) throw unreadable(smiles, 'it holds a placeholder or a bond of any kind');
-  molecule.ensureHelperArrays(Molecules.cHelperNeighbours);
+  molecule.ensureHelperArrays(Molecules.cHelperRings);
   for (let atom = 0; atom < atoms; atom += 1) {
     const label = molecule.getAtomLabel(atom);
     if (molecule.getOccupiedValence(atom) > molecule.getMaxValence(atom)) {
@@ -42,16 +45,17 @@ export function openMolecule({ Molecule: Molecules }: Library, typed: string): M
     if (molecule.getAtomRadical(atom) !== 0) {
       throw unreadable(
         smiles,
-        `atom ${atom + 1} (${label}) is left with an unpaired electron; is a hydrogen or a charge missing?`
+        `atom ${atom + 1} (${label}) is left with an unpaired electron (is a hydrogen or a charge missing?)`
       );
     }
   }
   return molecule;
 }
 
-function parsed(Molecules: Library['Molecule'], smiles: string): Molecule {
+function parsed(Molecules: Library['Molecule'], smiles: string, detail: Detail): Molecule {
+  const flat = detail === 'flat';
   try {
-    return Molecules.fromSmiles(smiles);
+    return Molecules.fromSmiles(smiles, { noCoordinates: flat, noStereo: flat });
   } catch (error) {
     const said = error instanceof Error ? error.message : '';
     throw unreadable(

@@ -1,8 +1,10 @@
+import { givenText } from '../../domain/given-text';
 import { documents, practice, type Finding, type Origin } from './evidence';
 import { knownCharge, type PanelAnalyte } from './panel-analyte';
-import { checkedRange, phWindows, type PhRange, type PhWindow } from './ph-windows';
+import { checkedRange, mostNeutral, phWindows, type PhRange, type PhWindow } from './ph-windows';
 import { notNegative, share as checkedShare } from './guards';
 import { workingRanges } from './sorbents';
+import { shareText, shortText } from './text';
 import { ChemistryError } from './errors';
 import { volatility, type Volatility } from './volatility';
 
@@ -69,11 +71,11 @@ export function chemistryGroups(
   const byKow = (is: (logKow: number) => boolean): readonly GroupMember[] =>
     analytes.flatMap(({ id, name, logKow, logKowIsPredicted }) =>
       logKow !== null && is(logKow)
-        ? [{ id, name, evidence: `log Kow ${signed(logKow)}${logKowIsPredicted ? ', predicted' : ''}` }]
+        ? [{ id, name, evidence: `log Kow ${givenText(logKow)}${logKowIsPredicted ? ', predicted' : ''}` }]
         : []
     );
   const evaporating = analytes.flatMap((analyte) => evaporatingMember(analyte, finalVolumeMl));
-  const percent = `${Number((100 * share).toPrecision(4))} %`;
+  const percent = shareText(share);
   const group = (
     key: ChemistryGroupKey,
     title: string,
@@ -170,27 +172,34 @@ const basesBasic: Finding = {
 function placeByCharge(analyte: PanelAnalyte, range: PhRange, share: number): Placed {
   const charge = knownCharge(analyte);
   if (!charge.known) return { key: 'unknown', evidence: charge.why };
-  const { groups, hasPka } = charge;
+  const { groups, hasPka, possible } = charge;
   if (groups.permanentCharge !== 0) {
-    return { key: 'charged', evidence: `permanent charge ${signed(groups.permanentCharge, true)}` };
+    const sign = groups.permanentCharge > 0 ? '+' : '';
+    return { key: 'charged', evidence: `permanent charge ${sign}${givenText(groups.permanentCharge)}` };
   }
-  if (!hasPka) return { key: 'neutral', evidence: 'no pKa on file, taken to have no group' };
-  const values = pkaText(analyte);
+  const unsure = possible.length > 0 ? `; the structure shows ${possible.join(' and ')} without a pKa` : '';
+  if (!hasPka) return { key: 'neutral', evidence: `no pKa on file, taken to have no group${unsure}` };
+  const values = `${pkaText(analyte)}${unsure}`;
   const neutral = phWindows(groups, 'neutral', share, range)[0];
   if (neutral && !neutral.lowIsEdge && !neutral.highIsEdge) return { key: 'neutral', evidence: values };
-  const percent = `${Number((100 * share).toPrecision(4))} %`;
+  const percent = shareText(share);
   if (neutral)
     return { key: keyOf(neutral), evidence: `${values}; ${percent} neutral ${windowText(neutral)}` };
   const bothKinds = groups.acids.length > 0 && groups.bases.length > 0;
-  const whole = phWindows(groups, 'charged', share, range)[0];
-  const always = whole !== undefined && !whole.lowIsEdge && !whole.highIsEdge;
-  if (always && !bothKinds) {
+  const most = mostNeutral(groups, range);
+  if (most.share <= 1 - share && !bothKinds) {
     return { key: 'charged', evidence: `${values}; at least ${percent} charged throughout` };
   }
   return {
     key: bothKinds ? 'both' : groups.acids.length > 0 ? 'acid' : 'base',
-    evidence: `${values}; nowhere ${percent} neutral in this range${always ? ', charged throughout' : ''}`
+    evidence: `${values}; ${mostText(most.share)} neutral at the most, at pH ${shortText(most.ph)}`
   };
+}
+
+/** Cut and not rounded: 98.97 % must not read as 99 %. */
+function mostText(share: number): string {
+  const percent = Math.floor(1000 * share) / 10;
+  return percent < 0.1 ? 'less than 0.1 %' : `${givenText(percent)} %`;
 }
 
 function keyOf({ lowIsEdge, highIsEdge }: PhWindow): ChargeKey {
@@ -209,16 +218,11 @@ function windowText({ low, high, lowIsEdge, highIsEdge }: PhWindow): string {
 }
 
 function pkaText({ pkaAcid, pkaBase }: PanelAnalyte): string {
-  const list = (values: readonly number[]) => values.map((value) => signed(value)).join(', ');
+  const list = (values: readonly number[]) => values.map(givenText).join(', ');
   return [
     ...(pkaAcid.length > 0 ? [`acid pKa ${list(pkaAcid)}`] : []),
     ...(pkaBase.length > 0 ? [`base pKa ${list(pkaBase)}`] : [])
   ].join(', ');
-}
-
-function signed(value: number, withPlus = false): string {
-  const digits = String(Number(Math.abs(value).toPrecision(12)));
-  return value < 0 ? `\u2212${digits}` : withPlus ? `+${digits}` : digits;
 }
 
 type Evaporating = { readonly member: GroupMember; readonly volatility: Volatility };
@@ -233,8 +237,10 @@ function evaporatingMember(analyte: PanelAnalyte, finalVolumeMl: number | null):
     if (error instanceof ChemistryError) return [];
     throw error;
   }
-  const evaporates = found.level === 'high' || found.level === 'some';
-  if (!evaporates && !found.leavesWater) return [];
+  // What leaves water and yet boils high stays in the extract.
+  const may =
+    found.level === 'high' || found.level === 'some' || (found.level === 'unknown' && found.leavesWater);
+  if (!may) return [];
   return [{ member: { id, name, evidence: found.reasons.join(', ') }, volatility: found }];
 }
 

@@ -2,6 +2,7 @@ import { fractionNeutral } from './charge';
 import { knownCharge, type PanelAnalyte } from './panel-analyte';
 import { checkedRange, phWindows, type PhRange, type PhWindow } from './ph-windows';
 import { share as checkedShare } from './guards';
+import { shareText } from './text';
 
 /** One pass: a pH, the stretch around it that serves as many, and the analytes that are neutral there. */
 export interface Pass {
@@ -135,10 +136,11 @@ function rankOf(phs: readonly number[], windows: Windows): readonly number[] {
   let count = 0;
   let least = Infinity;
   for (const window of windows) {
-    const rooms = phs.flatMap((ph) => (window !== null && holds(window, ph) ? [room(window, ph)] : []));
-    if (rooms.length === 0) continue;
+    let most = -1;
+    for (const ph of phs) if (window !== null && holds(window, ph)) most = Math.max(most, room(window, ph));
+    if (most < 0) continue;
     count += 1;
-    least = Math.min(least, Math.max(...rooms));
+    least = Math.min(least, most);
   }
   return [count, least, -phs.reduce((sum, ph) => sum + Math.abs(ph - 7), 0)];
 }
@@ -169,7 +171,7 @@ function servedBy(ph: number, tried: readonly number[], windows: Windows): PhRan
 
 function sentencesOf(reading: Omit<PassReading, 'sentences'>): readonly string[] {
   const { judged, one, two, never, unknown, range } = reading;
-  const percent = `${Number((100 * reading.share).toPrecision(4))} %`;
+  const percent = shareText(reading.share);
   const sentences: string[] = [];
   if (judged === 0) sentences.push('Of no analyte of this panel is the charge known.');
   else if (one === null) {
@@ -188,9 +190,10 @@ function sentencesOf(reading: Omit<PassReading, 'sentences'>): readonly string[]
       sentences.push('A second pass at another pH gains none.');
     }
   }
-  if (never.length > 0) {
+  if (never.length > 0 && one !== null) {
+    const whose = never.length === 1 ? 'it' : 'them';
     sentences.push(
-      `${never.length} ${never.length === 1 ? 'is' : 'are'} neutral at no pH from ${range.low} to ${range.high}. Would an ion exchanger hold ${never.length === 1 ? 'it' : 'them'}?`
+      `${never.length} ${never.length === 1 ? 'reaches' : 'reach'} that at no pH from ${range.low} to ${range.high}. Would an ion exchanger hold ${whose}, or a sorbent that stands more?`
     );
   }
   if (unknown.length > 0) {

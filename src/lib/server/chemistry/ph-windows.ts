@@ -1,4 +1,4 @@
-import { chargeShares, checkedGroups, lnUncharged, meanCharge, type ChargeGroups } from './charge';
+import { chargeOfGroups, chargeShares, checkedGroups, lnUncharged, type ChargeGroups } from './charge';
 import { ChemistryError } from './errors';
 import { lastWhere } from './find-edge';
 import { oneOf, phOf, share as checkedShare } from './guards';
@@ -55,6 +55,21 @@ export function phWindows(
     : insideOf(holds, low, turn ?? (holds(low) ? low : high), high);
 }
 
+/**
+ * The pH of the range at which most of the molecules are neutral, and their share there. Where it is flat (no groups) the lower end.
+ * @returns share 0 where a permanent charge leaves none
+ * @throws ChemistryError for a range that is not in order, or groups as in `fractionNeutral`
+ */
+export function mostNeutral(
+  groups: ChargeGroups,
+  range: PhRange
+): { readonly ph: number; readonly share: number } {
+  const checked = checkedGroups(groups);
+  const { low, high } = checkedRange(range);
+  const ph = peakOf(checked, low, high);
+  return { ph, share: checked.permanentCharge === 0 ? Math.exp(lnUncharged(checked, ph)) : 0 };
+}
+
 function claim(groups: Required<ChargeGroups>, condition: ChargeCondition, share: number) {
   if (condition === 'cation' || condition === 'anion') {
     return (ph: number) => chargeShares(groups, ph)[condition] >= share;
@@ -66,7 +81,7 @@ function claim(groups: Required<ChargeGroups>, condition: ChargeCondition, share
 
 /** The pH of the range at which the neutral share is largest: where the mean charge passes zero, or an end. */
 function peakOf(groups: Required<ChargeGroups>, low: number, high: number): number {
-  const rising = (ph: number) => meanCharge({ ...groups, permanentCharge: 0 }, ph) > 0;
+  const rising = (ph: number) => chargeOfGroups(groups, ph) > 0;
   if (!rising(low)) return low;
   return rising(high) ? high : lastWhere(rising, low, high);
 }

@@ -1,3 +1,4 @@
+import { givenText } from '../../domain/given-text';
 import { bedVolumeMl } from './bed';
 import { breakthroughLoss, breakthroughVolumeRatio } from './breakthrough';
 import { fractionNeutral, type ChargeGroups } from './charge';
@@ -10,6 +11,7 @@ import {
   reversedPhases,
   type ReversedPhase
 } from './sorbents';
+import { shortText } from './text';
 
 /**
  * Retention volume of a bed: V_R = V_M (1 + k).
@@ -124,18 +126,14 @@ function cautionsOf(phase: ReversedPhase, neutralFraction: number): readonly Fin
     },
     {
       text: 'Retention, hold-up and plates are quoted ranges. What does the sheet of the sorbent say?',
-      evidence:
-        `Retention factor in water within ${retentionOverKow[phase].low} to ${retentionOverKow[phase].high} log units of log Kow, ${holdUpPerMass.low} µL of hold-up per mg${phase === 'polymer' ? ' (known for C18 only)' : ''}, ${cartridgePlates.low} to ${cartridgePlates.high} plates.`.replaceAll(
-          '-',
-          '\u2212'
-        ),
+      evidence: `log k in water ${givenText(retentionOverKow[phase].low)} to ${givenText(retentionOverKow[phase].high)} above log Kow, ${holdUpPerMass.low} µL of hold-up per mg${phase === 'polymer' ? ' (known for C18 only)' : ''}, ${cartridgePlates.low} to ${cartridgePlates.high} plates.`,
       ...fromMemory()
     }
   ];
   if (neutralFraction < 0.99) {
     cautions.push({
       text: 'Part of it is charged at this pH and taken as not held at all. Does a secondary interaction or an ion pair hold some of it?',
-      evidence: `Neutral share ${neutralFraction < 0.001 ? 'below 0.1' : (100 * neutralFraction).toPrecision(3)} %.`,
+      evidence: `Neutral share ${neutralFraction < 0.001 ? 'below 0.1' : shortText(100 * neutralFraction)} %.`,
       ...fromMemory('neutral share only')
     });
   }

@@ -1,3 +1,5 @@
+import { ionisableGroupsOf, type IonisableGroup } from './ionisable-groups';
+import { atomCounts, hillFormula, molarMassOf } from './molecular-formula';
 import { loadLibrary, openMolecule } from './open-molecule';
 import type { Molecule } from 'openchemlib';
 
@@ -17,6 +19,8 @@ export interface Structure {
   readonly permanentCharge: number;
   /** Separate parts: more than one in salts, hydrates and mixtures. */
   readonly parts: number;
+  /** Groups that can gain or lose a proton, each kind once: where the library has no pKa of the kind, one is missing. */
+  readonly ionisable: readonly IonisableGroup[];
   /** The same for every way to write one structure, with its stereochemistry. For comparing, not for reading. */
   readonly canonical: string;
   /** The same without stereochemistry: two isomers share it. */
@@ -38,8 +42,9 @@ const carbon = 6;
  */
 export async function readStructure(smiles: string): Promise<Structure> {
   const library = await loadLibrary();
-  const molecule = openMolecule(library, smiles);
+  const molecule = openMolecule(library, smiles, 'flat');
   const { formula, relativeWeight, absoluteWeight } = molecule.getMolecularFormula();
+  const counts = atomCounts(formula);
   const part = partsOf(molecule);
   const parts = Math.max(...part) + 1;
   const formalCharge = part.reduce((sum, _, atom) => sum + molecule.getAtomCharge(atom), 0);
@@ -49,21 +54,30 @@ export async function readStructure(smiles: string): Promise<Structure> {
     formalCharge === 0 &&
     permanentCharge === 0 &&
     part.some((_, atom) => molecule.getAtomicNo(atom) === carbon);
-  const canonical = molecule.getIDCode();
-  const flat = molecule.getCompactCopy();
-  flat.stripStereoInformation();
+  const predicted = isPlain ? logPOf(new library.MoleculeProperties(molecule).logP) : null;
+  const ionisable = ionisableGroupsOf(molecule);
+  const isLabelled = part.some(
+    (_, atom) => molecule.getAtomicNo(atom) > 1 && molecule.getAtomMass(atom) !== 0
+  );
+  molecule.stripStereoInformation();
+  const canonicalFlat = molecule.getIDCode();
   return {
-    formula,
-    molarMass: relativeWeight,
+    formula: hillFormula(counts),
+    // The library rounds some weights (iodine to 126.9); it alone knows those of heavier isotopes.
+    molarMass: (isLabelled ? null : molarMassOf(counts)) ?? relativeWeight,
     monoisotopicMass: absoluteWeight,
-    predictedLogP: isPlain ? logPOf(new library.MoleculeProperties(molecule).logP) : null,
+    predictedLogP: predicted,
     formalCharge,
     permanentCharge,
     parts,
-    canonical,
-    canonicalFlat: flat.getIDCode()
+    ionisable,
+    canonical: stereoMarks.test(smiles) ? openMolecule(library, smiles, 'whole').getIDCode() : canonicalFlat,
+    canonicalFlat
   };
 }
+
+/** Signs by which a SMILES tells stereochemistry; without them the whole form is the flat one. */
+const stereoMarks = /[@/\\]/;
 
 /** The library answers -999 where an atom has no contribution. */
 const logPOf = (value: number): number | null => (value > -900 ? value : null);

@@ -1,5 +1,6 @@
 import { documents, practice, type Finding } from './evidence';
 import { notNegative, within } from './guards';
+import { shortText } from './text';
 
 /** What is known of how readily a substance leaves. null where the library does not say. */
 export interface VolatileProperties {
@@ -64,18 +65,16 @@ export function volatility(properties: VolatileProperties, finalVolumeMl: number
 
 function reasonsOf({ vapourPressurePa, boilingPointC, henryPaM3Mol }: VolatileProperties): readonly string[] {
   return [
-    ...(vapourPressurePa === null ? [] : [`Vapour pressure ${figure(vapourPressurePa)} Pa`]),
-    ...(boilingPointC === null ? [] : [`Boiling point ${figure(boilingPointC)} °C`]),
-    ...(henryPaM3Mol === null ? [] : [`Henry constant ${figure(henryPaM3Mol)} Pa·m³/mol`])
+    ...(vapourPressurePa === null ? [] : [`Vapour pressure ${shortText(vapourPressurePa)} Pa`]),
+    ...(boilingPointC === null ? [] : [`Boiling point ${shortText(boilingPointC)} °C`]),
+    ...(henryPaM3Mol === null ? [] : [`Henry constant ${shortText(henryPaM3Mol)} Pa·m³/mol`])
   ];
 }
-
-const figure = (value: number) => String(Number(value.toPrecision(3))).replaceAll('-', '\u2212');
 
 function evaporation(level: Volatility['level'], finalVolumeMl: number | null): readonly Finding[] {
   if (level === 'unknown') return [unknown];
   if (level === 'low') return [];
-  const planned = finalVolumeMl === null ? '' : ` Planned here: ${figure(finalVolumeMl)} mL.`;
+  const planned = finalVolumeMl === null ? '' : ` Planned here: ${shortText(finalVolumeMl)} mL.`;
   return [
     ...(level === 'high' ? [named, coolEnough] : []),
     {
@@ -122,7 +121,7 @@ const unknown: Finding = {
 function fromWater(henryPaM3Mol: number): Finding {
   return {
     text: 'It leaves water for air. Is the bottle filled to the top, and little air drawn through the wet bed?',
-    evidence: `Henry constant ${figure(henryPaM3Mol)} Pa·m³/mol, above ${henryLimit}.`,
+    evidence: `Henry constant ${shortText(henryPaM3Mol)} Pa·m³/mol, above ${henryLimit}.`,
     ...practice
   };
 }
