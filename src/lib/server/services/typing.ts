@@ -88,7 +88,7 @@ function gridColumns(expectation: Expectation, basis: ReportedBasis): TypingColu
   const entries = expectation.panel.flatMap(({ id, name, role }): TypingColumn[] => {
     const isStandard = role === 'injection internal standard';
     if (isStandard && basis !== 'area') return [];
-    const unit = basis === 'area' ? 'area' : basis === 'ng' ? 'ng' : basis === 'vial' ? 'ng/mL' : 'ng/L';
+    const unit = basis === 'area' ? null : basis === 'ng' ? 'ng' : basis === 'vial' ? 'ng/mL' : 'ng/L';
     return [{ key: id, label: name, unit, kind: isStandard ? 'internal standard' : 'value' }];
   });
   return [...vial, ...entries];
