@@ -88,7 +88,7 @@ test('an error is told at its cell; mended, what was typed is stored and read', 
   const row = analyst
     .getByRole('table', { name: /Mass balance/ })
     .getByRole('row', { name: /Carbamazepine/ });
-  await expect(row.getByRole('cell').nth(1)).toHaveText('84');
+  await expect(row.getByRole('cell').nth(1)).toHaveText('84.0');
 
   await analyst.goto(`${study.base}/experiments/1/type`);
   await expect(analyst.getByText('6 values of this experiment are stored already')).toBeVisible();

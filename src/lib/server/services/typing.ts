@@ -240,9 +240,7 @@ function atCells(problems: readonly Problem[], { places }: TypedFile): TypingChe
     if (problem.severity !== 'error') continue;
     const place = problem.cell === null ? undefined : places.get(problem.cell);
     if (place === undefined) other.push(`${problem.message} ${problem.fix}`);
-    else
-      errors[place] ??=
-        `holds “${problem.found.replace(/^“|”$/g, '')}”, expected ${problem.expected}. ${problem.fix}`;
+    else errors[place] ??= `holds “${problem.found.replace(/^“|”$/g, '')}”, expected ${problem.expected}.`;
   }
   return { errors, other };
 }
