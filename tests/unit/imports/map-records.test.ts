@@ -87,7 +87,8 @@ describe('the long layout', () => {
         finalVolumeMl: 0.5,
         dilution: null,
         aliquotShare: null,
-        acquiredAt: null
+        acquiredAt: null,
+        qualifiers: null
       },
       {
         sheet: 'Table',
@@ -109,7 +110,8 @@ describe('the long layout', () => {
         finalVolumeMl: 1,
         dilution: null,
         aliquotShare: null,
-        acquiredAt: null
+        acquiredAt: null,
+        qualifiers: null
       }
     ]);
     expect(mapped.reading.sheets).toMatchObject([
@@ -142,7 +144,7 @@ describe('the long layout', () => {
 
   it('reads titles above the header and further columns, and says what it leaves out', () => {
     const mapped = map(
-      `Areas of the week\n\nSample | Fraction | Analyte | Area | Final volume (mL) | Retention time\nS1|Elution 1|Caffeine|7|1|5.5`
+      `Areas of the week\n\nSample | Fraction | Analyte | Area | Final volume (mL) | Peak height\nS1|Elution 1|Caffeine|7|1|5.5`
     );
     expect(values(mapped)).toEqual([['D4', 7]]);
     expect(codes(mapped)).toEqual(['note column not used F3']);

@@ -18,6 +18,13 @@ export function columnLetters(column: number): string {
   return letters;
 }
 
+/** "Columns A and B", or, where a sheet is read turned, "Rows 1 and 2". */
+export function linesInWords(isTurned: boolean, first: number, second: number): string {
+  return isTurned
+    ? `Rows ${first + 1} and ${second + 1}`
+    : `Columns ${columnLetters(first)} and ${columnLetters(second)}`;
+}
+
 /** @returns zero-based row and column, or null for what is no address */
 export function parseAddress(address: string): { readonly row: number; readonly column: number } | null {
   let column = 0;

@@ -1,5 +1,5 @@
 import type { DraftRecord } from './map-sheet';
-import type { ProblemList } from './problems';
+import type { Problems } from './problems';
 import type { PanelExpectation } from './types';
 
 /** The rows of one check that the file numbers alike (or not at all), which may be several injections. */
@@ -22,7 +22,7 @@ interface CheckRows {
 export function numberedChecks(
   drafts: readonly DraftRecord[],
   panel: ReadonlyMap<string, PanelExpectation>,
-  problems: ProblemList
+  problems: Problems
 ): readonly DraftRecord[] {
   const groups = new Map<string, CheckRows>();
   for (const draft of drafts) {
@@ -63,13 +63,13 @@ function byTime({ drafts }: CheckRows): ReadonlyMap<DraftRecord, string> {
 function byOccurrence(
   { name, drafts }: CheckRows,
   panel: ReadonlyMap<string, PanelExpectation>,
-  problems: ProblemList
+  problems: Problems
 ): ReadonlyMap<DraftRecord, string> {
   const seen = new Map<string, number>();
   const runs = new Map<DraftRecord, string>();
   const rows = new Map<string, DraftRecord[]>();
   for (const draft of drafts) {
-    const row = `${draft.sheet} ${draft.row}`;
+    const row = `${draft.sheet} ${draft.line}`;
     const known = rows.get(row);
     if (known) known.push(draft);
     else rows.set(row, [draft]);

@@ -1,12 +1,9 @@
 import { cellAddress } from './cell-address';
 import { numberedChecks } from './check-injections';
 import type { DraftRecord } from './map-sheet';
-import type { ProblemList } from './problems';
+import type { Problems } from './problems';
 import type { Expectation, PanelExpectation } from './types';
 import { expectedWords } from './value-words';
-
-/** Where the final volume stands in a sheet, so that a missing one can be pointed at; null: there is no such column. */
-export type VolumeColumn = (sheet: string) => number | null;
 
 /**
  * The checks that look at several rows at once. Properties of an extract (final volume, aliquot share) and of an injection
@@ -18,8 +15,7 @@ export type VolumeColumn = (sheet: string) => number | null;
 export function checkRecords(
   drafts: readonly DraftRecord[],
   expectation: Expectation,
-  volumeColumn: VolumeColumn,
-  problems: ProblemList
+  problems: Problems
 ): readonly DraftRecord[] {
   const panel = new Map(expectation.panel.map((entry) => [entry.id, entry]));
   const records = withoutRepeats(numberedChecks(drafts, panel, problems), panel, problems);
@@ -28,7 +24,7 @@ export function checkRecords(
   shareWithin(records, injectionKey, 'dilution', 'dilution', problems);
   dropWhatBasisTakesNot(records, problems);
   linkInternalStandards(records, panel, problems);
-  checkVolumes(records, expectation, panel, volumeColumn, problems);
+  checkVolumes(records, expectation, panel, problems);
   checkLimits(records, panel, problems);
   return records;
 }
@@ -51,7 +47,7 @@ function injectionKey(record: DraftRecord): string {
 function withoutRepeats(
   drafts: readonly DraftRecord[],
   panel: ReadonlyMap<string, PanelExpectation>,
-  problems: ProblemList
+  problems: Problems
 ): readonly DraftRecord[] {
   const first = new Map<string, DraftRecord>();
   return drafts.filter((draft) => {
@@ -81,7 +77,7 @@ function shareWithin(
   keyOf: (record: DraftRecord) => string,
   property: 'finalVolumeMl' | 'aliquotShare' | 'dilution',
   called: string,
-  problems: ProblemList
+  problems: Problems
 ): void {
   const given = new Map<string, { value: number; record: DraftRecord }>();
   for (const record of records) {
@@ -106,7 +102,7 @@ function shareWithin(
 }
 
 /** Amounts of a whole fraction and concentrations in the sample take no dilution and share any more, levels and checks neither. */
-function dropWhatBasisTakesNot(records: readonly DraftRecord[], problems: ProblemList): void {
+function dropWhatBasisTakesNot(records: readonly DraftRecord[], problems: Problems): void {
   for (const record of records) {
     const { kind } = record.place;
     if (kind === 'extract' && record.basis !== 'ng' && record.basis !== 'ng_per_l') continue;
@@ -140,7 +136,7 @@ function dropWhatBasisTakesNot(records: readonly DraftRecord[], problems: Proble
 function linkInternalStandards(
   records: readonly DraftRecord[],
   panel: ReadonlyMap<string, PanelExpectation>,
-  problems: ProblemList
+  problems: Problems
 ): void {
   const areas = new Map<string, DraftRecord>();
   for (const record of records) {
@@ -153,7 +149,8 @@ function linkInternalStandards(
     if (!standard) continue;
     const own = areas.get(`${injectionKey(record)} ${standard.panelEntryId}`);
     const name = panel.get(standard.panelEntryId)?.name ?? 'its internal standard';
-    const at = { sheet: record.sheet, row: record.row, column: record.internalColumn ?? record.column };
+    const { row, column } = record.internalCell ?? record;
+    const at = { sheet: record.sheet, row, column };
     if (record.internalArea !== null && own && own.value !== record.internalArea) {
       problems.error({
         code: 'internal standard area twice',
@@ -168,7 +165,7 @@ function linkInternalStandards(
       own?.value !== undefined && own.value !== null && own.value > 0 ? own.value : null;
     if (record.internalArea !== null || record.isInternalAreaFaulty || record.state !== 'value') continue;
     problems.oncePer(
-      `${record.internalColumn === null ? 'no column' : injectionKey(record)} ${standard.panelEntryId}`,
+      `${record.internalCell === null ? 'no column' : injectionKey(record)} ${standard.panelEntryId}`,
       'error',
       {
         code: 'internal standard area missing',
@@ -186,8 +183,7 @@ function checkVolumes(
   records: readonly DraftRecord[],
   expectation: Expectation,
   panel: ReadonlyMap<string, PanelExpectation>,
-  volumeColumn: VolumeColumn,
-  problems: ProblemList
+  problems: Problems
 ): void {
   const onRecord = new Map(
     expectation.experiments.flatMap(({ replicates }) =>
@@ -203,17 +199,17 @@ function checkVolumes(
     )
       continue;
     if ((onRecord.get(record.place.replicateId) ?? null) !== null) continue;
-    const column = volumeColumn(record.sheet);
-    problems.oncePer(column === null ? 'no column' : extractKey(record), 'error', {
+    const cell = record.volumeCell;
+    problems.oncePer(cell === null ? 'no column' : extractKey(record), 'error', {
       code: 'final volume missing',
       sheet: record.sheet,
-      row: record.row,
-      column: column ?? record.column,
-      found: column === null ? 'no column with the final volume' : 'an empty cell',
+      row: cell?.row ?? record.row,
+      column: cell?.column ?? record.column,
+      found: cell === null ? 'no column with the final volume' : 'an empty cell',
       expected: 'the final volume of the extract (mL)',
       what: `The final volume of ${record.placeName} is not in the file and not on record; without it its results cannot become amounts.`,
       fix:
-        column === null
+        cell === null
           ? 'Add a column “Final volume (mL)”.'
           : 'Fill it in, in one row of the extract at least.'
     });
@@ -233,7 +229,7 @@ function needsVolume(record: DraftRecord, panel: ReadonlyMap<string, PanelExpect
 function checkLimits(
   records: readonly DraftRecord[],
   panel: ReadonlyMap<string, PanelExpectation>,
-  problems: ProblemList
+  problems: Problems
 ): void {
   for (const record of records) {
     const isBare = (record.state === 'not detected' || record.state === 'below') && record.limit === null;

@@ -1,12 +1,22 @@
+import type { ColumnMap } from '../../schemas/column-map';
 import type { ReadingLimits } from './limits';
 import type { RefusalCode } from './refusal';
-import type { Expectation, FileKind, MappedRecord, Problem, Reading, Sheet, Workbook } from './types';
+import type { Expectation, FileKind, MappedImport, MappedRecord, Problem, Sheet, Workbook } from './types';
 
 export interface ChildRequest {
   readonly bytes: Uint8Array;
   readonly limits: ReadingLimits;
   /** null: read only. */
   readonly expectation: Expectation | null;
+  readonly maps: ReadingMaps;
+}
+
+/** What a file is read by. */
+export interface ReadingMaps {
+  /** The map that somebody made or changed for this file; null: the one recognised. */
+  readonly given: ColumnMap | null;
+  /** Maps kept by the lab: without a given one the first whose layout is in the file is applied to what is recognised. */
+  readonly saved: readonly ColumnMap[];
 }
 
 /**
@@ -24,7 +34,7 @@ export type ChildMessage =
       readonly kind: FileKind;
       readonly encoding: string | null;
       readonly separator: Workbook['separator'];
-      readonly reading: Reading | null;
+      readonly mapped: Omit<MappedImport, 'records' | 'problems'> | null;
     }
   | { readonly type: 'refused'; readonly code: RefusalCode; readonly message: string };
 

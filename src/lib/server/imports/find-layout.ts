@@ -1,6 +1,6 @@
 import type { NameMatcher } from './name-matcher';
 import { mergeAwareReader } from './merged-cells';
-import { readHeader } from './read-header';
+import { bareUnit, readHeader } from './read-header';
 import type { Header, StatedKind } from './read-header';
 import { rowCells } from './sheet';
 import type { Sheet } from './types';
@@ -11,11 +11,10 @@ export interface HeaderColumn {
   readonly header: Header;
 }
 
-/** A header line that was found in a sheet. */
+/** A header that was found in a sheet. */
 export interface SheetLayout {
-  readonly layout: 'long' | 'wide';
-  /** Zero-based row of the header's last line; the data start below. */
-  readonly headerRow: number;
+  /** Zero-based rows of its one or two lines; the data start below the last. */
+  readonly headerLines: readonly number[];
   readonly columns: readonly HeaderColumn[];
   /** What the sheet's name or a title above the header says the numbers are. */
   readonly titleKind: { readonly kind: StatedKind; readonly unit: string | null } | null;
@@ -24,36 +23,63 @@ export interface SheetLayout {
 /** A sheet in which something of a header was seen, but not enough of it. */
 export interface PartialLayout {
   readonly headerRow: number;
+  readonly columns: readonly HeaderColumn[];
   readonly seen: readonly string[];
   readonly missing: readonly string[];
 }
 
+/** What a header may lack, since it stands elsewhere: in the sheet's name, or in a title. */
+export interface Elsewhere {
+  readonly sample: boolean;
+  readonly analyte: boolean;
+}
+
 /** How far down a header is looked for: title blocks above tables are shorter. */
-const rowsLookedAt = 60;
+export const rowsLookedAt = 60;
+
+const nothingElsewhere = (): Elsewhere => ({ sample: false, analyte: false });
 
 /**
- * Finds the header line of a sheet: the first that has a sample column and either an analyte column with a value column (long) or
- * columns headed by analytes (wide). The line above may carry the analytes' names, merged over their columns.
+ * Finds the header of a sheet: the first line that has a sample column and either an analyte column with a value column or
+ * columns headed by analytes. A second line may carry the analytes' names, merged over their columns, or the units.
  *
  * @param analytes names of the panel → panel entry id
+ * @param elsewhereAt what need not be in a header on that row
  * @returns the layout, what is missing of the likeliest header, or null where nothing looks like one
  */
-export function findLayout(sheet: Sheet, analytes: NameMatcher<string>): SheetLayout | PartialLayout | null {
+export function findLayout(
+  sheet: Sheet,
+  analytes: NameMatcher<string>,
+  elsewhereAt: (row: number) => Elsewhere = nothingElsewhere
+): SheetLayout | PartialLayout | null {
   const read = cachedHeaders(analytes);
   let best: { row: number; columns: readonly HeaderColumn[]; score: number } | null = null;
   for (const row of sheet.rowNumbers.subarray(0, rowsLookedAt)) {
     const columns = singleLine(sheet, row, read);
-    if (isComplete(columns)) return withSecondLine(sheet, row, columns, read);
+    const elsewhere = elsewhereAt(row);
+    if (isComplete(columns, elsewhere)) return withSecondLine(sheet, row, columns, read, elsewhere);
     const composed = twoLines(sheet, row, read);
-    if (isComplete(composed)) return layoutOf(sheet, row, composed, read);
+    if (isComplete(composed, elsewhere)) return layoutOf(sheet, [row - 1, row], composed, read);
     const score = meaningsOf(columns).size;
     if (score >= 2 && score > (best?.score ?? 0)) best = { row, columns, score };
   }
-  return best ? { headerRow: best.row, ...partsOf(best.columns) } : null;
+  return best ? { headerRow: best.row, columns: best.columns, ...partsOf(best.columns) } : null;
 }
 
 export function isLayout(found: SheetLayout | PartialLayout): found is SheetLayout {
-  return 'layout' in found;
+  return 'headerLines' in found;
+}
+
+/** The layout that a header makes on the given lines, whether or not it is complete. */
+export function layoutAt(
+  sheet: Sheet,
+  headerLines: readonly number[],
+  analytes: NameMatcher<string>
+): SheetLayout {
+  const read = cachedHeaders(analytes);
+  const last = headerLines.at(-1) ?? 0;
+  const columns = headerLines.length > 1 ? twoLines(sheet, last, read) : singleLine(sheet, last, read);
+  return layoutOf(sheet, headerLines, columns, read);
 }
 
 type ReadText = (text: string) => Header;
@@ -95,54 +121,56 @@ function twoLines(sheet: Sheet, row: number, read: ReadText): readonly HeaderCol
 }
 
 function joined(column: number, upper: string, lower: string, read: ReadText): HeaderColumn {
+  const unit = upper === '' ? null : bareUnit(lower);
+  const text = upper === '' ? lower : unit === null ? `${upper} ${lower}` : `${upper} (${unit})`;
+  if (unit !== null) return { column, text, header: read(text) };
   const below = read(lower);
   const above = upper === '' ? null : read(upper);
-  const text = upper === '' ? lower : `${upper} ${lower}`;
-  if (above?.meaning === 'value' && above.analyte !== null) {
-    if (below.meaning === 'value' && below.analyte === null) {
-      return { column, text, header: { ...below, unit: below.unit ?? above.unit, analyte: above.analyte } };
-    }
-    if (below.meaning === 'internal area' && below.analyte === null) {
-      return { column, text, header: { ...below, analyte: above.analyte } };
-    }
+  if (above?.meaning === 'value' && above.analyte !== null && isSubhead(below)) {
+    const header: Header =
+      below.meaning === 'value'
+        ? { ...below, unit: below.unit ?? above.unit, analyte: above.analyte }
+        : { ...below, analyte: above.analyte };
+    return { column, text, header };
   }
   return { column, text: lower, header: below };
 }
 
-/** A complete line may be the upper one of two: "Caffeine" over "area" and "internal standard area". */
+type Subhead = Extract<Header, { readonly analyte: string | null }>;
+
+/** What can stand under the name of an analyte. */
+function isSubhead(header: Header): header is Subhead {
+  return 'analyte' in header && header.analyte === null;
+}
+
+/** A complete line may be the upper one of two: "Caffeine" over "area" and "internal standard area", or over units. */
 function withSecondLine(
   sheet: Sheet,
   row: number,
   columns: readonly HeaderColumn[],
-  read: ReadText
+  read: ReadText,
+  elsewhere: Elsewhere
 ): SheetLayout {
-  const next = row + 1;
-  const below = singleLine(sheet, next, read);
-  const hasSubheads = below.some(
-    ({ header }) =>
-      (header.meaning === 'value' || header.meaning === 'internal area') && header.analyte === null
-  );
-  const composed = hasSubheads ? twoLines(sheet, next, read) : [];
-  return isComplete(composed) ? layoutOf(sheet, next, composed, read) : layoutOf(sheet, row, columns, read);
+  const below = singleLine(sheet, row + 1, read);
+  const hasSubheads =
+    below.some(({ header }) => isSubhead(header)) || below.some(({ text }) => bareUnit(text) !== null);
+  const composed = hasSubheads ? twoLines(sheet, row + 1, read) : [];
+  return isComplete(composed, elsewhere)
+    ? layoutOf(sheet, [row, row + 1], composed, read)
+    : layoutOf(sheet, [row], columns, read);
 }
 
 function layoutOf(
   sheet: Sheet,
-  headerRow: number,
+  headerLines: readonly number[],
   columns: readonly HeaderColumn[],
   read: ReadText
 ): SheetLayout {
-  const meanings = meaningsOf(columns);
-  return {
-    layout: meanings.has('analyte') || meanings.has('cas') ? 'long' : 'wide',
-    headerRow,
-    columns,
-    titleKind: titleKind(sheet, headerRow, read)
-  };
+  return { headerLines, columns, titleKind: titleKind(sheet, headerLines[0] ?? 0, read) };
 }
 
 function titleKind(sheet: Sheet, headerRow: number, read: ReadText): SheetLayout['titleKind'] {
-  const titles = [...sheet.rowNumbers].filter((row) => row < headerRow).slice(0, rowsLookedAt);
+  const titles = [...sheet.rowNumbers.subarray(0, rowsLookedAt)].filter((row) => row < headerRow);
   const texts = [
     ...titles.flatMap((row) =>
       rowCells(sheet, row).map(({ cell }) => (cell.kind === 'text' ? cell.value : ''))
@@ -151,11 +179,30 @@ function titleKind(sheet: Sheet, headerRow: number, read: ReadText): SheetLayout
   ];
   for (const text of texts) {
     const header = text === '' || text.length > 300 ? null : read(text);
-    if (header?.meaning === 'value' && header.analyte === null && header.kind !== 'result') {
+    if (header?.meaning === 'value' && header.kind !== 'result') {
       return { kind: header.kind, unit: header.unit };
     }
   }
   return null;
+}
+
+export function hasMeaning(columns: readonly HeaderColumn[], meaning: Header['meaning']): boolean {
+  return columns.some(({ header }) => header.meaning === meaning);
+}
+
+export function namesAnalytes(columns: readonly HeaderColumn[]): boolean {
+  return columns.some(({ header }) => header.meaning === 'value' && header.analyte !== null);
+}
+
+/** All texts of the upper lines of a sheet, to be looked through for names. */
+export function titlesOf(sheet: Sheet): readonly { row: number; column: number; text: string }[] {
+  return [...sheet.rowNumbers.subarray(0, rowsLookedAt)].flatMap((row) =>
+    rowCells(sheet, row).flatMap(({ column, cell }) =>
+      cell.kind === 'text' && cell.value.trim() !== '' && cell.value.length <= 300
+        ? [{ row, column, text: cell.value }]
+        : []
+    )
+  );
 }
 
 function meaningsOf(columns: readonly HeaderColumn[]): ReadonlySet<string> {
@@ -167,12 +214,14 @@ function meaningsOf(columns: readonly HeaderColumn[]): ReadonlySet<string> {
   );
 }
 
-function isComplete(columns: readonly HeaderColumn[]): boolean {
+/** Besides the sample and the analyte, which can stand elsewhere, only a value makes a table. */
+export function isComplete(columns: readonly HeaderColumn[], elsewhere: Elsewhere): boolean {
   const meanings = meaningsOf(columns);
-  if (!meanings.has('sample')) return false;
-  return meanings.has('analyte') || meanings.has('cas')
-    ? meanings.has('value')
-    : meanings.has('analyte value');
+  if (!meanings.has('sample') && !elsewhere.sample) return false;
+  // A title that is the name of an analyte is no header.
+  if (columns.length < 2) return false;
+  if (meanings.has('analyte') || meanings.has('cas')) return meanings.has('value');
+  return meanings.has('analyte value') || (elsewhere.analyte && meanings.has('value'));
 }
 
 function partsOf(columns: readonly HeaderColumn[]): { seen: readonly string[]; missing: readonly string[] } {

@@ -16,7 +16,9 @@ export const headerWords = {
     'preparation',
     'portion',
     'level',
-    'calibration level'
+    'calibration level',
+    'injected sample',
+    'injection name'
   ],
   experiment: ['experiment', 'experiment title', 'experiment name'],
   fraction: ['fraction', 'fraction name', 'fractions', 'part of the sample'],
@@ -73,7 +75,7 @@ export const headerWords = {
     'final vol',
     'final vol.'
   ],
-  dilution: ['dilution', 'dilution factor', 'df', 'dilution df'],
+  dilution: ['dilution', 'dilution factor', 'df', 'dilution df', 'dil', 'dil.', 'dil. factor'],
   aliquotShare: [
     'aliquot share',
     'share',
@@ -99,10 +101,58 @@ export const headerWords = {
     'acquisition date',
     'acquisition date and time',
     'injected at',
+    'injected on',
+    'injection date',
+    'acquired on',
+    'date acquired',
+    'time of acquisition',
     'injection time',
     'date and time',
     'run at'
   ],
+  limit: [
+    'limit',
+    'detection limit',
+    'limit of detection',
+    'reporting limit',
+    'quantification limit',
+    'limit of quantification',
+    'lod',
+    'loq'
+  ],
+  retentionTime: ['retention time', 'rt', 'ret time', 'ret. time', 'tr', 'retention'],
+  ionRatio: ['ion ratio', 'qualifier ratio', 'qualifier ion ratio', 'qual ratio', 'ion ratio qualifier'],
+  signalToNoise: [
+    'signal to noise',
+    'signal-to-noise',
+    's/n',
+    'sn',
+    's to n',
+    'signal/noise',
+    'signal to noise ratio'
+  ],
+  manualIntegration: [
+    'manual integration',
+    'manually integrated',
+    'integrated by hand',
+    'manual',
+    'manual mark',
+    'integration',
+    'integration type',
+    'integration mode'
+  ],
+  manualCause: [
+    'manual integration cause',
+    'cause of manual integration',
+    'manual integration reason',
+    'reason for manual integration',
+    'integration cause',
+    'integration remark',
+    'integration comment',
+    'cause'
+  ],
+  sampleVolume: ['sample volume', 'volume of sample', 'volume of the sample', 'sample vol', 'sample vol.'],
+  sampleMass: ['sample mass', 'sample weight', 'mass of sample', 'mass of the sample', 'weight of sample'],
   /** Seen often, of no use here; mentioned as not used. */
   ignored: [
     'internal standard',
@@ -122,11 +172,6 @@ export const headerWords = {
     'operator',
     'analyst',
     'instrument',
-    'retention time',
-    'rt',
-    'ion ratio',
-    'signal to noise',
-    's/n',
     'height',
     'peak height',
     'area ratio',
@@ -141,7 +186,6 @@ export const headerWords = {
     '#',
     'type',
     'sample type',
-    'sample volume',
     'date'
   ]
 } as const;

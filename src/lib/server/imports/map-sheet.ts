@@ -1,4 +1,5 @@
 import type { MeasurementState, ReportedBasis } from '../../domain/vocabulary';
+import { cellAddress } from './cell-address';
 import type { ValueColumn } from './column-plan';
 import { mergeAwareReader } from './merged-cells';
 import type { CellReader } from './merged-cells';
@@ -11,15 +12,19 @@ import type { Preparation } from './row-preparation';
 import { cellAt } from './sheet';
 import { isBlank, textOf } from './sheet-mapping';
 import type { SheetMapping } from './sheet-mapping';
-import type { Place } from './types';
+import { qualifiersOf } from './row-qualifiers';
+import type { Place, Qualifiers } from './types';
 import { convert } from './units';
 import { expectedWords } from './value-words';
 
 /** A record before the checks that look at several rows at once. */
 export interface DraftRecord {
   readonly sheet: string;
+  /** Of the sheet as it is, turned or not. */
   readonly row: number;
   readonly column: number;
+  /** What was read as one row: the row, or the column of a sheet that is read turned. */
+  readonly line: number;
   readonly place: Place;
   /** How messages name it: "S4, Elution 1". */
   readonly placeName: string;
@@ -30,7 +35,9 @@ export interface DraftRecord {
   readonly value: number | null;
   readonly limit: number | null;
   readonly rawText: string;
-  readonly internalColumn: number | null;
+  /** Where problems with other properties are shown; null: the sheet has no such column. */
+  readonly internalCell: CellPlace | null;
+  readonly volumeCell: CellPlace | null;
   internalArea: number | null;
   /** What is in the file but cannot be used, so that it is not called missing as well. */
   readonly isInternalAreaFaulty: boolean;
@@ -38,23 +45,39 @@ export interface DraftRecord {
   finalVolumeMl: number | null;
   dilution: number | null;
   aliquotShare: number | null;
+  readonly sampleVolumeMl: number | null;
+  readonly sampleMassG: number | null;
   readonly acquiredAt: string | null;
+  readonly qualifiers: Qualifiers | null;
 }
 
-/** Turns the rows below the header into records, one for each row and value column, and reports what is in the way. */
+export interface CellPlace {
+  readonly row: number;
+  readonly column: number;
+}
+
+/** Turns the rows of a table into records, one for each row and value column, and reports what is in the way. */
 export function mapSheet(mapping: SheetMapping): readonly DraftRecord[] {
-  const { sheet, plan, headerRow } = mapping;
+  const { sheet, plan, from, to, leftOut } = mapping;
   const merged = mergeAwareReader(sheet);
   const drafts: DraftRecord[] = [];
-  for (const row of sheet.rowNumbers) {
-    if (row <= headerRow || isBlankRow(mapping, merged, row)) continue;
+  for (let at = from; at < to; at++) {
+    const row = sheet.rowNumbers[at] ?? 0;
+    if (leftOut.has(row) || isBlankRow(mapping, merged, row)) continue;
     const place = placeOf(mapping, merged, row);
-    const injection = injectionOf(mapping, row);
+    if (place === 'left out') continue;
+    const injection = injectionOf(mapping, row, place?.injection ?? null);
     const preparation = preparationOf(mapping, merged, row);
+    const dilution = preparation.dilution ?? place?.dilution ?? null;
     for (const value of plan.values) {
       const panelEntryId = value.analyte ?? analyteOf(mapping, merged, row);
       // Read the cell even where the row found no place, so that all problems come at once.
-      const draft = draftOf(mapping, row, value, { place, panelEntryId, injection, preparation });
+      const draft = draftOf(mapping, row, value, {
+        place,
+        panelEntryId,
+        injection,
+        preparation: { ...preparation, dilution }
+      });
       if (draft) drafts.push(draft);
     }
   }
@@ -63,13 +86,13 @@ export function mapSheet(mapping: SheetMapping): readonly DraftRecord[] {
 
 /** Without a label, analyte and numbers a row says nothing (it may hold a remark or a rule). */
 function isBlankRow({ plan }: SheetMapping, merged: CellReader, row: number): boolean {
-  const columns = [
-    plan.sample,
-    plan.analyte,
-    plan.cas,
-    ...plan.values.flatMap(({ column, internalArea }) => [column, internalArea])
-  ];
-  return columns.every((column) => column === null || isBlank(merged(row, column)));
+  const filled = (column: number | null): boolean => column !== null && !isBlank(merged(row, column));
+  return (
+    !filled(plan.sample) &&
+    !filled(plan.analyte) &&
+    !filled(plan.cas) &&
+    !plan.values.some(({ column, internalArea }) => filled(column) || filled(internalArea))
+  );
 }
 
 interface RowFacts {
@@ -85,7 +108,7 @@ function draftOf(
   value: ValueColumn,
   facts: RowFacts
 ): DraftRecord | null {
-  const { sheet, decimalOf, problems } = mapping;
+  const { sheet, plan, isTurned, decimalOf, values, problems } = mapping;
   const cell = cellAt(sheet, row, value.column);
   const expected = expectedWords[value.basis];
   const context = {
@@ -96,16 +119,22 @@ function draftOf(
     decimal: decimalOf(value.column)
   };
   const number = readNumberCell(cell, context, problems);
+  const inSheet = (line: number): CellPlace =>
+    isTurned ? { row: line, column: row } : { row, column: line };
+  const own = inSheet(value.column);
+  values.add(cell, number, () => ({ sheet: sheet.name, cell: cellAddress(own.row, own.column) }));
   const { place, panelEntryId, injection, preparation } = facts;
   const internalArea = internalAreaOf(mapping, row, value, panelEntryId);
   if (number.state === 'unusable' || !place || panelEntryId === null || injection === null) return null;
   const amount = number.state === 'value' ? convert(number.value, value.factor) : null;
   if (amount !== null && !checkSign(mapping, row, value, amount)) return null;
-  const limit = number.state === 'below' || number.state === 'above' ? number.limit : null;
+  const isAbove = number.state === 'above';
+  const stated = number.state === 'below' || isAbove ? number.limit : null;
+  const limit = stated === null ? null : convert(stated, value.factor);
   return {
     sheet: sheet.name,
-    row,
-    column: value.column,
+    ...own,
+    line: row,
     place: place.place,
     placeName: place.name,
     panelEntryId,
@@ -113,13 +142,48 @@ function draftOf(
     basis: value.basis,
     state: number.state,
     value: amount,
-    limit: limit === null ? null : convert(limit, value.factor),
+    limit: limit ?? (isLow(number.state) ? limitOf(mapping, row, value) : null),
     rawText: cell?.raw ?? '',
-    internalColumn: value.internalArea,
+    internalCell: value.internalArea === null ? null : inSheet(value.internalArea),
+    volumeCell: plan.finalVolume === null ? null : inSheet(plan.finalVolume.column),
     internalArea: internalArea === 'faulty' ? null : internalArea,
     isInternalAreaFaulty: internalArea === 'faulty',
-    ...preparation
+    ...preparation,
+    qualifiers: qualifiersOf(mapping, row, value.qualifiers)
   };
+}
+
+function isLow(state: MeasurementState): boolean {
+  return state === 'not detected' || state === 'below';
+}
+
+/** The limit that stands in a column of its own, for a cell that names none. */
+function limitOf(
+  { sheet, decimalOf, problems }: SheetMapping,
+  row: number,
+  value: ValueColumn
+): number | null {
+  if (!value.limit) return null;
+  const { column, factor } = value.limit;
+  const expected = 'a limit above zero';
+  const cell = cellAt(sheet, row, column);
+  const context = { sheet: sheet.name, row, column, expected, decimal: decimalOf(column) };
+  const number = readNumberCell(cell, context, problems);
+  if (number.state === 'value' && number.value > 0) return convert(number.value, factor);
+  if (number.state === 'below' && number.limit !== null) return convert(number.limit, factor);
+  if (number.state !== 'missing' && number.state !== 'unusable') {
+    problems.error({
+      code: 'not positive',
+      sheet: sheet.name,
+      row,
+      column,
+      found: `“${textOf(cell)}”`,
+      expected,
+      what: `“${textOf(cell)}” stands where ${expected} belongs.`,
+      fix: 'Correct the limit, or leave the cell empty.'
+    });
+  }
+  return null;
 }
 
 function checkSign(

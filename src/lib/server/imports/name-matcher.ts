@@ -30,6 +30,10 @@ export class NameMatcher<T> {
     return found;
   }
 
+  get names(): readonly string[] {
+    return this.#names;
+  }
+
   /** The name that was perhaps meant; null where none is near. */
   nearest(text: string): string | null {
     return nearestName(text, this.#names);
@@ -55,17 +59,23 @@ function put<T>(map: Map<string, Set<T>>, key: string, value: T): void {
 
 /** The name at the smallest edit distance, where that is at most a quarter of its length (two letters at least). */
 export function nearestName(text: string, names: readonly string[]): string | null {
+  return nearestNames(text, names, 1)[0] ?? null;
+}
+
+/** As `nearestName`: the nearest names, the nearest first, those at one distance in their own order. */
+export function nearestNames(text: string, names: readonly string[], count: number): readonly string[] {
   const wanted = nameKey(text);
-  if (wanted.length < 2) return null;
-  let nearest: { name: string; distance: number } | null = null;
+  if (wanted.length < 2) return [];
+  const near: { name: string; distance: number }[] = [];
   for (const name of names) {
     const key = nameKey(name);
     const allowed = Math.max(Math.min(2, key.length - 2), Math.floor(key.length / 4));
     if (Math.abs(key.length - wanted.length) > allowed) continue;
     const distance = editDistance(wanted, key);
-    if (distance <= allowed && distance < (nearest?.distance ?? Infinity)) nearest = { name, distance };
+    if (distance <= allowed) near.push({ name, distance });
   }
-  return nearest?.name ?? null;
+  near.sort((one, other) => one.distance - other.distance);
+  return near.slice(0, count).map(({ name }) => name);
 }
 
 /** Number of letters to insert, remove or replace (Levenshtein 1966). */

@@ -1,5 +1,6 @@
-import { NameMatcher } from './name-matcher';
+import { NameMatcher, nearestNames } from './name-matcher';
 import type {
+  Assignment,
   Expectation,
   ExperimentExpectation,
   FractionExpectation,
@@ -17,8 +18,10 @@ export type FoundPlace =
   | { readonly kind: 'many'; readonly places: readonly string[] }
   | { readonly kind: 'none'; readonly nearest: string | null };
 
+export type SinglePlace = Exclude<FoundPlace, { readonly kind: 'many' | 'none' }>;
+
 interface Labelled {
-  readonly place: Exclude<FoundPlace, { readonly kind: 'many' | 'none' }>;
+  readonly place: SinglePlace;
   readonly described: string;
 }
 
@@ -29,6 +32,8 @@ export class PlaceFinder {
   readonly #titles = new NameMatcher<ExperimentExpectation>();
   readonly #labels = new Map<string, NameMatcher<Labelled>>();
   readonly #levels = new NameMatcher<Labelled>();
+  /** Levels and checks by their ids. */
+  readonly #byId = new Map<string, Labelled>();
   readonly #fractions = new Map<string, NameMatcher<FractionExpectation>>();
   readonly #known = new Map<string, FoundPlace>();
 
@@ -41,30 +46,24 @@ export class PlaceFinder {
     this.#preferred = this.#experiments.find(({ id }) => id === preferredId) ?? null;
     for (const experiment of this.#experiments) this.#addExperiment(experiment);
     for (const set of expectation.calibrationSets) {
-      for (const level of set.levels) {
-        this.#levels.add(
-          {
-            place: { kind: 'level', calibrationSetId: set.id, levelId: level.id },
-            described: `level ${level.name} of calibration ${set.name}`
-          },
-          [level.name]
-        );
+      for (const { id, name } of set.levels) {
+        this.#addLevel(id, name, {
+          place: { kind: 'level', calibrationSetId: set.id, levelId: id },
+          described: `level ${name} of calibration ${set.name}`
+        });
       }
-      for (const check of set.checks) {
-        this.#levels.add(
-          {
-            place: {
-              kind: 'check',
-              calibrationSetId: set.id,
-              checkStandardId: check.id,
-              checkKind: check.kind
-            },
-            described: `${check.name} (${checkWords[check.kind]}) of calibration ${set.name}`
-          },
-          [check.name]
-        );
+      for (const { id, name, kind } of set.checks) {
+        this.#addLevel(id, name, {
+          place: { kind: 'check', calibrationSetId: set.id, checkStandardId: id, checkKind: kind },
+          described: `${name} (${checkWords[kind]}) of calibration ${set.name}`
+        });
       }
     }
+  }
+
+  #addLevel(id: string, name: string, labelled: Labelled): void {
+    this.#levels.add(labelled, [name]);
+    this.#byId.set(id, labelled);
   }
 
   #addExperiment(experiment: ExperimentExpectation): void {
@@ -125,6 +124,46 @@ export class PlaceFinder {
       if (nearest) return nearest;
     }
     return this.#levels.nearest(label);
+  }
+
+  /** Whether any experiment that the file may hold has a fraction of this name. */
+  hasFraction(name: string): boolean {
+    return this.#experiments.some(({ id }) => this.#fractions.get(id)?.match(name).kind === 'one');
+  }
+
+  /** The place that was assigned to a label; null where the study has it no longer. */
+  assigned(
+    assignment: Exclude<Assignment, { readonly kind: 'left out' }>
+  ): { readonly place: SinglePlace; readonly fractionId: string | null } | null {
+    if (assignment.kind !== 'replicate') {
+      const id = assignment.kind === 'level' ? assignment.levelId : assignment.checkStandardId;
+      const place = this.#byId.get(id)?.place;
+      return place ? { place, fractionId: null } : null;
+    }
+    const { experimentId, replicateId, fractionId } = assignment;
+    const experiment = this.#experiments.find(({ id }) => id === experimentId);
+    const replicate = experiment?.replicates.find(({ id }) => id === replicateId);
+    if (!experiment || !replicate) return null;
+    if (fractionId !== null && !experiment.fractions.some(({ id }) => id === fractionId)) return null;
+    return { place: { kind: 'replicate', experiment, replicate }, fractionId };
+  }
+
+  /** A place in words: "S1 of Extraction at pH 7". */
+  describe(place: SinglePlace): string {
+    if (place.kind === 'replicate') return `${place.replicate.label} of ${place.experiment.title}`;
+    const id = place.kind === 'level' ? place.levelId : place.checkStandardId;
+    return this.#byId.get(id)?.described ?? '';
+  }
+
+  /** The names that were perhaps meant, nearest first, of replicates, levels and checks; at most three. */
+  nearestNames(label: string, experiment: ExperimentExpectation | null): readonly string[] {
+    const first = experiment ?? this.#preferred;
+    const experiments = first ? [first] : this.#experiments;
+    const names = [
+      ...experiments.flatMap(({ replicates }) => replicates.map((replicate) => replicate.label)),
+      ...this.#levels.names
+    ];
+    return nearestNames(label, [...new Set(names)], 3);
   }
 
   fractions(experiment: ExperimentExpectation): NameMatcher<FractionExpectation> {

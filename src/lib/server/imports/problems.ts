@@ -24,8 +24,17 @@ interface Grouped {
   count: number;
 }
 
+/** Where problems are reported to. */
+export interface Problems {
+  error(input: ProblemInput): void;
+  question(input: ProblemInput): void;
+  note(input: ProblemInput): void;
+  /** @param group what is the same in all the cells that share one problem */
+  oncePer(group: string, severity: ProblemSeverity, input: ProblemInput): void;
+}
+
 /** Collects all problems of a file. */
-export class ProblemList {
+export class ProblemList implements Problems {
   readonly #problems: (Problem | Grouped)[] = [];
   readonly #groups = new Map<string, Grouped>();
 
@@ -41,7 +50,18 @@ export class ProblemList {
     this.#problems.push(toProblem('note', input, 1));
   }
 
-  /** @param group what is the same in all the cells that share one problem */
+  /** For whoever reads a sheet turned: the cells named are those of the sheet as it is. */
+  turned(): Problems {
+    const turn = (input: ProblemInput): ProblemInput =>
+      input.row === undefined ? input : { ...input, row: input.column ?? 0, column: input.row };
+    return {
+      error: (input) => this.error(turn(input)),
+      question: (input) => this.question(turn(input)),
+      note: (input) => this.note(turn(input)),
+      oncePer: (group, severity, input) => this.oncePer(group, severity, turn(input))
+    };
+  }
+
   oncePer(group: string, severity: ProblemSeverity, input: ProblemInput): void {
     const key = `${input.code}\u0000${input.sheet}\u0000${group}`;
     const known = this.#groups.get(key);

@@ -1,5 +1,5 @@
 import { parseValue } from './parse-value';
-import type { ProblemList } from './problems';
+import type { Problems } from './problems';
 import type { Cell, DecimalMark } from './types';
 
 /** Where a number is read and what it should be, for the sentences. */
@@ -25,7 +25,7 @@ const unusable: ReadNumber = { state: 'unusable' };
  * Reads a cell that should hold a number, and reports what it holds instead. A date is read as the number underneath, with a
  * question.
  */
-export function readNumberCell(cell: Cell | null, context: NumberContext, problems: ProblemList): ReadNumber {
+export function readNumberCell(cell: Cell | null, context: NumberContext, problems: Problems): ReadNumber {
   // Nearly all cells end here; the words for problems are not made for them.
   if (cell === null) return { state: 'missing' };
   if (cell.kind === 'number') return { state: 'value', value: cell.value };

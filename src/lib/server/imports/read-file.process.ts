@@ -3,6 +3,7 @@ import type { ChildMessage, ChildRequest } from './child-messages';
 import { mapRecords } from './map-records';
 import { readWorkbook } from './read-workbook';
 import { Refusal } from './refusal';
+import type { MappedImport } from './types';
 
 /** The process that reads one file and ends. It knows no database and no secrets. */
 
@@ -12,18 +13,27 @@ function send(message: ChildMessage): Promise<void> {
   });
 }
 
-async function answer({ bytes, limits, expectation }: ChildRequest): Promise<void> {
+async function answer({ bytes, limits, expectation, maps }: ChildRequest): Promise<void> {
   const workbook = await readWorkbook(Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength), limits);
   for (const texts of inPieces(workbook.sheets[0]?.texts ?? [], piece.texts))
     await send({ type: 'texts', texts });
   for (const { texts: _, ...sheet } of workbook.sheets) await send({ type: 'sheet', sheet });
-  const mapped = expectation ? mapRecords(workbook, expectation) : null;
+  const mapped = expectation ? mapRecords(workbook, expectation, maps) : null;
   for (const records of inPieces(mapped?.records ?? [], piece.records))
     await send({ type: 'records', records });
   for (const problems of inPieces(mapped?.problems ?? [], piece.problems))
     await send({ type: 'problems', problems });
   const { kind, encoding, separator } = workbook;
-  await send({ type: 'done', kind, encoding, separator, reading: mapped?.reading ?? null });
+  await send({ type: 'done', kind, encoding, separator, mapped: mapped && withoutLists(mapped) });
+}
+
+/** Records and problems have gone before, in pieces. */
+function withoutLists({
+  records: _,
+  problems: __,
+  ...rest
+}: MappedImport): Omit<MappedImport, 'records' | 'problems'> {
+  return rest;
 }
 
 process.once('message', (request: ChildRequest) => {

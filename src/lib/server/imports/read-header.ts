@@ -2,7 +2,7 @@ import { nameKey } from '../../domain/name-key';
 import { headerWords, sampleWords, vialWords } from './header-words';
 import type { HeaderWord } from './header-words';
 import type { NameMatcher } from './name-matcher';
-import { isAmount, isConcentration, isUnit } from './units';
+import { isAmount, isConcentration, isMarkedUnit, isUnit } from './units';
 
 /** What a value column holds, as far as its header says. */
 export type StatedKind = 'area' | 'vial' | 'ng_per_l' | 'ng' | 'concentration' | 'result';
@@ -14,9 +14,13 @@ export type Header =
       readonly unit: string | null;
       readonly analyte: string | null;
     }
-  | { readonly meaning: 'internal area'; readonly unit: null; readonly analyte: string | null }
   | {
-      readonly meaning: Exclude<HeaderWord, 'area' | 'result' | 'internalArea'>;
+      readonly meaning: 'internal area' | BesideWord;
+      readonly unit: string | null;
+      readonly analyte: string | null;
+    }
+  | {
+      readonly meaning: Exclude<HeaderWord, 'area' | 'result' | 'internalArea' | BesideWord>;
       readonly unit: string | null;
     }
   | { readonly meaning: 'unknown'; readonly unit: string | null };
@@ -27,10 +31,27 @@ const wordByKey = new Map<string, HeaderWord>(
   )
 );
 
+/** What a column can hold beside the value of one analyte. */
+export const besideWords = [
+  'limit',
+  'retentionTime',
+  'ionRatio',
+  'signalToNoise',
+  'manualIntegration',
+  'manualCause'
+] as const satisfies readonly HeaderWord[];
+export type BesideWord = (typeof besideWords)[number];
+
+const isBesideWord = (word: HeaderWord): word is BesideWord =>
+  (besideWords as readonly HeaderWord[]).includes(word);
+
 /** What may follow or precede an analyte's name in a header. Shortest first: the longest name that is on the panel is the one meant. */
 const qualifiers = [...wordByKey]
-  .filter(([, word]) => word === 'area' || word === 'internalArea' || word === 'result')
+  .filter(([, word]) => word === 'area' || word === 'internalArea' || word === 'result' || isBesideWord(word))
   .sort(([one], [other]) => one.length - other.length);
+
+/** Letters so few that a name can end in them by chance: they count only where something parts them from the name. */
+const shortQualifier = 3;
 
 /**
  * Reads one header: its unit (in brackets, or at its end after a comma or a space), then a word of `headerWords`, or an
@@ -58,6 +79,7 @@ export function readHeader(text: string, analytes: NameMatcher<string>): Header 
       : key.startsWith(qualifier)
         ? key.slice(qualifier.length)
         : '';
+    if (rest === '' || (qualifier.length <= shortQualifier && !standsAlone(words, qualifier))) continue;
     const analyte = analyteOf(rest.replace(/^[,:;\-.]+|[,:;\-.]+$/g, ''), analytes);
     if (analyte !== null) return headerOf(word, text, unit, analyte);
   }
@@ -74,8 +96,14 @@ export function readHeader(text: string, analytes: NameMatcher<string>): Header 
 function headerOf(word: HeaderWord, text: string, unit: string | null, analyte: string | null): Header {
   if (word === 'area') return { meaning: 'value', kind: 'area', unit: null, analyte };
   if (word === 'internalArea') return { meaning: 'internal area', unit: null, analyte };
+  if (isBesideWord(word)) return { meaning: word, unit, analyte };
   if (word === 'result') return { meaning: 'value', kind: kindOf(text, unit), unit, analyte };
   return { meaning: word, unit };
+}
+
+function standsAlone(words: string, qualifier: string): boolean {
+  const parts = words.split(/[\s_,;:()[\]{}|-]+/u).filter((part) => part !== '');
+  return [parts[0], parts.at(-1)].some((part) => part !== undefined && nameKey(part) === qualifier);
 }
 
 /** A concentration says by a word whether it is that of the vial or of the sample; many do not. */
@@ -114,11 +142,17 @@ function analyteOf(text: string, analytes: NameMatcher<string>): string | null {
   return match.kind === 'one' ? match.value : null;
 }
 
+/** @returns the unit that a text is, alone or in brackets ("mL", "[ng/mL]"); null where it is anything else */
+export function bareUnit(text: string): string | null {
+  const bare = text.trim().replace(/^[([]\s*|\s*[)\]]$/g, '');
+  return isUnit(bare) || (bare !== text.trim() && isMarkedUnit(bare)) ? bare : null;
+}
+
 function splitUnit(text: string): { readonly words: string; readonly unit: string | null } {
   const trimmed = text.trim();
   if (isUnit(trimmed)) return { words: '', unit: trimmed };
   const bracketed = /^(.*)[([]\s*(?:in\s+)?([^()[\]]+?)\s*[)\]]([^()[\]]*)$/su.exec(trimmed);
-  if (bracketed && isUnit(bracketed[2] ?? '')) {
+  if (bracketed && (isUnit(bracketed[2] ?? '') || isMarkedUnit(bracketed[2] ?? ''))) {
     return { words: `${bracketed[1]} ${bracketed[3]}`.trim(), unit: bracketed[2] ?? null };
   }
   // "ng/mL in the vial": the unit first.

@@ -5,7 +5,7 @@ import { createRequire } from 'node:module';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
-import type { ChildMessage, ChildRequest } from './child-messages';
+import type { ChildMessage, ChildRequest, ReadingMaps } from './child-messages';
 import { readingLimits } from './limits';
 import type { ReadingLimits } from './limits';
 import { projectRoot } from './project-root';
@@ -26,6 +26,7 @@ export interface ChildOptions {
 
 const defaults = { timeoutMs: 60_000, memoryMb: 768 } as const;
 const memoryLookMs = 250;
+const noMaps: ReadingMaps = { given: null, saved: [] };
 
 /**
  * Reads an untrusted file in a process of its own, whose memory is capped and which is ended when it takes too long, so that this
@@ -34,16 +35,20 @@ const memoryLookMs = 250;
  * @throws Refusal with a plain sentence for what cannot be read; the signal's reason when it was aborted
  */
 export async function readInChild(bytes: Uint8Array, options: ChildOptions = {}): Promise<Workbook> {
-  return (await run(bytes, null, options)).workbook;
+  return (await run(bytes, null, noMaps, options)).workbook;
 }
 
-/** Reads and maps (`mapRecords`) in a process of its own; throws as `readInChild` does. */
+/**
+ * Reads and maps (`mapRecords`) in a process of its own; throws as `readInChild` does.
+ *
+ * @param options.maps what to read by, where it is not what is recognised
+ */
 export async function mapInChild(
   bytes: Uint8Array,
   expectation: Expectation,
-  options: ChildOptions = {}
+  { maps = noMaps, ...options }: ChildOptions & { readonly maps?: ReadingMaps } = {}
 ): Promise<{ readonly workbook: Workbook; readonly mapped: MappedImport }> {
-  const { workbook, mapped } = await run(bytes, expectation, options);
+  const { workbook, mapped } = await run(bytes, expectation, maps, options);
   if (!mapped) throw new Refusal('failed', unforeseen);
   return { workbook, mapped };
 }
@@ -59,6 +64,7 @@ const unforeseen =
 async function run(
   bytes: Uint8Array,
   expectation: Expectation | null,
+  maps: ReadingMaps,
   options: ChildOptions
 ): Promise<Answer> {
   const limits = { ...readingLimits, ...options.limits };
@@ -91,7 +97,7 @@ async function run(
 
     child.on('message', (message: ChildMessage) => {
       if (message.type === 'ready') {
-        const request: ChildRequest = { bytes, limits, expectation };
+        const request: ChildRequest = { bytes, limits, expectation, maps };
         child.send(request, (error) => error && end('failed', unforeseen));
       } else collected.take(message);
     });
@@ -178,10 +184,10 @@ class Collected {
         this.refusal = new Refusal(message.code, message.message);
         return;
       case 'done': {
-        const { kind, encoding, separator, reading } = message;
+        const { kind, encoding, separator, mapped } = message;
         this.answer = {
           workbook: { kind, encoding, separator, sheets: this.#sheets },
-          mapped: reading && { reading, records: this.#records, problems: this.#problems }
+          mapped: mapped && { ...mapped, records: this.#records, problems: this.#problems }
         };
       }
     }

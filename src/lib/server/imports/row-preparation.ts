@@ -1,20 +1,28 @@
 import type { NumberColumn } from './column-plan';
 import type { CellReader } from './merged-cells';
 import { readNumberCell } from './read-cell';
-import { cellAt, isoToSerial, serialToIso } from './sheet';
+import { cellAt } from './sheet';
 import { textOf } from './sheet-mapping';
 import type { SheetMapping } from './sheet-mapping';
+import { textDate } from './text-date';
 import { convert } from './units';
 
-/** @returns null where the number given is none; the problem is reported */
-export function injectionOf({ sheet, plan, decimalOf, problems }: SheetMapping, row: number): number | null {
-  if (plan.injection === null) return 1;
+/**
+ * @param fromLabel the number that the sample's label gives, for a row that has none of its own
+ * @returns null where the number given is none; the problem is reported
+ */
+export function injectionOf(
+  { sheet, plan, decimalOf, problems }: SheetMapping,
+  row: number,
+  fromLabel: number | null
+): number | null {
+  if (plan.injection === null) return fromLabel ?? 1;
   const column = plan.injection;
   const cell = cellAt(sheet, row, column);
   const expected = 'an injection number (1, 2, 3 …)';
   const context = { sheet: sheet.name, row, column, expected, decimal: decimalOf(column) };
   const number = readNumberCell(cell, context, problems);
-  if (number.state === 'missing') return 1;
+  if (number.state === 'missing') return fromLabel ?? 1;
   if (number.state === 'unusable') return null;
   if (
     number.state === 'value' &&
@@ -41,6 +49,9 @@ export interface Preparation {
   readonly dilution: number | null;
   readonly aliquotShare: number | null;
   readonly acquiredAt: string | null;
+  /** To be held against the record. */
+  readonly sampleVolumeMl: number | null;
+  readonly sampleMassG: number | null;
   /** The final volume is in the file but cannot be used, which has been said. */
   readonly isVolumeFaulty: boolean;
 }
@@ -66,7 +77,21 @@ export function preparationOf(mapping: SheetMapping, merged: CellReader, row: nu
     'share outside range',
     (value) => value > 0 && value <= 1
   );
+  const sampleVolume = within(
+    plan.sampleVolume,
+    'a sample volume above zero',
+    'not positive',
+    (value) => value > 0
+  );
+  const sampleMass = within(
+    plan.sampleMass,
+    'a sample mass above zero',
+    'not positive',
+    (value) => value > 0
+  );
   return {
+    sampleVolumeMl: sampleVolume === 'faulty' ? null : sampleVolume,
+    sampleMassG: sampleMass === 'faulty' ? null : sampleMass,
     finalVolumeMl: volume === 'faulty' ? null : volume,
     isVolumeFaulty: volume === 'faulty',
     dilution: dilution === 'faulty' ? null : dilution,
@@ -113,13 +138,13 @@ function bounded(
   return 'faulty';
 }
 
-function acquiredAtOf({ sheet, plan, problems }: SheetMapping, row: number): string | null {
+function acquiredAtOf({ sheet, plan, dateOrder, problems }: SheetMapping, row: number): string | null {
   if (plan.acquiredAt === null) return null;
   const cell = cellAt(sheet, row, plan.acquiredAt);
   if (!cell || textOf(cell) === '') return null;
   if (cell.kind === 'date') return cell.raw;
-  const serial = cell.kind === 'text' ? isoToSerial(cell.value.trim()) : null;
-  if (serial !== null) return serialToIso(serial);
+  const iso = cell.kind === 'text' ? textDate(cell.value, dateOrder) : null;
+  if (iso !== null) return iso;
   problems.oncePer('column', 'question', {
     code: 'date not understood',
     sheet: sheet.name,

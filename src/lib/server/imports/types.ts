@@ -1,3 +1,4 @@
+import type { ColumnMap, Orientation } from '../../schemas/column-map';
 import type {
   AdditionPoint,
   CheckStandardKind,
@@ -73,6 +74,14 @@ export interface ReplicateExpectation {
   readonly takesFraction: boolean;
   /** Final volume (mL) already on record for all of it; null: the file has to bring it where it is needed. */
   readonly finalVolumeMl: number | null;
+  /** On record, to be held against what the file says; null or left out: not on record. */
+  readonly sampleVolumeMl?: number | null;
+  readonly sampleMassG?: number | null;
+  /** ISO 8601, in UTC; null or left out: not on record. */
+  readonly collectedAt?: string | null;
+  readonly extractedAt?: string | null;
+  /** Amount (ng) added to it by panel entry id; left out: not known. */
+  readonly spikesNg?: Readonly<Record<string, number>>;
 }
 
 export interface FractionExpectation {
@@ -87,6 +96,11 @@ export interface ExperimentExpectation {
   readonly calibrationSetId: string | null;
   readonly replicates: readonly ReplicateExpectation[];
   readonly fractions: readonly FractionExpectation[];
+  /** How long a portion may wait, in days; null or left out: no rule. */
+  readonly holdingDays?: {
+    readonly collectionToExtraction: number | null;
+    readonly extractionToAnalysis: number | null;
+  };
 }
 
 export interface PanelExpectation {
@@ -100,6 +114,10 @@ export interface PanelExpectation {
   readonly internalStandard: { readonly panelEntryId: string; readonly point: AdditionPoint } | null;
   /** Whether a lowest calibration level is known, which then is the limit of a bare "ND". */
   readonly hasLowestLevel: boolean;
+  /** Lowest and highest calibration level in the vial, ng/mL; null or left out: none. */
+  readonly levelRange?: { readonly low: number; readonly high: number } | null;
+  /** The area that it usually has as an internal standard; null or left out: taken from the file alone. */
+  readonly typicalArea?: number | null;
 }
 
 export interface CalibrationSetExpectation {
@@ -128,8 +146,26 @@ export interface Expectation {
   readonly declared: {
     readonly basis: ReportedBasis | null;
     readonly decimal: DecimalMark | null;
+    /** What the person said a sample label means, by the label as it stands in the file. */
+    readonly assignments?: Readonly<Record<string, Assignment>>;
   };
+  /** The places of the planned run in their order; null or left out: the replicates and fractions of the experiment in theirs. */
+  readonly runOrder?: readonly Assignment[] | null;
 }
+
+/** What a sample label was said to mean. */
+export type Assignment =
+  | {
+      readonly kind: 'replicate';
+      readonly experimentId: string;
+      readonly replicateId: string;
+      /** null: the row names it, or there is one only. */
+      readonly fractionId: string | null;
+    }
+  | { readonly kind: 'level'; readonly levelId: string }
+  | { readonly kind: 'check'; readonly checkStandardId: string }
+  /** Its rows are not read. */
+  | { readonly kind: 'left out' };
 
 export type Place =
   | {
@@ -145,6 +181,15 @@ export type Place =
       readonly checkStandardId: string;
       readonly checkKind: CheckStandardKind;
     };
+
+/** What an instrument says about a peak beside its area; null where the file does not say. */
+export interface Qualifiers {
+  readonly retentionTimeMin: number | null;
+  readonly ionRatio: number | null;
+  readonly signalToNoise: number | null;
+  /** null: not marked as integrated by hand. */
+  readonly manualIntegration: { readonly cause: string | null } | null;
+}
 
 export interface MappedRecord {
   readonly sheet: string;
@@ -176,6 +221,8 @@ export interface MappedRecord {
   readonly aliquotShare: number | null;
   /** ISO 8601 without a zone, as the file has it; null: not given. */
   readonly acquiredAt: string | null;
+  /** null: the file gives none of them for this value. */
+  readonly qualifiers: Qualifiers | null;
 }
 
 export type ProblemSeverity = 'error' | 'question' | 'note';
@@ -239,6 +286,11 @@ export type ProblemCode =
   | 'dilution below one'
   | 'injection number'
   | 'date not understood'
+  | 'missing part of the map'
+  | 'pattern not confirmed'
+  | 'run order differs'
+  | 'title contradicts'
+  | 'qualifier not read'
   // records
   | 'same injection twice'
   | 'check injections unclear'
@@ -246,7 +298,16 @@ export type ProblemCode =
   | 'internal standard area twice'
   | 'final volume missing'
   | 'not taken by basis'
-  | 'differs within extract';
+  | 'differs within extract'
+  | 'differs from record'
+  // what the numbers look like
+  | 'outside calibration range'
+  | 'internal standard outside window'
+  | 'far from its fellows'
+  | 'ten times off'
+  | 'surrogate missing'
+  | 'fraction missing in file'
+  | 'holding time passed';
 
 /** The columns (zero-based) a sheet's reading uses, so that a page can draw them over the sheet. */
 export interface RecognisedColumn {
@@ -265,6 +326,14 @@ export interface RecognisedColumn {
     | 'aliquot share'
     | 'injection'
     | 'acquired at'
+    | 'limit'
+    | 'retention time'
+    | 'ion ratio'
+    | 'signal to noise'
+    | 'manual integration'
+    | 'manual integration cause'
+    | 'sample volume'
+    | 'sample mass'
     | 'not used';
   readonly unit: string | null;
   /** In the wide layout: whose value or internal standard area it is. */
@@ -274,7 +343,8 @@ export interface RecognisedColumn {
 export interface SheetReading {
   readonly sheet: string;
   readonly layout: 'long' | 'wide';
-  /** Zero-based row of the header's last line. */
+  readonly orientation: Orientation;
+  /** Zero-based row of the header's last line; with analytes down, of the samples' names. */
   readonly headerRow: number;
   readonly basis: ReportedBasis;
   readonly columns: readonly RecognisedColumn[];
@@ -287,8 +357,49 @@ export interface Reading {
   readonly sheets: readonly SheetReading[];
 }
 
+/** What was found in the value cells and how it was taken. */
+export interface ValueMeaning {
+  /** As it stands in the cell; '' for a blank one; of numbers, which are not listed one by one, an example. */
+  readonly text: string;
+  readonly meaning:
+    | 'number'
+    | 'number written as text'
+    | 'not detected'
+    | 'below a limit'
+    | 'above the range'
+    | 'missing'
+    | 'date'
+    | 'not usable';
+  /** Cells. */
+  readonly count: number;
+  /** More than one where texts of one meaning are counted together. */
+  readonly texts: number;
+  /** The first of them. */
+  readonly sheet: string;
+  readonly cell: string;
+}
+
+/** What a sample label was found to mean. */
+export interface LabelReading {
+  readonly label: string;
+  /** The first row that has it; cell null: it stands in the sheet's name. */
+  readonly sheet: string;
+  readonly cell: string | null;
+  /** Rows. */
+  readonly count: number;
+  readonly how: 'name' | 'pattern' | 'run order' | 'assigned' | 'left out' | 'ambiguous' | 'not found';
+  /** In words; null: none. */
+  readonly place: string | null;
+  /** Of one that was not found the nearest names, of an ambiguous one what it can mean. */
+  readonly nearest: readonly string[];
+}
+
 export interface MappedImport {
+  /** What the file was read by. */
+  readonly map: ColumnMap;
   readonly reading: Reading;
   readonly records: readonly MappedRecord[];
   readonly problems: readonly Problem[];
+  readonly valueMeanings: readonly ValueMeaning[];
+  readonly labels: readonly LabelReading[];
 }

@@ -9,18 +9,18 @@ export interface UnitFactor {
   readonly per: number;
 }
 
-export type UnitTarget = Exclude<ReportedBasis, 'area'> | 'mL' | 'share';
+export type UnitTarget = Exclude<ReportedBasis, 'area'> | 'mL' | 'share' | 'g' | 'min';
 
-const same: UnitFactor = { times: 1, per: 1 };
+export const unchanged: UnitFactor = { times: 1, per: 1 };
 const times = (factor: number): UnitFactor => ({ times: factor, per: 1 });
 const per = (divisor: number): UnitFactor => ({ times: 1, per: divisor });
 
 /** Keys are written in lower case, with u for µ and without spaces. */
 const factors: Readonly<Record<UnitTarget, Readonly<Record<string, UnitFactor>>>> = {
   vial: {
-    'ng/ml': same,
-    'ug/l': same,
-    'pg/ul': same,
+    'ng/ml': unchanged,
+    'ug/l': unchanged,
+    'pg/ul': unchanged,
     'ug/ml': times(1000),
     'mg/l': times(1000),
     'ng/ul': times(1000),
@@ -28,18 +28,23 @@ const factors: Readonly<Record<UnitTarget, Readonly<Record<string, UnitFactor>>>
     'ng/l': per(1000)
   },
   ng_per_l: {
-    'ng/l': same,
-    'pg/ml': same,
+    'ng/l': unchanged,
+    'pg/ml': unchanged,
     'ug/l': times(1000),
     'ng/ml': times(1000),
     'mg/l': times(1_000_000),
     'ug/ml': times(1_000_000),
     'pg/l': per(1000)
   },
-  ng: { ng: same, ug: times(1000), mg: times(1_000_000), pg: per(1000) },
-  mL: { ml: same, l: times(1000), ul: per(1000) },
-  share: { '': same, '%': per(100) }
+  ng: { ng: unchanged, ug: times(1000), mg: times(1_000_000), pg: per(1000) },
+  mL: { ml: unchanged, l: times(1000), ul: per(1000) },
+  share: { '': unchanged, '%': per(100) },
+  g: { g: unchanged, mg: per(1000), kg: times(1000) },
+  min: { min: unchanged, s: per(60), sec: per(60) }
 };
+
+/** Units so short that a name can end in one by chance: they count in brackets only. */
+const markedTargets: readonly UnitTarget[] = ['g', 'min'];
 
 /** The spelling under which units are compared: µg/L, ug/l, µg L⁻¹ and µg per L are one. */
 export function unitKey(text: string): string {
@@ -54,7 +59,18 @@ export function unitKey(text: string): string {
 
 export function isUnit(text: string): boolean {
   const key = unitKey(text);
-  return key !== '' && Object.values(factors).some((units) => Object.hasOwn(units, key));
+  return (
+    key !== '' &&
+    Object.entries(factors).some(
+      ([target, units]) => !markedTargets.includes(target as UnitTarget) && Object.hasOwn(units, key)
+    )
+  );
+}
+
+/** Whether a text in brackets is a unit that would not count without them. */
+export function isMarkedUnit(text: string): boolean {
+  const key = unitKey(text);
+  return markedTargets.some((target) => Object.hasOwn(factors[target], key));
 }
 
 export function isConcentration(text: string): boolean {

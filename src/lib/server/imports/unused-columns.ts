@@ -1,43 +1,69 @@
+import type { TableMap } from '../../schemas/column-map';
 import type { ColumnPlan } from './column-plan';
-import type { SheetLayout } from './find-layout';
 import type { NameMatcher } from './name-matcher';
 import { parseValue } from './parse-value';
-import type { ProblemList } from './problems';
+import type { Problems } from './problems';
+import { readHeader } from './read-header';
 import { cellAt } from './sheet';
+import type { Section } from './sheet-sections';
 import type { Sheet } from './types';
 
+export interface UnusedContext {
+  readonly table: TableMap;
+  readonly plan: ColumnPlan;
+  readonly analytes: NameMatcher<string>;
+  readonly isTemplate: boolean;
+  readonly problems: Problems;
+}
+
 /**
- * Says which columns are left out. In the wide layout a column of numbers under an unknown name is probably an
+ * Says which columns are left out. Where columns are headed by analytes, a column of numbers under an unknown name is probably an
  * analyte that is not on the panel: an error, since its results would be lost without a word.
  */
 export function reportUnusedColumns(
   sheet: Sheet,
-  layout: SheetLayout,
-  plan: ColumnPlan,
-  analytes: NameMatcher<string>,
-  isTemplate: boolean,
-  problems: ProblemList
+  sections: readonly Section[],
+  { table, plan, analytes, isTemplate, problems }: UnusedContext
 ): void {
-  const headed = new Map(layout.columns.map((column) => [column.column, column]));
+  const isTurned = table.orientation === 'analytes down';
+  const headed = new Map(table.columns.map((column) => [column.column, column]));
   const used = new Set(
     plan.recognised.filter(({ meaning }) => meaning !== 'not used').map(({ column }) => column)
   );
-  const contents = contentsBelow(sheet, layout.headerRow, used);
+  const row = sections[0]?.headerRow ?? 0;
+  const leftOut = new Set(table.leftOut);
+  const contents = contentsOf(sheet, sections, used, leftOut);
   for (const [column, { isNumeric }] of [...contents].sort(([one], [other]) => one - other)) {
     const head = headed.get(column);
-    const at = { sheet: sheet.name, row: layout.headerRow, column };
+    const text = head?.header ?? '';
+    const at = { sheet: sheet.name, row, column };
     // Our own templates have columns that are there to be read by people.
-    if (isTemplate && head?.header.meaning === 'ignored') continue;
-    if (layout.layout === 'wide' && head?.header.meaning === 'unknown' && isNumeric) {
-      reportUnknownAnalyte(at, head.text, analytes, problems);
+    if (isTemplate && head?.means === 'ignored' && readHeader(text, analytes).meaning === 'ignored') continue;
+    if (table.orientation !== 'long' && head?.means === 'not understood' && isNumeric) {
+      reportUnknownAnalyte(at, text, isTurned, analytes, problems);
       continue;
     }
+    const line = isTurned ? 'row' : 'column';
     problems.note({
       code: 'column not used',
       ...at,
-      found: head ? `“${head.text}”` : 'a column without a header',
-      expected: 'columns that the import knows',
-      what: head ? `“${head.text}” is not used by the import.` : 'This column has no header and is not used.',
+      found: text === '' ? `a ${line} without a header` : `“${text}”`,
+      expected: `${line}s that the import knows`,
+      what:
+        text === '' ? `This ${line} has no header and is not used.` : `“${text}” is not used by the import.`,
+      fix: 'Nothing, if it is not meant to be stored. The file itself is kept whole.'
+    });
+  }
+  for (const line of table.leftOut) {
+    const cell = plan.sample === null ? null : cellAt(sheet, line, plan.sample);
+    problems.note({
+      code: 'column not used',
+      sheet: sheet.name,
+      row: line,
+      column: plan.sample ?? 0,
+      found: cell ? `“${cell.raw}”` : 'no label',
+      expected: `${isTurned ? 'columns' : 'rows'} with results`,
+      what: `This ${isTurned ? 'column' : 'row'} is left out.`,
       fix: 'Nothing, if it is not meant to be stored. The file itself is kept whole.'
     });
   }
@@ -46,9 +72,11 @@ export function reportUnusedColumns(
 function reportUnknownAnalyte(
   at: { readonly sheet: string; readonly row: number; readonly column: number },
   text: string,
+  isTurned: boolean,
   analytes: NameMatcher<string>,
-  problems: ProblemList
+  problems: Problems
 ): void {
+  const line = isTurned ? 'row' : 'column';
   const isMany = analytes.match(text).kind === 'many';
   const nearest = isMany ? null : analytes.nearest(text);
   problems.error({
@@ -58,27 +86,30 @@ function reportUnknownAnalyte(
     expected: 'a name, synonym or CAS number of the panel',
     what: isMany
       ? `“${text}” can be more than one analyte of the panel.`
-      : `“${text}” heads a column of numbers but is not on the panel.${nearest ? ` Is ${nearest} meant?` : ''}`,
-    fix: 'Correct the name, add it to the panel, or remove the column.'
+      : `“${text}” heads a ${line} of numbers but is not on the panel.${nearest ? ` Is ${nearest} meant?` : ''}`,
+    fix: `Correct the name, add it to the panel, or remove the ${line}.`
   });
 }
 
-/** Which of the other columns hold something below the header, and whether that is numbers. */
-function contentsBelow(
+/** Which of the other columns hold something in the rows that are read, and whether that is numbers. */
+function contentsOf(
   sheet: Sheet,
-  headerRow: number,
-  used: ReadonlySet<number>
+  sections: readonly Section[],
+  used: ReadonlySet<number>,
+  leftOut: ReadonlySet<number>
 ): ReadonlyMap<number, { readonly isNumeric: boolean }> {
   const contents = new Map<number, { isNumeric: boolean }>();
-  for (let at = 0; at < sheet.rowNumbers.length; at++) {
-    const row = sheet.rowNumbers[at] ?? 0;
-    if (row <= headerRow) continue;
-    for (let index = sheet.rowStarts[at] ?? 0; index < (sheet.rowStarts[at + 1] ?? 0); index++) {
-      const column = sheet.columns[index] ?? 0;
-      if (used.has(column) || contents.get(column)?.isNumeric) continue;
-      const { state } = parseValue(cellAt(sheet, row, column), null);
-      if (state !== 'missing')
-        contents.set(column, { isNumeric: state === 'value' || state === 'ambiguous' });
+  for (const { from, to } of sections) {
+    for (let at = from; at < to; at++) {
+      const row = sheet.rowNumbers[at] ?? 0;
+      if (leftOut.has(row)) continue;
+      for (let index = sheet.rowStarts[at] ?? 0; index < (sheet.rowStarts[at + 1] ?? 0); index++) {
+        const column = sheet.columns[index] ?? 0;
+        if (used.has(column) || contents.get(column)?.isNumeric) continue;
+        const { state } = parseValue(cellAt(sheet, row, column), null);
+        if (state !== 'missing')
+          contents.set(column, { isNumeric: state === 'value' || state === 'ambiguous' });
+      }
     }
   }
   return contents;
