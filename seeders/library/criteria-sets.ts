@@ -1,14 +1,15 @@
-import type { CriterionRule } from '../../src/lib/domain/criteria';
+import type { CriterionRule, WrittenRule, WrittenRuleType } from '../../src/lib/domain/criteria';
 
 /** A named set of acceptance rules, each with the document it was taken from. */
 export interface LibraryCriteriaSet {
   readonly name: string;
-  readonly rules: readonly CriterionRule[];
+  readonly rules: readonly WrittenRule[];
 }
 
 const documents = {
   m3535a: { citation: 'EPA SW-846 Method 3535A, revision 1', year: 2007 },
   m8000d: { citation: 'EPA SW-846 Method 8000D, revision 5', year: 2018 },
+  m8270e: { citation: 'EPA SW-846 Method 8270E, revision 6', year: 2018 },
   m625: { citation: 'EPA Method 625.1 (40 CFR 136, Appendix A)', year: 2016 },
   m539: { citation: 'EPA Method 539', year: 2010 },
   m525: { citation: 'EPA Method 525.3', year: 2012 },
@@ -17,20 +18,27 @@ const documents = {
 
 type Limits = Pick<CriterionRule, 'low' | 'high'>;
 
+const units: Readonly<Partial<Record<WrittenRuleType, CriterionRule['unit']>>> = {
+  'minimum preparations': 'count',
+  'minimum levels': 'count',
+  'minimum levels of a curve': 'count',
+  'determination coefficient': '1',
+  'time between checks': 'h'
+};
+
 function rule(
-  type: CriterionRule['type'],
+  type: WrittenRuleType,
   limits: Limits,
   document: keyof typeof documents,
   section: string | null,
   note: string | null = null,
   standing: 'seen' | 'memory' = 'seen'
-): CriterionRule {
+): WrittenRule {
   const { citation, year } = documents[document];
-  const unit = type === 'minimum preparations' ? 'count' : type === 'determination coefficient' ? '1' : '%';
   return {
     type,
     ...limits,
-    unit,
+    unit: units[type] ?? '%',
     citation: section === null ? citation : `${citation}, ${section}`,
     year,
     standing,
@@ -43,10 +51,10 @@ const atMost = (high: number): Limits => ({ low: null, high });
 const atLeast = (low: number): Limits => ({ low, high: null });
 const fromMemory = 'From memory: verify in the document before use.';
 
-const ownRule = (type: CriterionRule['type'], limits: Limits, note: string | null = null): CriterionRule => ({
+const ownRule = (type: WrittenRuleType, limits: Limits, note: string | null = null): WrittenRule => ({
   type,
   ...limits,
-  unit: type === 'minimum preparations' ? 'count' : '%',
+  unit: units[type] ?? '%',
   citation: "the lab's own",
   year: null,
   standing: 'own',
@@ -62,7 +70,7 @@ const example3535 = rule(
 );
 
 /** The documents hold single control samples to these limits; what a mean is held to is then the lab's own choice. */
-const meanHeldLikeSingles = (limits: Limits): CriterionRule =>
+const meanHeldLikeSingles = (limits: Limits): WrittenRule =>
   ownRule(
     'mean recovery',
     limits,
@@ -70,9 +78,24 @@ const meanHeldLikeSingles = (limits: Limits): CriterionRule =>
   );
 
 /** The calibration rules of 8000D, which other methods of its series refer to. */
-const calibration8000: readonly CriterionRule[] = [
+const calibration8000: readonly WrittenRule[] = [
   rule('response factor deviation', atMost(20), 'm8000d', '11.4 to 11.7'),
+  rule(
+    'relative standard error',
+    atMost(20),
+    'm8000d',
+    '11.4 to 11.7',
+    'The limit for the RSD, where a method sets no other.'
+  ),
   rule('determination coefficient', atLeast(0.99), 'm8000d', '11.4 to 11.7', 'For a fitted line or curve.'),
+  rule(
+    'minimum levels',
+    atLeast(5),
+    'm8000d',
+    '11.4 to 11.7',
+    'Of an average response factor or a straight line.'
+  ),
+  rule('minimum levels of a curve', atLeast(6), 'm8000d', '11.4 to 11.7', 'Of a curve of second order.'),
   rule('calibration error', atMost(30), 'm8000d', '11.5.4.1', 'Of every level, back-calculated.'),
   rule(
     'calibration error at the lowest level',
@@ -80,6 +103,33 @@ const calibration8000: readonly CriterionRule[] = [
     'm8000d',
     '11.5.4.1',
     'May be accepted at the lowest level.'
+  )
+];
+
+/** The rules of 8270E for what is run in a sequence beside the levels and the extracts. */
+const sequence8270: readonly WrittenRule[] = [
+  rule('second-source check', between(70, 130), 'm8270e', '11.3 to 11.5'),
+  rule(
+    'continuing check',
+    between(80, 120),
+    'm8270e',
+    '11.3 to 11.5',
+    'Within 20 %: the difference of a response factor from its mean, or the drift of a concentration.'
+  ),
+  rule('time between checks', atMost(12), 'm8270e', '11.3 to 11.5'),
+  rule(
+    'analytes failing a check',
+    atMost(20),
+    'm8270e',
+    '11.3 to 11.5',
+    'Beyond that, action is due before samples are run. 8000D has 10 %, and a new calibration.'
+  ),
+  rule(
+    'internal standard area',
+    between(50, 200),
+    'm8270e',
+    '11.3 to 11.5',
+    'Of the middle level or the mean of the calibration. In samples the latest continuing check may stand in its place.'
   )
 ];
 
@@ -97,7 +147,9 @@ export const workingCriteria: LibraryCriteriaSet = {
       '8.4.5',
       'Interim limits there, for surrogates that have none of their own; at least 80 % of the surrogates must meet them.'
     ),
-    ...calibration8000
+    ...calibration8000,
+    ...sequence8270,
+    ownRule('instrument blank', atMost(50), 'Half of the lowest level: common practice, no source.')
   ]
 };
 
@@ -116,7 +168,15 @@ export const libraryCriteriaSets: readonly LibraryCriteriaSet[] = [
         '9.4',
         'Interim limits of laboratory control samples, until the lab has limits of its own.'
       ),
-      ...calibration8000
+      ...calibration8000,
+      rule(
+        'continuing check',
+        between(80, 120),
+        'm8000d',
+        '11.4 to 11.7',
+        'Within 20 %, as difference or drift.'
+      ),
+      rule('analytes failing a check', atMost(10), 'm8000d', '11.4 to 11.7', 'Beyond that, calibrate anew.')
     ]
   },
   {
@@ -140,12 +200,20 @@ export const libraryCriteriaSets: readonly LibraryCriteriaSet[] = [
       rule('minimum preparations', atLeast(4), 'm625', '8.2', 'Four control samples in reagent water.'),
       rule('response factor deviation', atMost(35), 'm625', null, 'Stated there as below 35 %.'),
       rule(
+        'relative standard error',
+        atMost(35),
+        'm625',
+        null,
+        'Stated there as below 35 %, in place of the RSD.'
+      ),
+      rule(
         'determination coefficient',
         atLeast(0.92),
         'm625',
         null,
         'Of a weighted line; stated as above 0.920.'
-      )
+      ),
+      rule('internal standard area', between(50, 200), 'm625', null)
     ]
   },
   {
@@ -167,7 +235,11 @@ export const libraryCriteriaSets: readonly LibraryCriteriaSet[] = [
         'm539',
         'Table 12',
         '50 % at or below twice the reporting level.'
-      )
+      ),
+      rule('second-source check', between(70, 130), 'm539', 'Table 12', 'The quality control sample.'),
+      rule('continuing check', between(70, 130), 'm539', 'Table 12'),
+      rule('continuing check at the lowest level', between(50, 150), 'm539', 'Table 12'),
+      rule('internal standard area', between(50, 150), 'm539', 'Table 12', 'Of the mean of the calibration.')
     ]
   },
   {
@@ -175,7 +247,16 @@ export const libraryCriteriaSets: readonly LibraryCriteriaSet[] = [
     rules: [
       rule('mean recovery', between(70, 130), 'm525', null, fromMemory, 'memory'),
       rule('relative standard deviation', atMost(20), 'm525', null, fromMemory, 'memory'),
-      rule('surrogate recovery', between(70, 130), 'm525', null, fromMemory, 'memory')
+      rule('surrogate recovery', between(70, 130), 'm525', null, fromMemory, 'memory'),
+      rule('internal standard area', between(50, 150), 'm525', null, fromMemory, 'memory'),
+      rule(
+        'internal standard area against the latest check',
+        between(70, 130),
+        'm525',
+        null,
+        fromMemory,
+        'memory'
+      )
     ]
   },
   {

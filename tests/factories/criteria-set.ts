@@ -1,11 +1,11 @@
-import type { CriterionRule } from '../../src/lib/domain/criteria';
+import type { CriterionRule, WrittenRule } from '../../src/lib/domain/criteria';
 import { newId } from '../../src/lib/server/db/entity-id';
 import { CriteriaSet } from '../../src/lib/server/db/models/criteria-set';
 import { CriteriaSetVersion } from '../../src/lib/server/db/models/criteria-set-version';
 import { inTransaction } from '../../src/lib/server/db/transaction';
 
 /** A rule that the lab set for itself. */
-export function makeRule(overrides: Readonly<Partial<CriterionRule>> = {}): CriterionRule {
+export function makeRule(overrides: Readonly<Partial<WrittenRule>> = {}): WrittenRule {
   return {
     type: 'mean recovery',
     low: 70,

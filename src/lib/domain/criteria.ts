@@ -28,8 +28,10 @@ export const ruleTypes = [
   // In percent of the lowest level.
   'instrument blank'
 ] as const;
+/** What a criteria set holds. */
+export type WrittenRuleType = (typeof ruleTypes)[number];
 /** A curve runs one way whatever a set says, so that nobody writes a rule for it. */
-export type RuleType = (typeof ruleTypes)[number] | 'monotone curve';
+export type RuleType = WrittenRuleType | 'monotone curve';
 
 /** One acceptance rule with the document it was taken from. A citation covers only what the document says. */
 export interface CriterionRule {
@@ -44,6 +46,9 @@ export interface CriterionRule {
   readonly standing: 'seen' | 'memory' | 'own';
   readonly note: string | null;
 }
+
+/** A rule as a criteria set holds it. */
+export type WrittenRule = CriterionRule & { readonly type: WrittenRuleType };
 
 /** What a mean recovery and its RSD are held against, with the rules they came from. */
 export interface RecoveryCriteria {

@@ -23,6 +23,7 @@ export function panelOf(...entries: readonly PanelEntry[]): ReadonlyMap<string, 
 
 const reported = {
   importId: 'import-1',
+  injectionId: 'injection-1',
   basis: 'area',
   state: 'value',
   value: null,

@@ -26,6 +26,8 @@ export interface PanelEntry {
 export interface Reported {
   readonly id: string;
   readonly importId: string;
+  /** The run of the instrument it came of. */
+  readonly injectionId: string;
   readonly entryId: string;
   readonly basis: ReportedBasis;
   readonly state: MeasurementState;

@@ -35,6 +35,10 @@ export interface LevelInjection extends MeasuredInjection {
   readonly levelId: string;
 }
 
+export interface CheckInjection extends MeasuredInjection {
+  readonly checkStandardId: string;
+}
+
 /** One counting number with the cell it stood in, joined with its injection. */
 export interface CountingMeasurement<Injection> {
   /** Within the lab. */
@@ -292,5 +296,46 @@ export async function readCalibrationMeasurements(
       calibrationSetId
     ]);
     return counting(rows, injections, imports, ({ levelId }) => levelId);
+  });
+}
+
+/**
+ * The counting measurements of every check and instrument blank of a study. A check is run many times under one label, so that the moment of its injection
+ * is part of its place: a later stored import covers an earlier one only at the same moment, analyte by analyte, and a check
+ * without a moment is covered by nothing. In no particular order.
+ */
+export async function readCheckMeasurements(
+  where: Readonly<{ labId: string; studyId: string }>
+): Promise<CountingMeasurement<CheckInjection>[]> {
+  const { labId, studyId } = where;
+  return withReadingClient(async (client) => {
+    const imports = await storedImports(client, labId, studyId);
+    if (imports.size === 0) return [];
+    const found = await arrays<[string, string, number, number, Date | null, string, string]>(
+      client,
+      `SELECT i.id, i.import_id, i.number, i.dilution, i.run_at, i.check_standard_id, c.calibration_set_id
+        FROM check_standards c JOIN injections i ON i.check_standard_id = c.id
+        WHERE c.lab_id = $1 AND c.study_id = $2`,
+      [labId, studyId]
+    );
+    if (found.length === 0) return [];
+    const injections = new Map<string, CheckInjection>(
+      found.map(([id, importId, number, dilution, runAt, checkStandardId]) => [
+        id,
+        { id, importId, number, dilution, runAt, checkStandardId }
+      ])
+    );
+    const sets = [...new Set(found.map(([, , , , , , setId]) => setId))];
+    const rows = await arrays<Cells>(
+      client,
+      `${selected} WHERE calibration_set_id = ANY ($2::uuid[]) AND lab_id = $1`,
+      [labId, sets]
+    );
+    return counting(
+      rows,
+      injections,
+      imports,
+      ({ checkStandardId, runAt, importId }) => `${checkStandardId} ${runAt?.getTime() ?? importId}`
+    );
   });
 }
