@@ -1,5 +1,5 @@
 import ExcelJS from 'exceljs';
-import type { CriterionRule } from '../../../src/lib/domain/criteria';
+import type { WrittenRule } from '../../../src/lib/domain/criteria';
 import type { Actor } from '../../../src/lib/domain/actor';
 import { calibrationSetForm } from '../../../src/lib/schemas/calibration';
 import { experimentForm } from '../../../src/lib/schemas/experiment';
@@ -60,7 +60,7 @@ interface UploadOptions {
 }
 
 /** @param rules criteria in place of the usual ones (mean 70 to 130 %, RSD 20 %, five preparations) */
-export async function openBench(rules: readonly Partial<CriterionRule>[] = []): Promise<Bench> {
+export async function openBench(rules: readonly Partial<WrittenRule>[] = []): Promise<Bench> {
   const actor = await makeMember({ role: 'chemist' });
   const made = await makeStudy(actor);
   const { code } = made.study;

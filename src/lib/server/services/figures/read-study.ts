@@ -2,6 +2,7 @@ import type { PoolClient } from 'pg';
 import type { Spike } from '../../amounts/types';
 import {
   readCalibrationMeasurements,
+  readCheckMeasurements,
   readStudyMeasurements,
   type CountingMeasurement
 } from '../../db/measurement-read';
@@ -10,14 +11,17 @@ import { inSnapshot } from '../../db/snapshot';
 import { NotFound } from '../../errors';
 import type { ExtractReported, FitChoice, Fraction, LevelReported, Reported } from '../../amounts/types';
 import type {
+  DuplicateChoice,
   ExclusionRecord,
+  ReplicateDays,
   StudyCalibrationSet,
   StudyData,
   StudyExperiment,
   StudyImport,
   StudyPanelEntry,
   StudyStageData,
-  StudyVariant
+  StudyVariant,
+  ValidationChoice
 } from './study-data';
 
 /** The study's id and the version of its data, or null when the lab has no such study. */
@@ -52,6 +56,7 @@ export async function readStudy(labId: string, studyId: string): Promise<StudyDa
         ordered(rows.map((row) => reportedOf(row, parts.entryOf, { levelId: row.injection.levelId })))
       );
     }
+    const checks = await readCheckMeasurements({ labId, studyId });
     const byExperiment = new Map<string, ExtractReported[]>();
     for (const row of measured) {
       const { experimentId, replicateId, fractionId, finalVolumeMl, aliquotShare } = row.injection.extract;
@@ -66,7 +71,12 @@ export async function readStudy(labId: string, studyId: string): Promise<StudyDa
         ...item,
         reported: ordered(byExperiment.get(item.id) ?? [])
       })),
-      calibrationSets: data.calibrationSets.map((set) => ({ ...set, reported: levels.get(set.id) ?? [] }))
+      calibrationSets: data.calibrationSets.map((set) => ({ ...set, reported: levels.get(set.id) ?? [] })),
+      checkReported: ordered(
+        checks.map((row) =>
+          reportedOf(row, parts.entryOf, { checkStandardId: row.injection.checkStandardId })
+        )
+      )
     };
   });
 }
@@ -94,8 +104,14 @@ async function readParts(client: PoolClient, labId: string, studyId: string): Pr
     variants: await readVariants(of),
     experiments: await readExperiments(of, exclusionRecords),
     calibrationSets: await readCalibrationSets(of),
+    checkStandards: await readCheckStandards(of),
+    checkReported: [],
+    sequences: await of<StudyData['sequences'][number]>(sequencesSql),
+    injections: await readInjections(of),
     imports: await of<StudyImport>(importsSql),
     exclusionRecords,
+    validationEvidence: await of<ValidationChoice>(validationEvidenceSql),
+    duplicatePairs: await of<DuplicateChoice>(duplicatePairsSql),
     entryOf
   };
 }
@@ -141,6 +157,19 @@ const importsSql = `SELECT i.id, i.file_name AS "fileName", i.sheet_names AS "sh
     i.end_reason AS "endReason", i.counts
   FROM imports i LEFT JOIN users u ON u.id = i.stored_by
   WHERE i.lab_id = $1 AND i.study_id = $2 AND i.state IN ('stored', 'superseded', 'withdrawn') ORDER BY i.stored_order`;
+
+const moment = (column: string): string =>
+  `to_char(${column} AT TIME ZONE 'UTC', 'YYYY-MM-DD"T"HH24:MI:SS"Z"')`;
+
+const validationEvidenceSql = `SELECT e.part, e.variant_id AS "variantId", e.experiment_id AS "experimentId", e.reason, u.name AS by,
+    ${moment('e.created_at')} AS at
+  FROM validation_evidence e JOIN experiments x ON x.id = e.experiment_id JOIN users u ON u.id = e.chosen_by
+  WHERE e.lab_id = $1 AND e.study_id = $2 ORDER BY x.number`;
+
+const duplicatePairsSql = `SELECT p.id, p.experiment_id AS "experimentId", p.first_replicate_id AS "firstId",
+    p.second_replicate_id AS "secondId", p.reason, u.name AS by, ${moment('p.created_at')} AS at
+  FROM duplicate_pairs p JOIN experiments x ON x.id = p.experiment_id JOIN users u ON u.id = p.declared_by
+  WHERE p.lab_id = $1 AND p.study_id = $2 ORDER BY x.number, p.created_at, p.id`;
 
 async function readVariants(of: Select): Promise<StudyVariant[]> {
   const variants = await of<Omit<StudyVariant, 'steps' | 'evidence'>>(
@@ -207,7 +236,14 @@ async function readExperiments(
   const experiments = await of<
     Omit<
       StudyExperiment,
-      'fractions' | 'replicates' | 'spikes' | 'replicateSpikes' | 'additions' | 'exclusions' | 'reported'
+      | 'fractions'
+      | 'replicates'
+      | 'spikes'
+      | 'replicateSpikes'
+      | 'additions'
+      | 'exclusions'
+      | 'reported'
+      | 'replicateDays'
     >
   >(
     `SELECT e.id, e.number, e.title, t.kind AS "stageKind", t.key AS "stageKey", e.subtract, e.medium, e.matrix,
@@ -226,6 +262,11 @@ async function readExperiments(
         sample_mass_g AS "sampleMassG"
       FROM replicates WHERE lab_id = $1 AND study_id = $2
       ORDER BY array_position(ARRAY['spiked', 'unspiked', 'method blank', 'post-extraction spike', 'solvent standard'], kind), number`
+  );
+  const days = await of<ReplicateDays & Own & { id: string }>(
+    `SELECT experiment_id AS "experimentId", id, to_char(extracted_at AT TIME ZONE 'UTC', 'YYYY-MM-DD') AS "extractedOn",
+        to_char(analysed_at AT TIME ZONE 'UTC', 'YYYY-MM-DD') AS "analysedOn"
+      FROM replicates WHERE lab_id = $1 AND study_id = $2 AND (extracted_at IS NOT NULL OR analysed_at IS NOT NULL)`
   );
   const spikes = await of<Spike & Own>(
     `SELECT experiment_id AS "experimentId", replicate_kind AS "replicateKind", panel_entry_id AS "entryId", amount_ng AS "amountNg"
@@ -251,6 +292,7 @@ async function readExperiments(
     replicateSpikes: own(replicateSpikes, item.id),
     additions: own(additions, item.id),
     exclusions: exclusions.filter((record) => record.experimentId === item.id && record.lifted === null),
+    replicateDays: new Map(own(days, item.id).map(({ id, ...found }) => [id, found] as const)),
     reported: []
   }));
 }
@@ -297,9 +339,78 @@ async function readCalibrationSets(of: Select): Promise<StudyCalibrationSet[]> {
   }));
 }
 
+async function readCheckStandards(of: Select): Promise<StudyData['checkStandards']> {
+  const checks = await of<Omit<StudyData['checkStandards'][number], 'concentrations'>>(
+    `SELECT id, calibration_set_id AS "calibrationSetId", kind, label, source, note FROM check_standards
+      WHERE lab_id = $1 AND study_id = $2 ORDER BY created_at, id`
+  );
+  const concentrations = await of<{ checkId: string; entryId: string; concentration: number }>(
+    `SELECT check_standard_id AS "checkId", panel_entry_id AS "entryId", concentration_ng_per_ml AS concentration
+      FROM check_standard_concentrations WHERE lab_id = $1 AND study_id = $2`
+  );
+  return checks.map((check) => ({
+    ...check,
+    concentrations: new Map(
+      concentrations
+        .filter(({ checkId }) => checkId === check.id)
+        .map(({ entryId, concentration }) => [entryId, concentration] as const)
+    )
+  }));
+}
+
+const sequencesSql = `SELECT s.id, s.import_id AS "importId", s.instrument, to_char(s.run_on, 'YYYY-MM-DD') AS "runOn"
+  FROM sequences s JOIN imports i ON i.id = s.import_id AND i.state = 'stored'
+  WHERE s.lab_id = $1 AND s.study_id = $2 ORDER BY i.stored_order, s.id`;
+
+async function readInjections(of: Select): Promise<StudyData['injections']> {
+  const rows = await of<{
+    id: string;
+    sequenceId: string;
+    position: number;
+    kind: 'level' | 'check' | 'blank' | 'extract';
+    number: number;
+    dilution: number;
+    runAt: Date | null;
+    levelId: string | null;
+    levelSetId: string | null;
+    checkStandardId: string | null;
+    experimentId: string | null;
+    replicateId: string | null;
+    fractionId: string | null;
+    finalVolumeMl: number | null;
+  }>(
+    `SELECT j.id, j.sequence_id AS "sequenceId", j.position, j.kind, j.number, j.dilution, j.run_at AS "runAt", j.level_id AS "levelId",
+        l.calibration_set_id AS "levelSetId", j.check_standard_id AS "checkStandardId", x.experiment_id AS "experimentId",
+        x.replicate_id AS "replicateId", x.fraction_id AS "fractionId", x.final_volume_ml AS "finalVolumeMl"
+      FROM injections j JOIN imports i ON i.id = j.import_id AND i.state = 'stored'
+      LEFT JOIN calibration_levels l ON l.id = j.level_id LEFT JOIN extracts x ON x.id = j.extract_id
+      WHERE j.lab_id = $1 AND j.study_id = $2 ORDER BY i.stored_order, j.position`
+  );
+  return rows.map(({ id, sequenceId, position, number, dilution, runAt, ...row }) => ({
+    id,
+    sequenceId,
+    position,
+    number,
+    dilution,
+    runAt: runAt?.getTime() ?? null,
+    subject:
+      row.kind === 'extract'
+        ? {
+            kind: row.kind,
+            experimentId: row.experimentId ?? '',
+            replicateId: row.replicateId ?? '',
+            fractionId: row.fractionId,
+            finalVolumeMl: row.finalVolumeMl
+          }
+        : row.kind === 'level'
+          ? { kind: row.kind, calibrationSetId: row.levelSetId ?? '', levelId: row.levelId ?? '' }
+          : { kind: row.kind, checkStandardId: row.checkStandardId ?? '' }
+  }));
+}
+
 /** The place is spread last, into the object that is being made: the other way round takes many times as long. */
 function reportedOf<Place extends object>(
-  row: CountingMeasurement<{ readonly number: number; readonly dilution: number }>,
+  row: CountingMeasurement<{ readonly id: string; readonly number: number; readonly dilution: number }>,
   entryOf: ReadonlyMap<string, string>,
   place: Place
 ): Reported & Place {
@@ -307,6 +418,7 @@ function reportedOf<Place extends object>(
   return {
     id: row.id,
     importId: row.importId,
+    injectionId: row.injection.id,
     entryId: entry(row.analyteId),
     basis: row.basis,
     state: row.state,

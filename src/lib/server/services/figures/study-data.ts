@@ -1,6 +1,8 @@
 import type { CriterionRule, RecoveryCriteria } from '../../../domain/criteria';
 import type { Medium, StageKind } from '../../../domain/stages';
+import type { ValidationPartKey } from '../../../domain/validation-parts';
 import type { StepKind, StudyState } from '../../../domain/vocabulary';
+import type { CheckReported, CheckStandard, Sequence, SequenceInjection } from '../../amounts/sequence-types';
 import type { CalibrationSet, ExperimentData, PanelEntry } from '../../amounts/types';
 
 /** One study as plain numbers and words, read at one moment: everything its figures and its summary are made of. */
@@ -29,10 +31,42 @@ export interface StudyData {
   /** In order of their number. */
   readonly experiments: readonly StudyExperiment[];
   readonly calibrationSets: readonly StudyCalibrationSet[];
+  readonly checkStandards: readonly CheckStandard[];
+  /** Counting numbers of checks and blanks. */
+  readonly checkReported: readonly CheckReported[];
+  /** Of stored imports, in the order of storing. */
+  readonly sequences: readonly Sequence[];
+  readonly injections: readonly SequenceInjection[];
   /** Stored, superseded and withdrawn ones, in the order of storing. */
   readonly imports: readonly StudyImport[];
   /** Lifted ones too, in the order of time. */
   readonly exclusionRecords: readonly ExclusionRecord[];
+  /** In order of the experiments' numbers. */
+  readonly validationEvidence: readonly ValidationChoice[];
+  readonly duplicatePairs: readonly DuplicateChoice[];
+}
+
+/** An experiment that a person chose to stand for a part of the validation. */
+export interface ValidationChoice {
+  readonly part: ValidationPartKey;
+  /** null: for every variant. */
+  readonly variantId: string | null;
+  readonly experimentId: string;
+  readonly reason: string;
+  readonly by: string;
+  /** ISO 8601, UTC. */
+  readonly at: string;
+}
+
+/** Two preparations that a person declared to be duplicates of each other. */
+export interface DuplicateChoice {
+  readonly id: string;
+  readonly experimentId: string;
+  readonly firstId: string;
+  readonly secondId: string;
+  readonly reason: string;
+  readonly by: string;
+  readonly at: string;
 }
 
 export interface StudyStageData {
@@ -93,6 +127,13 @@ export interface StudyExperiment extends ExperimentData {
   /** ISO date. */
   readonly performedOn: string | null;
   readonly analystName: string | null;
+  /** Days (ISO, UTC) recorded for single preparations, by their id. */
+  readonly replicateDays: ReadonlyMap<string, ReplicateDays>;
+}
+
+export interface ReplicateDays {
+  readonly extractedOn: string | null;
+  readonly analysedOn: string | null;
 }
 
 export interface StudyCalibrationSet extends CalibrationSet {

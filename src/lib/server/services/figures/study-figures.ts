@@ -3,6 +3,7 @@ import { matrixFigures, type MatrixFigures } from '../../amounts/matrix-effects'
 import { methodFigures, type MethodFigures } from '../../amounts/method-figures';
 import { recoveryInput, type RecoveryRefusal } from '../../amounts/recovery-input';
 import { relativeFigures, type RelativeFigures } from '../../amounts/relative-recovery';
+import { sequenceChecks, type SequenceChecks } from '../../amounts/sequence-checks';
 import { surrogateFigures, type SurrogateFigures } from '../../amounts/surrogates';
 import { variantFigures, type StageOfVariant, type VariantFigures } from '../../amounts/variant-figures';
 import { NotFound } from '../../errors';
@@ -37,6 +38,8 @@ export interface StudyFigures {
   readonly variant: (variant: StudyVariant, experiment?: StudyExperiment) => VariantContext;
   readonly surrogate: (experimentId: string, entryId: string) => SurrogateFigures;
   readonly matrix: (experimentId: string, entryId: string) => MatrixFigures | null;
+  /** What was run to watch over the instrument, and what is flagged by it. */
+  readonly checks: () => SequenceChecks;
 }
 
 /** @throws NotFound for ids that are not of this study */
@@ -75,6 +78,19 @@ export function studyFigures(data: StudyData): StudyFigures {
       : { ready: true, ...figures };
   });
 
+  const checks = remembered(() =>
+    sequenceChecks({
+      panel: entries,
+      sets: data.calibrationSets,
+      experiments: data.experiments,
+      checkStandards: data.checkStandards,
+      checkReported: data.checkReported,
+      sequences: data.sequences,
+      injections: data.injections,
+      rules: data.criteriaSet.rules
+    })
+  );
+
   const contexts = remembered((key: string): VariantContext => {
     const [variantId, topId] = key.split(' ');
     const variant = orNotFound(data.variants.find((item) => item.id === variantId));
@@ -103,7 +119,8 @@ export function studyFigures(data: StudyData): StudyFigures {
     entry,
     variant: (variant, experiment) => contexts(experiment ? `${variant.id} ${experiment.id}` : variant.id),
     surrogate: perEntry((of, item) => surrogateFigures(of, item, surrogateRule)),
-    matrix: perEntry((of, item) => matrixFigures(of, item))
+    matrix: perEntry((of, item) => matrixFigures(of, item)),
+    checks: () => checks('')
   };
 }
 
