@@ -1,6 +1,7 @@
 import { beforeAll, describe, expect, it } from 'vitest';
 import type { PanelEntry } from '../../../src/lib/server/db/models/panel-entry';
-import { chooseFit, getCalibrationSet } from '../../../src/lib/server/services/calibrations';
+import { chooseFit } from '../../../src/lib/server/services/calibration-choices';
+import { getCalibrationSet } from '../../../src/lib/server/services/calibrations';
 import { getPanel, setPanelEntry } from '../../../src/lib/server/services/panels';
 import { provenanceView } from '../../../src/lib/server/services/results';
 import { openBench, portions, type Bench, type Row } from './bench';

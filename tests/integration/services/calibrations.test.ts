@@ -1,8 +1,8 @@
 import { expect, test } from 'vitest';
 import { calibrationSetForm, fitForm } from '../../../src/lib/schemas/calibration';
 import { Conflict, Forbidden, Invalid, NotFound } from '../../../src/lib/server/errors';
+import { chooseFit } from '../../../src/lib/server/services/calibration-choices';
 import {
-  chooseFit,
   createCalibrationSet,
   getCalibrationSet,
   getCalibrationSets

@@ -1,3 +1,4 @@
+import type { AccessScope } from '../../domain/access-scopes';
 import { permissions, type Permission } from '../../domain/permissions';
 
 /** Who gets in: anybody, any member of the lab, or the roles that hold a permission. */
@@ -11,6 +12,11 @@ export interface RouteRule {
    * at an endpoint, for each method. What is not listed is refused.
    */
   readonly write?: Access | Readonly<Record<string, Access>>;
+  /**
+   * Methods of an endpoint that are for programs alone: what the access key must be for. A session does not do, so that
+   * no page of another site can have a browser send them. Other writes are closed to keys; reading takes the scope `read`.
+   */
+  readonly byKey?: Readonly<Record<string, AccessScope>>;
 }
 
 /**
@@ -42,6 +48,10 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
       remove: 'members.manage'
     }
   },
+  '/(app)/lab/access-keys': {
+    read: 'access-keys.own',
+    write: { make: 'access-keys.own', revoke: 'access-keys.own' }
+  },
   '/(app)/lab/settings': { read: 'lab.settings', write: { default: 'lab.settings' } },
   '/(app)/lab/history': { read: 'lab.settings' },
   '/(app)/studies/[study]/history': { read: 'studies.see' },
@@ -65,6 +75,8 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
     read: 'studies.see',
     write: { paste: 'studies.edit', set: 'studies.edit', renew: 'studies.edit', remove: 'studies.edit' }
   },
+  '/(app)/studies/[study]/panel/chemistry': { read: 'studies.see' },
+  '/(app)/studies/[study]/panel/chemistry.csv': { read: 'export.any' },
   '/(app)/studies/[study]/variants': { read: 'studies.see' },
   '/(app)/studies/[study]/variants/new': { read: 'studies.edit', write: { default: 'studies.edit' } },
   '/(app)/studies/[study]/variants/[variant]': {
@@ -98,9 +110,14 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
     read: 'studies.see',
     write: { choose: 'calibrations.choose' }
   },
+  '/(app)/studies/[study]/calibration/[set]/levels': {
+    read: 'calibrations.choose',
+    write: { preview: 'calibrations.choose', store: 'calibrations.choose' }
+  },
   '/(public)/help': { read: 'public' },
   '/(public)/help/figures': { read: 'public' },
   '/(public)/help/data-files': { read: 'public' },
+  '/(public)/help/api': { read: 'public' },
 
   '/(app)/studies/[study]/data': {
     read: 'studies.see',
@@ -117,6 +134,10 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   },
   '/(app)/studies/[study]/data/[import]/file': { read: 'studies.see' },
   '/(app)/studies/[study]/experiments/[experiment]/template.xlsx': { read: 'studies.see' },
+  '/(app)/studies/[study]/experiments/[experiment]/type': {
+    read: 'data.enter',
+    write: { keep: 'data.enter', plan: 'data.enter', discard: 'data.enter', check: 'data.enter' }
+  },
 
   '/(app)/studies/[study]': { read: 'studies.see' },
   '/(app)/studies/[study]/balance': { read: 'studies.see' },
@@ -130,9 +151,22 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   '/(app)/studies/[study]/compare.csv': { read: 'export.any' },
   '/(app)/studies/[study]/summary': { read: 'studies.see' },
   '/(app)/studies/[study]/summary.xlsx': { read: 'export.any' },
+  '/api/v1/openapi.json': { read: 'public' },
+  '/api/v1/studies': { read: 'studies.see' },
+  '/api/v1/studies/[study]': { read: 'studies.see' },
+  '/api/v1/studies/[study]/experiments': { read: 'studies.see' },
+  '/api/v1/studies/[study]/experiments/[experiment]/template.xlsx': { read: 'studies.see' },
+  '/api/v1/studies/[study]/imports': {
+    read: 'studies.see',
+    write: { POST: 'data.enter' },
+    byKey: { POST: 'import' }
+  },
+  '/api/v1/studies/[study]/imports/[import]': { read: 'studies.see' },
+  '/api/v1/studies/[study]/imports/[import]/file': { read: 'studies.see' },
   '/api/v1/studies/[study]/results': { read: 'studies.see' },
   '/api/v1/studies/[study]/balance': { read: 'studies.see' },
   '/api/v1/studies/[study]/stages': { read: 'studies.see' },
+  '/api/v1/studies/[study]/chemistry': { read: 'studies.see' },
   '/api/v1/studies/[study]/walk-back': { read: 'studies.see' },
   '/api/v1/studies/[study]/compare': { read: 'studies.see' },
   '/api/v1/studies/[study]/portions': { read: 'studies.see' },
@@ -155,12 +189,25 @@ export function requiredAccess(
 ): Access | null {
   if (!Object.hasOwn(rules, request.routeId)) return null;
   const { read, write } = rules[request.routeId] as RouteRule;
-  if (request.method === 'GET' || request.method === 'HEAD') return read;
+  if (reads(request.method)) return read;
   if (write === undefined) return null;
   if (typeof write === 'string') return write;
   const names = [request.method, ...(request.method === 'POST' ? [actionName(request.parameters)] : [])];
   const listed = names.find((name) => Object.hasOwn(write, name));
   return listed === undefined ? null : (write[listed] ?? null);
+}
+
+const reads = (method: string): boolean => method === 'GET' || method === 'HEAD';
+
+/** What an access key must be for; null: no key does it. */
+export function scopeNeeded(routeId: string, method: string): AccessScope | null {
+  if (reads(method)) return 'read';
+  return routeAccess[routeId]?.byKey?.[method] ?? null;
+}
+
+/** True for a write that is for access keys alone. */
+export function isWriteByKey(routeId: string, method: string): boolean {
+  return !reads(method) && scopeNeeded(routeId, method) !== null;
 }
 
 /** True for an access that only some roles have. */

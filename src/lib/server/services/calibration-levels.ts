@@ -14,7 +14,7 @@ const tidied = (value: number): number => Number(value.toPrecision(14));
 
 /**
  * Spells out the concentrations of a set, level by level and entry by entry: the level's own, times the entry's factor; for an
- * internal standard with a constant one, that; a single given one in place of both. Entries at 0 are not in the standards; an injection
+ * internal standard with a constant one, that; a single given one in place of both, 0 too. Entries at 0 are not in the standards; an injection
  * or extraction standard without a constant is left out, since it does not follow the levels.
  */
 export function spelledConcentrations(
@@ -29,6 +29,16 @@ export function spelledConcentrations(
         problems.push({ path: `${part}.${id}`, message: 'This entry is not on the panel.' });
     }
   }
+  for (const [index, { cells, concentrationNgPerMl }] of form.levels.entries()) {
+    for (const id of Object.keys(cells ?? {}).filter((item) => !known.has(item)))
+      problems.push({ path: `levels.${index}.cells.${id}`, message: 'This entry is not on the panel.' });
+    if (concentrationNgPerMl === null && !Object.values(cells ?? {}).some((value) => value !== null)) {
+      problems.push({
+        path: `levels.${index}.concentrationNgPerMl`,
+        message: 'Give the concentration of this level, in ng/mL, or what it holds of single analytes.'
+      });
+    }
+  }
   const labels = new Set<string>();
   for (const [index, { label }] of form.levels.entries()) {
     if (labels.has(label)) {
@@ -38,11 +48,11 @@ export function spelledConcentrations(
   }
   return panel.flatMap(({ id, role }) => {
     const isStandard = role === 'extraction internal standard' || role === 'injection internal standard';
-    return form.levels.flatMap(({ label, concentrationNgPerMl }): LevelConcentration[] => {
-      const single = form.concentrations[id]?.[label] ?? null;
+    return form.levels.flatMap(({ label, concentrationNgPerMl, cells }): LevelConcentration[] => {
+      const single = cells?.[id] ?? form.concentrations[id]?.[label] ?? null;
       const constant = form.constants[id] ?? null;
       const following =
-        isStandard && form.factors[id] == null ? 0 : concentrationNgPerMl * (form.factors[id] ?? 1);
+        isStandard && form.factors[id] == null ? 0 : (concentrationNgPerMl ?? 0) * (form.factors[id] ?? 1);
       const value = single ?? constant ?? following;
       return value > 0 ? [{ label, panelEntryId: id, concentrationNgPerMl: tidied(value) }] : [];
     });

@@ -55,3 +55,19 @@ export function runsOneWay(fit: Pick<CalibrationFit, 'model' | 'coefficients' | 
   const powers = powersOf(fit.coefficients, fit.model);
   return slopeAt(powers, fit.range[0]) * slopeAt(powers, fit.range[1]) > 0;
 }
+
+/**
+ * Half of the two-sided interval of a level that one response reads, where that response lies on the curve at x: t(df) times the
+ * standard error of `solveCalibration` there, sqrt(residualSd^2/w(x) + g' Cov g)/|slope|, in the unit of x. Null where the weight or
+ * the slope is none.
+ *
+ * @throws StatsError for an x that is not finite, or a level outside 0 to 1.
+ * Source: the delta method; for a straight line the textbook formula of inverse prediction.
+ */
+export function readingHalfWidth(fit: CalibrationFit, x: number, level = 0.95): number | null {
+  const t = studentQuantile((1 - fractionOfOne(level, 'Level of the interval')) / 2, fit.df);
+  const weight = weightAt(finite(x, 'Level'), fit.weighting);
+  const slope = slopeAt(powersOf(fit.coefficients, fit.model), x);
+  if (weight === null || slope === 0) return null;
+  return (t * Math.sqrt(fit.residualSd ** 2 / weight + curveVariance(fit, x))) / Math.abs(slope);
+}

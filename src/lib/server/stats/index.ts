@@ -21,7 +21,7 @@ export {
 } from './calibration';
 export { coefficientTests } from './coefficient-tests';
 export { controlLimits, relativePercentDifference, type ControlLimits } from './control';
-export { curveBand, runsOneWay, type BandPoint } from './curve-band';
+export { curveBand, readingHalfWidth, runsOneWay, type BandPoint } from './curve-band';
 export { describe } from './describe';
 export {
   detectionLimits,

@@ -1,32 +1,92 @@
 import { redirect } from '@sveltejs/kit';
-import { fitForm } from '$lib/schemas/calibration';
+import { fitsForm, proposalQuery } from '$lib/schemas/calibration';
 import { formObject } from '$lib/schemas/form-object';
+import { Invalid } from '$lib/server/errors';
 import { answerForm, checked } from '$lib/server/form-answer';
 import { memberIn } from '$lib/server/hooks/member-in';
-import { chooseFit, getCalibrationSet } from '$lib/server/services/calibrations';
+import { chooseFits, proposeFits } from '$lib/server/services/calibration-choices';
+import { getCalibrationFit, getCalibrationSet } from '$lib/server/services/calibrations';
+import { openFigure } from '$lib/server/services/figures/open-figure';
 import { getPanel } from '$lib/server/services/panels';
+import type { CalibrationSetView, ProposedFitsView } from '$lib/views/calibration';
+import { figureLinks } from '$lib/views/figure-links';
 import type { Actions, PageServerLoad } from './$types';
+import { overviewRow, standingSentence } from './overview-row';
+
+interface Asked {
+  readonly proposal: ProposedFitsView | null;
+  readonly levels: 'keep' | 'these';
+  readonly levelsLeftOut: readonly string[];
+  readonly errors: Readonly<Record<string, string>>;
+}
+
+/** What the address proposes, and what that would move; what is wrong with it is told at its field. */
+async function askedOf(
+  actor: ReturnType<typeof memberIn>,
+  study: string,
+  set: CalibrationSetView,
+  url: URL
+): Promise<Asked> {
+  const nothing: Asked = { proposal: null, levels: 'these', levelsLeftOut: [], errors: {} };
+  if (!url.searchParams.has('model')) return nothing;
+  const form = new FormData();
+  for (const [name, value] of url.searchParams) form.append(name, value);
+  if (form.getAll('entries').includes('all')) {
+    form.delete('entries');
+    for (const { entryId } of set.fits) form.append('entries', entryId);
+  }
+  const sent = formObject(form);
+  try {
+    const asked = checked(proposalQuery, sent);
+    const { levels, levelsLeftOut } = asked;
+    return { levels, levelsLeftOut, errors: {}, proposal: await proposeFits(actor, study, set.id, asked) };
+  } catch (error) {
+    if (!(error instanceof Invalid)) throw error;
+    const errors: Record<string, string> = {};
+    for (const { path, message } of error.problems) errors[path] ??= message;
+    return {
+      ...nothing,
+      levels: sent.levels === 'keep' ? 'keep' : 'these',
+      levelsLeftOut: form.getAll('levelsLeftOut').map(String),
+      errors
+    };
+  }
+}
 
 export const load: PageServerLoad = async ({ locals, params, url }) => {
   const actor = memberIn(locals);
   const set = await getCalibrationSet(actor, params.study, params.set);
   const panel = await getPanel(actor, params.study);
-  const asked = url.searchParams.get('analyte');
+  const analyte = url.searchParams.get('analyte');
+  const asked = await askedOf(actor, params.study, set, url);
+  const { proposal } = asked;
+  const proposed =
+    proposal && analyte !== null && proposal.entries.some(({ entryId }) => entryId === analyte)
+      ? { model: proposal.model, weighting: proposal.weighting, levelsLeftOut: asked.levelsLeftOut }
+      : null;
+  const links = figureLinks(url);
+  const { fits, ...rest } = set;
   return {
-    set,
-    names: Object.fromEntries(panel.map(({ id, analyte }) => [id, analyte.name])),
-    fit: set.fits.find(({ entryId }) => entryId === asked) ?? null,
-    done: url.searchParams.get('done')
+    set: rest,
+    sentence: standingSentence(set),
+    rows: fits.map(overviewRow),
+    names: Object.fromEntries(panel.map(({ id, analyte: { name } }) => [id, name])),
+    fit: analyte === null ? null : await getCalibrationFit(actor, params.study, set, analyte, proposed),
+    asked,
+    query: url.searchParams.toString(),
+    axes: url.searchParams.get('axes') === 'logarithmic' ? ('logarithmic' as const) : ('even' as const),
+    done: url.searchParams.get('done'),
+    figure: await openFigure(actor, params.study, links)
   };
 };
 
 export const actions: Actions = {
-  choose: ({ request, locals, params }) =>
-    answerForm(request, async (fields, form) => {
-      await chooseFit(memberIn(locals), params.study, params.set, checked(fitForm, formObject(form)));
-      redirect(
-        303,
-        `/studies/${params.study}/calibration/${params.set}?analyte=${fields.panelEntryId ?? ''}&done=chosen`
-      );
+  choose: ({ request, locals, params, url }) =>
+    answerForm(request, async (_fields, form) => {
+      const asked = checked(fitsForm, formObject(form));
+      await chooseFits(memberIn(locals), params.study, params.set, asked);
+      const analyte = url.searchParams.get('analyte');
+      const back = `/studies/${params.study}/calibration/${params.set}`;
+      redirect(303, analyte ? `${back}?analyte=${analyte}&done=chosen#fit` : `${back}?done=chosen`);
     })
 };
