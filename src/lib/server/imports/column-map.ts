@@ -41,7 +41,7 @@ export function recogniseColumnMap(workbook: Workbook, expectation: Expectation)
   for (const sheet of open) {
     const loose = recogniseLoosely(sheet, context);
     const family = loose && byHeader.get(headerKey(loose));
-    if (loose && family) found.set(sheet, { ...loose, carried: family.carried, blocks: family.blocks });
+    if (family) found.set(sheet, family);
   }
   return withPattern(workbook, together(workbook, found), context);
 }

@@ -70,16 +70,13 @@ export function isLayout(found: SheetLayout | PartialLayout): found is SheetLayo
   return 'headerLines' in found;
 }
 
-/** The layout that a header makes on the given lines, whether or not it is complete. */
-export function layoutAt(
-  sheet: Sheet,
-  headerLines: readonly number[],
-  analytes: NameMatcher<string>
-): SheetLayout {
+/** The upper lines with a column of values, whether or not they make a header by themselves. */
+export function linesWithValue(sheet: Sheet, analytes: NameMatcher<string>): readonly SheetLayout[] {
   const read = cachedHeaders(analytes);
-  const last = headerLines.at(-1) ?? 0;
-  const columns = headerLines.length > 1 ? twoLines(sheet, last, read) : singleLine(sheet, last, read);
-  return layoutOf(sheet, headerLines, columns, read);
+  return [...sheet.rowNumbers.subarray(0, rowsLookedAt)].flatMap((row) => {
+    const columns = singleLine(sheet, row, read);
+    return columns.length > 1 && hasMeaning(columns, 'value') ? [layoutOf(sheet, [row], columns, read)] : [];
+  });
 }
 
 type ReadText = (text: string) => Header;
@@ -103,7 +100,9 @@ function singleLine(sheet: Sheet, row: number, read: ReadText): readonly HeaderC
 
 /** Reads a row together with the one above it, from which columns take the analyte, or their whole header. */
 function twoLines(sheet: Sheet, row: number, read: ReadText): readonly HeaderColumn[] {
-  if (row === 0) return [];
+  // A line with numbers is one of results, and what is above it the header.
+  if (row === 0 || rowCells(sheet, row).some(({ cell }) => cell.kind === 'number' || cell.kind === 'date'))
+    return [];
   const cellText = mergeAwareReader(sheet);
   const textAt = (at: number, column: number): string => {
     const cell = cellText(at, column);

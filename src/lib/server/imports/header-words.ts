@@ -55,11 +55,15 @@ export const headerWords = {
   /** A figure of which the unit, or the person, has to say more. */
   result: [
     'result',
+    'results',
     'value',
+    'values',
     'amount',
+    'amounts',
     'mass',
     'quantity',
     'concentration',
+    'concentrations',
     'conc',
     'conc.',
     'calculated concentration',
@@ -135,11 +139,8 @@ export const headerWords = {
     'manual integration',
     'manually integrated',
     'integrated by hand',
-    'manual',
-    'manual mark',
-    'integration',
-    'integration type',
-    'integration mode'
+    'integrated manually',
+    'manual'
   ],
   manualCause: [
     'manual integration cause',

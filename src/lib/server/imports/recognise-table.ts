@@ -9,8 +9,17 @@ import type {
   Orientation,
   TableMap
 } from '../../schemas/column-map';
-import { findLayout, hasMeaning, isLayout, namesAnalytes, rowsLookedAt, titlesOf } from './find-layout';
-import type { HeaderColumn, PartialLayout, SheetLayout } from './find-layout';
+import {
+  findLayout,
+  hasMeaning,
+  isComplete,
+  isLayout,
+  linesWithValue,
+  namesAnalytes,
+  rowsLookedAt,
+  titlesOf
+} from './find-layout';
+import type { Elsewhere, HeaderColumn, PartialLayout, SheetLayout } from './find-layout';
 import { nameIn } from './named-text';
 import type { Names } from './named-text';
 import { readHeader } from './read-header';
@@ -36,9 +45,10 @@ export function recogniseTable(sheet: Sheet, context: RecogniseContext): SheetMa
   if (plain && isLayout(plain)) return tableOf(sheet, plain, context);
   const down = recogniseDown(sheet, context);
   if (down) return down;
-  const byContent = plain && completedByContent(sheet, plain, context);
+  const elsewhere = elsewhereOf(sheet, context);
+  const byContent = completedByContent(sheet, elsewhere, context);
   if (byContent) return tableOf(sheet, byContent, context);
-  const carried = findLayout(sheet, context.analytes, elsewhereOf(sheet, context));
+  const carried = findLayout(sheet, context.analytes, elsewhere);
   if (carried && isLayout(carried)) {
     const table = tableOf(sheet, carried, context);
     if (isWhole(table)) return table;
@@ -222,44 +232,51 @@ function textsBelow(sheet: Sheet, row: number, column: number): readonly string[
   return texts;
 }
 
-/** A column without a header that is known, but with nothing in it that is not the name of a sample, is the sample's; likewise the analyte's. */
+/**
+ * A column without a header that is known, but with nothing in it that is not the name of a sample, is the sample's; likewise
+ * the analyte's. A line that has a column of values is a header where that makes it one.
+ */
 function completedByContent(
   sheet: Sheet,
-  { headerRow, columns }: PartialLayout,
+  elsewhereAt: (row: number) => Elsewhere,
   context: RecogniseContext
 ): SheetLayout | null {
-  if (!hasMeaning(columns, 'value')) return null;
-  const headed = new Map(columns.map((column) => [column.column, column]));
-  let completed = columns;
-  for (const what of ['sample', 'analyte'] as const) {
-    if (
-      hasMeaning(completed, what) ||
-      (what === 'analyte' && (hasMeaning(columns, 'cas') || namesAnalytes(columns)))
-    )
-      continue;
-    const names = (text: string): boolean =>
-      what === 'sample'
-        ? context.places.find(text, null).kind !== 'none'
-        : context.analytes.match(text).kind !== 'none';
-    for (let column = 0; column < Math.min(sheet.columnCount, rowsLookedAt); column++) {
-      if ((headed.get(column)?.header.meaning ?? 'unknown') !== 'unknown') continue;
-      const texts = textsBelow(sheet, headerRow, column);
-      if (texts.length === 0 || !texts.every(names)) continue;
-      const found: HeaderColumn = {
-        column,
-        text: headed.get(column)?.text ?? '',
-        header: { meaning: what, unit: null }
-      };
-      completed = [...completed.filter((each) => each.column !== column), found].sort(
-        (one, other) => one.column - other.column
-      );
-      break;
+  for (const layout of linesWithValue(sheet, context.analytes)) {
+    const [row = 0] = layout.headerLines;
+    const elsewhere = elsewhereAt(row);
+    let columns = layout.columns;
+    for (const what of ['sample', 'analyte'] as const) {
+      const has =
+        hasMeaning(columns, what) ||
+        (what === 'analyte' && (hasMeaning(columns, 'cas') || namesAnalytes(columns)));
+      if (!has) columns = withNamingColumn(sheet, row, columns, what, context);
     }
+    if (columns !== layout.columns && isComplete(columns, elsewhere)) return { ...layout, columns };
   }
-  const isComplete =
-    hasMeaning(completed, 'sample') &&
-    (hasMeaning(completed, 'analyte') || hasMeaning(completed, 'cas') || namesAnalytes(completed));
-  return isComplete ? { headerLines: [headerRow], columns: completed, titleKind: null } : null;
+  return null;
+}
+
+function withNamingColumn(
+  sheet: Sheet,
+  row: number,
+  columns: readonly HeaderColumn[],
+  what: 'sample' | 'analyte',
+  { places, analytes }: RecogniseContext
+): readonly HeaderColumn[] {
+  const names = (text: string): boolean =>
+    (what === 'sample' ? places.find(text, null) : analytes.match(text)).kind !== 'none';
+  const headed = new Map(columns.map((column) => [column.column, column]));
+  for (let column = 0; column < Math.min(sheet.columnCount, rowsLookedAt); column++) {
+    if ((headed.get(column)?.header.meaning ?? 'unknown') !== 'unknown') continue;
+    const texts = textsBelow(sheet, row, column);
+    if (texts.length === 0 || !texts.every(names)) continue;
+    const text = headed.get(column)?.text ?? '';
+    const found: HeaderColumn = { column, text, header: { meaning: what, unit: null } };
+    return [...columns.filter((each) => each.column !== column), found].sort(
+      (one, other) => one.column - other.column
+    );
+  }
+  return columns;
 }
 
 /** How many columns can stand before the samples in a sheet with the analytes down. */
