@@ -3,7 +3,10 @@ import { ChemistryError } from './errors';
 /** Returns the number, or throws when it is not a finite one within the bounds. */
 export function within(value: number, what: string, low: number, high: number): number {
   if (typeof value !== 'number' || !Number.isFinite(value)) {
-    throw new ChemistryError('non-finite-value', `${what} must be a finite number, found ${String(value)}.`);
+    throw new ChemistryError(
+      'non-finite-value',
+      `${what} must be a finite number, found ${typeof value === 'string' ? `'${String(value)}'` : String(value)}.`
+    );
   }
   if (value < low || value > high) {
     throw new ChemistryError('out-of-range', `${what} must lie between ${low} and ${high}, found ${value}.`);
@@ -45,7 +48,7 @@ export function phOf(value: number, what = 'The pH'): number {
 
 /** Returns a log Kow, or throws where no substance has one; the library takes the same bounds. */
 export function logKowOf(value: number): number {
-  return within(value, 'log Kow', -20, 30);
+  return within(value, 'The log Kow', -20, 30);
 }
 
 /** Throws unless `value` is one of the words; says which there are. */

@@ -35,7 +35,8 @@ const step = 0.1;
  * How many of a panel one pass, or two, can have neutral: the working range is scanned in steps of 0.1 and at each pH those count
  * of which at least `share` is neutral.
  *
- * Among equally good pH values the one farthest from the nearest edge of a window is taken, then the one nearest to 7. Neutral is
+ * Among pH values that keep as many neutral the one farthest from the nearest edge of a window is taken (a unit is far enough), then the
+ * one nearest to 7. Neutral is
  * not held: what is hydrophilic or too much for the bed passes all the same.
  * @param range pH that the sorbent and the analytes stand, such as `workingRanges.c18`
  * @returns names of analytes in the order given
@@ -131,18 +132,25 @@ function bestPass(
   return { ph: best!.ph, count: best!.rank[0]! };
 }
 
-/** Number held, the least room that any of them has, and nearness to pH 7, so that nothing is adjusted without need. */
+/** Room beyond which more of it gains nothing: a unit takes 99 % to 99.9 %. */
+const enoughRoom = 1;
+
+/** Number held, the least room that any of them has, the room of all, and nearness to pH 7, so that nothing is adjusted without need. */
 function rankOf(phs: readonly number[], windows: Windows): readonly number[] {
   let count = 0;
-  let least = Infinity;
+  let least = enoughRoom;
+  let all = 0;
   for (const window of windows) {
     let most = -1;
     for (const ph of phs) if (window !== null && holds(window, ph)) most = Math.max(most, room(window, ph));
     if (most < 0) continue;
     count += 1;
     least = Math.min(least, most);
+    all += Math.min(enoughRoom, most);
   }
-  return [count, least, -phs.reduce((sum, ph) => sum + Math.abs(ph - 7), 0)];
+  // To a millionth of a unit, so that rounding does not decide between two pH values that are as good.
+  const rounded = (value: number) => Math.round(value * 1e6);
+  return [count, rounded(least), rounded(all), -phs.reduce((sum, ph) => sum + Math.abs(ph - 7), 0)];
 }
 
 function bestPair(tried: readonly number[], windows: Windows, oneHolds: number) {
