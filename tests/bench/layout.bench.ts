@@ -33,6 +33,7 @@ function row(_: unknown, index: number): MassBalanceRow {
     openSignificant: true,
     total: null,
     incomplete: null,
+    flagged: null,
     href: `?figure=${index}`
   };
 }

@@ -9,7 +9,7 @@ const study = '/studies/TARROW-1';
 test('the summary begins with four things to look at, and each leads on', async ({ browser }) => {
   const reviewer = await openAs(browser, 'reviewer');
   await reviewer.goto(`${study}/summary`);
-  const look = reviewer.getByRole('region', { name: 'Four things to look at' });
+  const look = reviewer.getByRole('region', { name: 'What to look at first' });
   for (const title of ['Deviations', 'Exclusions', 'Gaps', 'Late changes'])
     await expect(look.getByRole('heading', { name: new RegExp(`^${title}`) })).toBeVisible();
   await look.getByRole('link', { name: /D-S6/ }).first().click();

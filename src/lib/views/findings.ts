@@ -63,6 +63,8 @@ export interface ResultRow {
   readonly relative: { readonly mean: number; readonly n: number; readonly standard: string } | null;
   /** Replicates that were set aside or lack something. */
   readonly notes: readonly string[];
+  /** What it rests on that the checks of its sequence put in doubt; null: nothing. */
+  readonly flagged: string | null;
   readonly href: string;
 }
 
@@ -83,6 +85,8 @@ export interface CompareCell {
   readonly n: number;
   readonly verdict: Verdict | null;
   readonly reason: string;
+  /** As in a ResultRow. */
+  readonly flagged: string | null;
   readonly href: string;
 }
 
@@ -135,6 +139,8 @@ export interface PortionsView {
     readonly mean: number | null;
     readonly rsd: number | null;
     readonly refusal: string | null;
+    /** As in a ResultRow. */
+    readonly flagged: string | null;
     readonly href: string;
   }[];
   /** Analytes that a method blank or, summed over all fractions, an unspiked portion holds; ng. */

@@ -54,6 +54,8 @@ export interface MassBalanceRow {
   readonly total: number | null;
   /** What the balance lacks, as a sentence; null when it is complete. */
   readonly incomplete: string | null;
+  /** What it rests on that the checks of its sequence put in doubt; null: nothing. */
+  readonly flagged: string | null;
   /** Opens the provenance of the method recovery. */
   readonly href: string;
 }

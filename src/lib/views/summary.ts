@@ -101,7 +101,7 @@ export interface SummaryImport {
 
 /** One thing a reviewer looks at first. */
 export interface LookAt {
-  readonly title: 'Deviations' | 'Exclusions' | 'Gaps' | 'Late changes';
+  readonly title: 'Deviations' | 'Flagged figures' | 'Exclusions' | 'Gaps' | 'Late changes';
   readonly items: readonly { readonly text: string; readonly href: string | null }[];
   /** What is said where there are none. */
   readonly none: string;

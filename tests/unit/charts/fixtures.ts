@@ -48,6 +48,7 @@ export function balanceRow(
     openSignificant: false,
     total: mean + aqueous,
     incomplete: null,
+    flagged: null,
     href: `?figure=${name}`,
     ...rest
   };

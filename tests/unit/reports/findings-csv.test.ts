@@ -87,6 +87,7 @@ describe('findings as CSV', () => {
               halfWidth: null,
               n: 5,
               verdict: 'outside',
+              flagged: null,
               reason: 'mean 0 < 70',
               href: '',
               limits: [70, 130]

@@ -26,6 +26,7 @@ export function resultsCsv(view: ResultsTableView, about: About): string {
     'Criteria',
     'Relative recovery (%)',
     'Notes',
+    'Flagged',
     'Lab'
   ];
   const lab = about.labIsDemo ? `${about.labName} (invented demo data)` : about.labName;
@@ -48,6 +49,7 @@ export function resultsCsv(view: ResultsTableView, about: About): string {
       row.criteria,
       row.relative?.mean ?? null,
       [...row.notes, ...view.notes].join('; '),
+      row.flagged,
       lab
     ])
   );

@@ -208,7 +208,7 @@ function resultsSheet(view: SummaryView): ReportSheet {
         row.reasons.join('; '),
         row.criteria,
         row.relative?.mean ?? null,
-        [...row.notes, ...findings.results.notes].join('; ')
+        [...row.notes, ...(row.flagged ? [row.flagged] : []), ...findings.results.notes].join('; ')
       ])
     )
   };

@@ -4,6 +4,7 @@ import type { Link } from './addresses';
 import { criteriaFor, limitsOf } from './criteria';
 import { halfWidth, intervalOf } from './figure-parts';
 import type { StudyPanelEntry, StudyVariant } from './study-data';
+import { flaggedText } from './flagged-text';
 import type { StudyFigures, VariantContext } from './study-figures';
 import { experimentChoice } from './subject';
 
@@ -50,6 +51,7 @@ function cellOf(
     n: method.n,
     verdict: found.verdict,
     reason: found.reasons.join('; '),
+    flagged: flaggedText(figures, whole, entry),
     href: link({ kind: 'recovery', experiment: whole.number, entry: entry.id })
   };
 }

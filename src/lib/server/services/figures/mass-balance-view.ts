@@ -12,6 +12,7 @@ import { recoveryBand, showsWholeMethod } from './criteria';
 import { halfWidth, intervalOf } from './figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { EntryFigures, StudyFigures } from './study-figures';
+import { flaggedText } from './flagged-text';
 import type { Subject } from './subject';
 
 /** The mass balance of one experiment, with what its variant's other stages say of the rest; rows in panel order. */
@@ -28,7 +29,12 @@ export function massBalanceOf(figures: StudyFigures, subject: Subject, link: Lin
           const found = figures.entry(experiment.id, entry.id);
           return !found.ready && found.kind === 'not spiked'
             ? []
-            : [rowOf(subject, experiment, entry, found, link)];
+            : [
+                {
+                  ...rowOf(subject, experiment, entry, found, link),
+                  flagged: flaggedText(figures, experiment, entry)
+                }
+              ];
         })
       : []
   };
@@ -53,7 +59,7 @@ function rowOf(
   entry: StudyPanelEntry,
   found: EntryFigures,
   link: Link
-): MassBalanceRow {
+): Omit<MassBalanceRow, 'flagged'> {
   const base = {
     panelEntryId: entry.id,
     name: entry.name,

@@ -6,6 +6,7 @@ import type { Value } from '../../stats';
 import type { Link } from './addresses';
 import { ruleOf } from './criteria';
 import { ruleView } from './figure-parts';
+import { flaggedSurrogateText } from './flagged-text';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { StudyFigures } from './study-figures';
 import { experimentChoice } from './subject';
@@ -41,6 +42,7 @@ export function portionsOf(figures: StudyFigures, experiment: StudyExperiment, l
       mean: read.description?.mean ?? null,
       rsd: read.description?.rsd ?? null,
       refusal: read.refusal,
+      flagged: flaggedSurrogateText(figures, experiment, entry),
       href: link({ kind: 'surrogate', experiment: experiment.number, entry: entry.id })
     })),
     ...blanks,

@@ -2,6 +2,7 @@ import type { ResultRow, ResultsTableView } from '../../../views/findings';
 import type { Link } from './addresses';
 import { criteriaFor, limitsOf, showsWholeMethod } from './criteria';
 import { criteriaText, intervalOf, plainEnd, ruleView } from './figure-parts';
+import { flaggedText } from './flagged-text';
 import { incompleteSentence } from './mass-balance-view';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { EntryFigures, StudyFigures } from './study-figures';
@@ -56,7 +57,8 @@ function rowOf(
     role: entry.role,
     class: entry.class ?? '',
     criteria,
-    limits: limitsOf(applied.criteria)
+    limits: limitsOf(applied.criteria),
+    flagged: flaggedText(figures, experiment, entry)
   };
   const nothing = { n: null, mean: null, sd: null, rsd: null, interval: null, subtracted: null };
   if (!found.ready) {

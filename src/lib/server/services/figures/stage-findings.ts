@@ -62,7 +62,7 @@ export function stageFindingsOf(
       text: lossSentence(item),
       href: link({ kind: 'loss', variant: context.variant.code, stage: item.row.stage, entry: item.entryId })
     })),
-    notes: notesOf(context, rows)
+    notes: [...notesOf(context, rows), ...flaggedNotes(figures, context)]
   };
 }
 
@@ -107,6 +107,22 @@ function unnamedSentence(rows: readonly Named[], context: VariantContext): strin
     .sort((a, b) => (b.row.lost?.estimate ?? 0) - (a.row.lost?.estimate ?? 0));
   if (!largest) return `Of variant ${context.variant.code} no loss can be attributed to a stage yet.`;
   return `No loss of more than 5 points is certain yet; the largest estimate: ${lossSentence(largest)}`;
+}
+
+/** One note for each stage whose figures rest on flagged injections, naming the analytes. */
+function flaggedNotes(figures: StudyFigures, context: VariantContext): string[] {
+  return context.stages.flatMap((stage): string[] => {
+    const experiment = stage.evidence?.amounts.experiment;
+    if (!experiment) return [];
+    const names = figures.targets
+      .filter((entry) => figures.flagged(experiment.id, entry.id) !== null)
+      .map(({ name }) => name);
+    if (names.length === 0) return [];
+    const which = names.length > 6 ? `${names.length} analytes` : listed(names);
+    return [
+      `${stage.name}: the figures of ${which} in experiment ${experiment.number} rest on flagged injections; open one to see which check speaks against it.`
+    ];
+  });
 }
 
 function notesOf(context: VariantContext, rows: readonly Named[]): string[] {

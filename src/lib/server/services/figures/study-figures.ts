@@ -1,4 +1,5 @@
 import { amountsOf, type ExperimentAmounts } from '../../amounts/experiment-amounts';
+import { flagsOfNumbers, numbersOf, numbersOfRecovery, type FigureFlags } from '../../amounts/figure-flags';
 import { matrixFigures, type MatrixFigures } from '../../amounts/matrix-effects';
 import { methodFigures, type MethodFigures } from '../../amounts/method-figures';
 import { recoveryInput, type RecoveryRefusal } from '../../amounts/recovery-input';
@@ -40,6 +41,10 @@ export interface StudyFigures {
   readonly matrix: (experimentId: string, entryId: string) => MatrixFigures | null;
   /** What was run to watch over the instrument, and what is flagged by it. */
   readonly checks: () => SequenceChecks;
+  /** What the recovery of an entry rests on that is flagged; null: nothing. */
+  readonly flagged: (experimentId: string, entryId: string) => FigureFlags | null;
+  /** The same of a surrogate, over all portions that received it. */
+  readonly flaggedSurrogate: (experimentId: string, entryId: string) => FigureFlags | null;
 }
 
 /** @throws NotFound for ids that are not of this study */
@@ -91,6 +96,20 @@ export function studyFigures(data: StudyData): StudyFigures {
     })
   );
 
+  const flagged = perEntry((of, item) => {
+    const found = entry(of.experiment.id, item.id);
+    const numbers = found.ready ? numbersOfRecovery(found) : found.portions.flatMap(numbersOf);
+    return flagsOfNumbers(numbers, item.id, checks(''));
+  });
+  const surrogate = perEntry((of, item) => surrogateFigures(of, item, surrogateRule));
+  const flaggedSurrogate = perEntry((of, item) =>
+    flagsOfNumbers(
+      surrogate(of.experiment.id, item.id).portions.flatMap(({ portion }) => numbersOf(portion)),
+      item.id,
+      checks('')
+    )
+  );
+
   const contexts = remembered((key: string): VariantContext => {
     const [variantId, topId] = key.split(' ');
     const variant = orNotFound(data.variants.find((item) => item.id === variantId));
@@ -118,9 +137,11 @@ export function studyFigures(data: StudyData): StudyFigures {
     amounts,
     entry,
     variant: (variant, experiment) => contexts(experiment ? `${variant.id} ${experiment.id}` : variant.id),
-    surrogate: perEntry((of, item) => surrogateFigures(of, item, surrogateRule)),
+    surrogate,
     matrix: perEntry((of, item) => matrixFigures(of, item)),
-    checks: () => checks('')
+    checks: () => checks(''),
+    flagged,
+    flaggedSurrogate
   };
 }
 

@@ -8,13 +8,13 @@ import type {
   SummaryView
 } from '../../../views/summary';
 
-/** The four things a reviewer looks at first. */
+/** What a reviewer looks at first. */
 export function lookAtOf(
   findings: readonly SummaryFindings[],
   exclusions: readonly SummaryExclusion[],
   imports: readonly SummaryImport[],
   stages: SummaryView['stages'],
-  missingEvidence: readonly string[]
+  missing: readonly LookAt['items'][number][]
 ): LookAt[] {
   return [
     {
@@ -23,6 +23,11 @@ export function lookAtOf(
       none: findings.some(({ results }) => results.rows.some(({ verdict }) => verdict !== null))
         ? 'No figure is outside its criteria.'
         : 'No figure was held against criteria yet.'
+    },
+    {
+      title: 'Flagged figures',
+      items: flaggedFigures(findings),
+      none: 'No figure rests on a flagged injection.'
     },
     {
       title: 'Exclusions',
@@ -36,7 +41,7 @@ export function lookAtOf(
     },
     {
       title: 'Gaps',
-      items: gaps(findings, stages, missingEvidence),
+      items: gaps(findings, stages, missing),
       none: 'Every stage has its experiment, every portion is complete.'
     },
     {
@@ -67,6 +72,14 @@ function deviations(findings: readonly SummaryFindings[]): LookAt['items'] {
   });
 }
 
+function flaggedFigures(findings: readonly SummaryFindings[]): LookAt['items'] {
+  return findings.flatMap((of) =>
+    [...of.results.rows, ...of.portions.surrogates]
+      .filter((row) => row.flagged !== null)
+      .map((row) => ({ text: `${shortName(of)}: ${row.name} ${row.flagged ?? ''}`, href: row.href }))
+  );
+}
+
 /** One by one while they are few; many stand in one line that leads to their table. */
 function outsideItems(of: SummaryFindings, outside: SummaryFindings['results']['rows']): LookAt['items'] {
   const few = 3;
@@ -93,7 +106,7 @@ function shortName({ heading }: SummaryFindings): string {
 function gaps(
   findings: readonly SummaryFindings[],
   stages: SummaryView['stages'],
-  missingEvidence: readonly string[]
+  missing: LookAt['items']
 ): LookAt['items'] {
   const empty = stages
     .filter((stage) => stage.experiments.length === 0)
@@ -111,11 +124,7 @@ function gaps(
       .filter((row) => row.incomplete !== null)
       .map((row) => ({ text: `${shortName(of)}: ${row.name}, ${row.incomplete ?? ''}`, href: row.href }))
   );
-  return [
-    ...[...empty, ...missingEvidence].map((text) => ({ text, href: null })),
-    ...unjudged,
-    ...grouped(incomplete)
-  ];
+  return [...empty.map((text) => ({ text, href: null })), ...missing, ...unjudged, ...grouped(incomplete)];
 }
 
 /** One line for a portion that many analytes lack: thirty lines about one vial hide the rest. */

@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import { cautions } from '../../../domain/cautions';
-import type { SummaryFindings, SummaryView } from '../../../views/summary';
+import { dayText } from '../../../domain/moment-text';
+import type { LookAt, SummaryFindings, SummaryView } from '../../../views/summary';
 import { canonicalText } from '../../db/audit-chain';
 import type { Link } from '../figures/addresses';
 import { ruleView } from '../figures/figure-parts';
@@ -35,7 +36,10 @@ export function summaryOf(figures: StudyFigures, lab: SummaryView['lab'], link: 
       owner: data.ownerName
     },
     lab,
-    lookAt: lookAtOf(findings, exclusions, imports, stages, missingEvidence(figures)),
+    lookAt: lookAtOf(findings, exclusions, imports, stages, [
+      ...missingEvidence(figures).map((text) => ({ text, href: null })),
+      ...sequenceGaps(figures)
+    ]),
     criteria: {
       name: data.criteriaSet.name,
       version: data.criteriaSet.version,
@@ -99,6 +103,31 @@ function findingsOf(figures: StudyFigures, link: Link): SummaryFindings[] {
         portions: portionsOf(figures, experiment, link)
       };
     })
+  ];
+}
+
+/** What the sequences do not show, run by run; the second source that a calibration lacks. */
+function sequenceGaps(figures: StudyFigures): LookAt['items'] {
+  const { runs, setGaps } = figures.checks();
+  const base = `/studies/${figures.data.code}/calibration`;
+  // A study that keeps no checks at all is told so once, not run by run.
+  if (figures.data.checkStandards.length === 0) {
+    return runs.length === 0
+      ? []
+      : [{ text: 'No checks of a calibration and no instrument blanks are on record.', href: base }];
+  }
+  return [
+    ...[...setGaps].flatMap(([setId, gaps]) => gaps.map(({ text }) => ({ text, href: `${base}/${setId}` }))),
+    ...runs.flatMap(({ run, sets }) =>
+      sets.flatMap(({ gaps }) =>
+        gaps
+          .filter(({ kind }) => kind !== 'order of the file')
+          .map(({ text }) => ({
+            text: `Sequence of ${run.sequences[0]?.runOn ? dayText(run.sequences[0].runOn) : 'an unknown day'}: ${text}`,
+            href: `${base}/sequences/${run.id}`
+          }))
+      )
+    )
   ];
 }
 

@@ -4,6 +4,7 @@ import type { AmountTrace, InjectionAmount } from '../../../amounts/injection-am
 import { portionOf } from '../../../amounts/portions';
 import { addressText, type Link } from '../addresses';
 import { sentence } from '../figure-parts';
+import { injectionInput, injectionSentences } from './injections';
 import type { StudyExperiment, StudyPanelEntry } from '../study-data';
 import type { StudyFigures } from '../study-figures';
 import { amountFormulas } from './formulas';
@@ -63,7 +64,8 @@ export function amountProvenance(
     sentences: [
       ...(share ? [share] : []),
       ...(amount.state === 'not detected' ? ['Not detected: counted as zero, and at this limit.'] : []),
-      ...notes.map(sentence)
+      ...notes.map(sentence),
+      ...injectionSentences(figures, entry, used)
     ],
     inputs: used.flatMap((item) => inputsOf(figures, experiment, entry, item, used.length > 1, link)),
     cells: [...used, ...unused].map((item) =>
@@ -93,7 +95,7 @@ function inputsOf(
   const { trace } = item;
   const nameOf = (id: string): string => figures.entries.get(id)?.name ?? 'internal standard';
   const { reported, practice } = trace;
-  const inputs: ProvenanceInput[] = [];
+  const inputs: ProvenanceInput[] = [...injectionInput(figures, reported)];
   const add = (...given: Parameters<typeof input>): void => void inputs.push(input(...given));
   if (several)
     add('Injection', String(reported.injection), '', {

@@ -5,6 +5,7 @@ import type { Portion } from '../../../amounts/portions';
 import type { Value } from '../../../stats';
 import { addressText, type Link } from '../addresses';
 import { criteriaFor, showsWholeMethod } from '../criteria';
+import { flaggedText } from '../flagged-text';
 import { criteriaText, intervalOf, intervalText, plainEnd, sentence } from '../figure-parts';
 import type { StudyExperiment, StudyPanelEntry } from '../study-data';
 import type { EntryFigures, StudyFigures } from '../study-figures';
@@ -55,6 +56,7 @@ export function recoveryProvenance(
       ...spreadSentences(found),
       ...subtractedSentences(found),
       ...endsSentences(found),
+      ...flaggedSentences(figures, experiment, entry),
       judged
         ? `Held against ${criteriaText(criteria)}${overrideReason ? `, of its own: ${overrideReason}` : `, ${figures.data.criteriaSet.name}`}.`
         : 'Held against nothing: the criteria are for the whole method, spiked in the sample.'
@@ -74,6 +76,15 @@ export function recoveryProvenance(
     tables: [replicateTable(found, experiment, link), ...nativeTables(found, experiment, link)],
     setAside: setAsideOf([...found.input.portions, ...(found.input.subtracted?.portions ?? [])])
   };
+}
+
+function flaggedSentences(
+  figures: StudyFigures,
+  experiment: StudyExperiment,
+  entry: StudyPanelEntry
+): string[] {
+  const flagged = flaggedText(figures, experiment, entry);
+  return flagged === null ? [] : [sentence(`it ${flagged}`)];
 }
 
 /** One fraction of a method recovery or balance. */
