@@ -1,10 +1,11 @@
 import { spawnSync } from 'node:child_process';
 import { fileURLToPath } from 'node:url';
 import { describe, expect, it } from 'vitest';
+import quadrature from './r/quadrature.json';
 import recorded from './r/reference.json';
 import { figuresAgainstR } from './r-figures';
+import { tailsAgainstQuadrature } from './r-tails';
 
-const script = fileURLToPath(new URL('./r/reference.R', import.meta.url));
 const hasR = spawnSync('Rscript', ['--version']).status === 0;
 
 /** What differs from R by more than rounding, and why. */
@@ -45,13 +46,40 @@ describe('figures that R computes too (values recorded from R 4.2.2 by r/referen
   });
 });
 
-describe('R itself', () => {
-  it.skipIf(!hasR)('gives the recorded values when run now (skipped without R)', () => {
-    const run = spawnSync('Rscript', ['--vanilla', script], { encoding: 'utf8' });
-    expect(run.status, run.stderr).toBe(0);
-    const live = JSON.parse(run.stdout) as Record<string, number>;
-    expect(Object.keys(live).sort()).toEqual(Object.keys(recorded).sort());
-    const strays = Object.entries(recorded).filter(([name, value]) => !agree(live[name]!, value, 1e-8));
-    expect(strays).toEqual([]);
+describe('tails by Gauss-Legendre quadrature (values recorded from R 4.2.2 by r/quadrature.R)', () => {
+  const tails = tailsAgainstQuadrature();
+
+  it('covers the same names on both sides', () => {
+    expect([...tails.keys()].sort()).toEqual(Object.keys(quadrature).sort());
   });
+
+  it.each(Object.entries(quadrature))(
+    '%s is %s (absolute 1e-12, relative 1e-9 down to 1e-12)',
+    (name, expected) => {
+      const off = Math.abs(tails.get(name)! - expected);
+      expect(off).toBeLessThan(1e-12);
+      if (expected > 1e-12) expect(off / expected).toBeLessThan(1e-9);
+    }
+  );
+});
+
+describe('R itself', () => {
+  it.skipIf(!hasR).each([
+    ['reference', recorded, 0],
+    ['quadrature', quadrature, 1e-14]
+  ] as const)(
+    'gives the recorded values of r/%s.R when run now (skipped without R)',
+    (name, values: Readonly<Record<string, number>>, absolute) => {
+      const script = fileURLToPath(new URL(`./r/${name}.R`, import.meta.url));
+      const run = spawnSync('Rscript', ['--vanilla', script], { encoding: 'utf8' });
+      expect(run.status, run.stderr).toBe(0);
+      const live = JSON.parse(run.stdout) as Record<string, number>;
+      expect(Object.keys(live).sort()).toEqual(Object.keys(values).sort());
+      const strays = Object.entries(values).filter(
+        ([figure, value]) => Math.abs(live[figure]! - value) > absolute && !agree(live[figure]!, value, 1e-8)
+      );
+      expect(strays).toEqual([]);
+    },
+    120_000
+  );
 });

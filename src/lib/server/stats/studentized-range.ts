@@ -31,8 +31,8 @@ function rangeUpper(r: number, k: number, largest: readonly number[]): number {
 
 /**
  * P(Q > q) for the studentized range of k means, with `df` degrees of freedom of their common SD: the chance that the range of k
- * normal values passes r = q s, averaged over s = sqrt(chi-square/df). Absolute error below 1e-14, and relative error below 1e-9
- * down to chances of 1e-12; at k = 2 it equals P(|T| > q/sqrt(2)).
+ * normal values passes r = q s, averaged over s = sqrt(chi-square/df). Absolute error below 1e-13, and relative error below 1e-11
+ * down to chances of 1e-12, for 2 to 100 means; at k = 2 it equals P(|T| > q/sqrt(2)).
  */
 export function studentizedRangeUpper(q: number, k: number, df: number): number {
   if (q <= 0) return 1;
@@ -45,34 +45,41 @@ export function studentizedRangeUpper(q: number, k: number, df: number): number 
   );
 }
 
-/** q with P(Q > q) = `upper`: the secant method in logarithms, held inside a bracket. */
+/** q with P(Q > q) = `upper`: false position in logarithms, where the tail is nearly straight, inside a bracket. */
 export function studentizedRangeQuantile(upper: number, k: number, df: number): number {
   const target = Math.log(upper);
   const excess = (logQ: number) =>
     Math.log(Math.max(studentizedRangeUpper(Math.exp(logQ), k, df), Number.MIN_VALUE)) - target;
-  let low = Math.log(1e-6);
-  let high = Math.log(4);
-  while (excess(high) > 0) {
-    low = high;
-    high += Math.LN2;
-  }
+  let low = Math.log(4);
+  let high = low;
   let atLow = excess(low);
-  let atHigh = excess(high);
-  // Illinois' form of false position: the value of an end that stays is halved.
+  let atHigh = atLow;
+  while (atHigh > 0) {
+    [low, atLow] = [high, atHigh];
+    high += Math.LN2;
+    atHigh = excess(high);
+  }
+  while (atLow <= 0) {
+    [high, atHigh] = [low, atLow];
+    low -= Math.LN2;
+    atLow = excess(low);
+  }
+  // Illinois' form: the value of an end that stays twice running is halved, so that both ends close in.
+  let stayed = 0;
   for (let i = 0; i < 200 && high - low > 1e-14; i += 1) {
     let next = (low * atHigh - high * atLow) / (atHigh - atLow);
     if (!(next > low && next < high)) next = (low + high) / 2;
     const at = excess(next);
     if (Math.abs(at) < 1e-13) return Math.exp(next);
-    if (at > 0) {
-      low = next;
-      atLow = at;
-      atHigh /= 2;
+    const side = Math.sign(at);
+    if (side > 0) {
+      [low, atLow] = [next, at];
+      if (stayed === side) atHigh /= 2;
     } else {
-      high = next;
-      atHigh = at;
-      atLow /= 2;
+      [high, atHigh] = [next, at];
+      if (stayed === side) atLow /= 2;
     }
+    stayed = side;
   }
   return Math.exp((low + high) / 2);
 }
