@@ -26,6 +26,20 @@ export interface NewMeasurement {
   readonly sheetColumn: number;
 }
 
+/** What the file says about the peak of a measurement, on its way into its table. */
+export interface NewQualifier {
+  readonly labId: string;
+  readonly studyId: string;
+  readonly importId: string;
+  readonly injectionId: string;
+  readonly analyteId: string;
+  readonly retentionTimeMin: number | null;
+  readonly ionRatio: number | null;
+  readonly signalToNoise: number | null;
+  /** null: not integrated by hand. */
+  readonly manualIntegration: { readonly cause: string | null } | null;
+}
+
 const columns = [
   'lab_id',
   'import_id',
@@ -68,12 +82,20 @@ export function copyLine(row: NewMeasurement): string {
   return `${row.labId}\t${row.importId}\t${row.injectionId}\t${orNull(row.experimentId)}\t${orNull(row.calibrationSetId)}\t${row.analyteId}\t${row.basis}\t${row.state}\t${orNull(row.reported)}\t${orNull(row.internalArea)}\t${orNull(row.internalAnalyteId)}\t${orNull(row.limitValue)}\t${escaped(row.rawText)}\t${row.sheet}\t${row.sheetRow}\t${row.sheetColumn}\n`;
 }
 
+const qualifierColumns =
+  'lab_id, study_id, import_id, injection_id, analyte_id, retention_time_min, ion_ratio, signal_to_noise, is_manual, manual_cause';
+
+function qualifierLine(row: NewQualifier): string {
+  const cause = row.manualIntegration?.cause ?? null;
+  return `${row.labId}\t${row.studyId}\t${row.importId}\t${row.injectionId}\t${row.analyteId}\t${orNull(row.retentionTimeMin)}\t${orNull(row.ionRatio)}\t${orNull(row.signalToNoise)}\t${row.manualIntegration !== null}\t${cause === null ? '\\N' : escaped(cause)}\n`;
+}
+
 const chunkLength = 64 * 1024;
 
-function* chunks(rows: Iterable<NewMeasurement>): Generator<string> {
+function* chunks<Row>(rows: Iterable<Row>, lineOf: (row: Row) => string): Generator<string> {
   let chunk = '';
   for (const row of rows) {
-    chunk += copyLine(row);
+    chunk += lineOf(row);
     if (chunk.length >= chunkLength) {
       yield chunk;
       chunk = '';
@@ -87,8 +109,18 @@ function* chunks(rows: Iterable<NewMeasurement>): Generator<string> {
  * @returns how many rows were stored
  * @throws Error outside of `inTransaction`; whatever the database refuses (the import must be in state received)
  */
-export async function copyMeasurements(rows: Iterable<NewMeasurement>): Promise<number> {
-  const stream = transactionClient().query(copyFrom(`COPY measurements (${columns}) FROM STDIN`));
-  await pipeline(Readable.from(chunks(rows), { objectMode: false }), stream);
+export function copyMeasurements(rows: Iterable<NewMeasurement>): Promise<number> {
+  return copy(`COPY measurements (${columns}) FROM STDIN`, chunks(rows, copyLine));
+}
+
+/** As `copyMeasurements`, for what the file says about their peaks; without any the database is not asked. */
+export async function copyQualifiers(rows: readonly NewQualifier[]): Promise<number> {
+  if (rows.length === 0) return 0;
+  return copy(`COPY measurement_qualifiers (${qualifierColumns}) FROM STDIN`, chunks(rows, qualifierLine));
+}
+
+async function copy(statement: string, lines: Iterable<string>): Promise<number> {
+  const stream = transactionClient().query(copyFrom(statement));
+  await pipeline(Readable.from(lines, { objectMode: false }), stream);
   return stream.rowCount;
 }

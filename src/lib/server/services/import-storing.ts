@@ -1,6 +1,11 @@
 import { QueryTypes, type CreationAttributes } from 'sequelize';
 import type { Actor } from '../../domain/actor';
-import { copyMeasurements, type NewMeasurement } from '../db/measurement-copy';
+import {
+  copyMeasurements,
+  copyQualifiers,
+  type NewMeasurement,
+  type NewQualifier
+} from '../db/measurement-copy';
 import { newId } from '../db/entity-id';
 import { Extract } from '../db/models/extract';
 import { Import } from '../db/models/import';
@@ -11,8 +16,8 @@ import { audit, inTransaction } from '../db/transaction';
 import { Conflict, Invalid, NotFound } from '../errors';
 import type { Expectation, MappedImport, MappedRecord } from '../imports/types';
 import { coveredPlaces } from './import-coverage';
-import { loadExpectation, nothingDeclared, type Declared } from './import-expectation';
-import { readKeptFile } from './import-reading';
+import { declaredOf, loadExpectation } from './import-expectation';
+import { readKeptFile, type ImportReading } from './import-reading';
 import { createSequences, injectionKind } from './import-sequences';
 import { importOfStudy } from './imports';
 import { require } from './permissions';
@@ -59,7 +64,7 @@ export async function storeImport(
     });
     if (!locked) throw new NotFound();
     if (locked.state !== 'received') throw notWaiting(locked.state);
-    await requireUnchanged(study, expectation, locked.declared);
+    await requireUnchanged(study, expectation, { read: kept.declared, now: locked.declared });
 
     const covered = await coveredPlaces(study, mapped.records, expectation);
     const reason = input.reason.trim();
@@ -71,9 +76,10 @@ export async function storeImport(
       );
     }
 
-    const rows = await storeInjections(study, locked, mapped.records, expectation);
+    const { rows, qualifiers } = await storeInjections(study, locked, mapped.records, expectation);
     await copyMeasurements(rows);
-    await markStored(actor, study, locked, mapped, reason);
+    await copyQualifiers(qualifiers);
+    await markStored(actor, study, locked, reading, reason);
 
     const numbers = await experimentNumbers(study, mapped.records);
     audit({
@@ -103,7 +109,10 @@ const notWaiting = (state: string): Conflict =>
       : `This file is ${state}; it can be uploaded again.`
   );
 
-function refuseProblems(mapped: MappedImport, questionsConfirmed: boolean | ((code: string) => boolean)): void {
+function refuseProblems(
+  mapped: MappedImport,
+  questionsConfirmed: boolean | ((code: string) => boolean)
+): void {
   const isConfirmed = (code: string): boolean =>
     typeof questionsConfirmed === 'boolean' ? questionsConfirmed : questionsConfirmed(code);
   // A question that wants a declaration has left cells unread: confirming it would drop them without a word.
@@ -126,14 +135,27 @@ function refuseProblems(mapped: MappedImport, questionsConfirmed: boolean | ((co
   }
 }
 
-async function requireUnchanged(study: Study, read: Expectation, declaredNow: unknown): Promise<void> {
-  const declared: Declared = { ...nothingDeclared, ...(declaredNow as Partial<Declared>) };
-  const now = await loadExpectation({ labId: study.labId, studyId: study.id }, declared);
+async function requireUnchanged(
+  study: Study,
+  read: Expectation,
+  declared: Readonly<{ read: unknown; now: unknown }>
+): Promise<void> {
+  if (JSON.stringify(declared.read) !== JSON.stringify(declared.now)) {
+    throw new Conflict(
+      'Somebody changed how this file is read in the meantime. Look at it once more; nothing was stored.'
+    );
+  }
+  const now = await loadExpectation({ labId: study.labId, studyId: study.id }, declaredOf(declared.now));
   if (JSON.stringify(now) !== JSON.stringify(read)) {
     throw new Conflict(
       'The panel, the experiments or the calibration of this study changed while the file was read. Look at it once more; nothing was stored.'
     );
   }
+}
+
+interface NewRows {
+  readonly rows: readonly NewMeasurement[];
+  readonly qualifiers: readonly NewQualifier[];
 }
 
 /** Creates the sequences, the extracts and the injections, and gives the measurements that hang off them. */
@@ -142,7 +164,7 @@ async function storeInjections(
   kept: Import,
   records: readonly MappedRecord[],
   expectation: Expectation
-): Promise<NewMeasurement[]> {
+): Promise<NewRows> {
   const ids = { labId: study.labId, studyId: study.id, importId: kept.id };
   const sequenceOf = await createSequences(ids, records, expectation);
 
@@ -209,16 +231,20 @@ async function storeInjections(
     return sheetNames.length;
   };
 
+  const qualifiers: NewQualifier[] = [];
   const rows = records.map((record): NewMeasurement => {
     const { place, reported } = record;
     const standard = standards.get(record.panelEntryId) ?? null;
+    const injectionId = injectionOf(record);
+    const analyteId = known(analytes, record.panelEntryId);
+    if (record.qualifiers) qualifiers.push({ ...ids, injectionId, analyteId, ...record.qualifiers });
     return {
       labId: study.labId,
       importId: kept.id,
-      injectionId: injectionOf(record),
+      injectionId,
       experimentId: place.kind === 'extract' ? place.experimentId : null,
       calibrationSetId: place.kind === 'extract' ? null : place.calibrationSetId,
-      analyteId: known(analytes, record.panelEntryId),
+      analyteId,
       basis: reported.kind,
       state: record.state,
       reported: reported.value,
@@ -236,7 +262,7 @@ async function storeInjections(
   kept.sheetNames = sheetNames;
   await Extract.bulkCreate([...extracts.values()]);
   await Injection.bulkCreate([...injections.values()]);
-  return rows;
+  return { rows, qualifiers };
 }
 
 function known(analytes: ReadonlyMap<string, string>, entryId: string): string {
@@ -257,13 +283,13 @@ async function markStored(
   actor: Actor,
   study: Study,
   kept: Import,
-  mapped: MappedImport,
+  { mapped, keptMap }: Extract<ImportReading, { kind: 'read' }>,
   reason: string
 ): Promise<void> {
   await sequelize.query(
     `UPDATE imports SET state = 'stored', stored_order = nextval('imports_stored_order'), stored_by = $3, stored_at = now(),
         reading = $4::jsonb, counts = $5::jsonb, sheet_names = $6::text[],
-        declared = declared || $7::jsonb, updated_at = now()
+        declared = declared || $7::jsonb, column_map_version_id = $8, updated_at = now()
       WHERE lab_id = $1 AND id = $2`,
     {
       bind: [
@@ -273,7 +299,9 @@ async function markStored(
         JSON.stringify(mapped.reading),
         JSON.stringify({ records: mapped.records.length }),
         [...kept.sheetNames],
-        JSON.stringify(reason === '' ? {} : { reason })
+        // The map that it was read by stays with it, whatever becomes of the kept ones.
+        JSON.stringify({ map: mapped.map, ...(reason === '' ? {} : { reason }) }),
+        keptMap?.versionId ?? null
       ]
     }
   );
