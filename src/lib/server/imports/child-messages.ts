@@ -1,5 +1,6 @@
 import type { ColumnMap } from '../../schemas/column-map';
 import type { ReadingLimits } from './limits';
+import type { CellMend } from './mends';
 import type { RefusalCode } from './refusal';
 import type { Expectation, FileKind, MappedImport, MappedRecord, Problem, Sheet, Workbook } from './types';
 
@@ -11,12 +12,13 @@ export interface ChildRequest {
   readonly maps: ReadingMaps;
 }
 
-/** What a file is read by. */
+/** What a file is read by, and the cells that a person read otherwise. */
 export interface ReadingMaps {
   /** The map that somebody made or changed for this file; null: the one recognised. */
   readonly given: ColumnMap | null;
   /** Maps kept by the lab: without a given one the first whose layout is in the file is applied to what is recognised. */
   readonly saved: readonly ColumnMap[];
+  readonly mends: readonly CellMend[];
 }
 
 /**

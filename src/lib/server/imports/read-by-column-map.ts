@@ -65,6 +65,7 @@ export function readByColumnMap(workbook: Workbook, map: ColumnMap, expectation:
   if (template && !isTemplateWelcome(template.experimentId, expectation, problems)) {
     return {
       map,
+      savedMap: null,
       reading: { template, sheets: [] },
       records: [],
       problems: problems.all(),
@@ -124,6 +125,7 @@ export function readByColumnMap(workbook: Workbook, map: ColumnMap, expectation:
   const records = checkRecords(drafts, expectation, problems);
   return {
     map,
+    savedMap: null,
     reading: { template, sheets: readings },
     records: records.map(toRecord),
     problems: problems.all(),

@@ -1,6 +1,7 @@
 import { inPieces, piece } from './child-messages';
 import type { ChildMessage, ChildRequest } from './child-messages';
 import { mapRecords } from './map-records';
+import { withMends } from './mends';
 import { readWorkbook } from './read-workbook';
 import { Refusal } from './refusal';
 import type { MappedImport } from './types';
@@ -14,7 +15,8 @@ function send(message: ChildMessage): Promise<void> {
 }
 
 async function answer({ bytes, limits, expectation, maps }: ChildRequest): Promise<void> {
-  const workbook = await readWorkbook(Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength), limits);
+  const read = await readWorkbook(Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength), limits);
+  const workbook = withMends(read, maps.mends);
   for (const texts of inPieces(workbook.sheets[0]?.texts ?? [], piece.texts))
     await send({ type: 'texts', texts });
   for (const { texts: _, ...sheet } of workbook.sheets) await send({ type: 'sheet', sheet });

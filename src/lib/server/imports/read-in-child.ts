@@ -26,7 +26,7 @@ export interface ChildOptions {
 
 const defaults = { timeoutMs: 60_000, memoryMb: 768 } as const;
 const memoryLookMs = 250;
-const noMaps: ReadingMaps = { given: null, saved: [] };
+const noMaps: ReadingMaps = { given: null, saved: [], mends: [] };
 
 /**
  * Reads an untrusted file in a process of its own, whose memory is capped and which is ended when it takes too long, so that this

@@ -204,6 +204,20 @@ function mapColumn(
   };
 }
 
+/** What the columns mean by the texts that stand over them in the given lines, wherever a person says that the header is. */
+export function columnsUnder(
+  view: Sheet,
+  headerLines: readonly number[],
+  context: RecogniseContext
+): MapColumn[] {
+  const columns = Array.from({ length: view.columnCount }, (_, column): HeaderColumn => {
+    const texts = headerLines.map((line) => cellAt(view, line, column)?.raw.trim() ?? '');
+    const text = texts.filter((each) => each !== '').join(' ');
+    return { column, text, header: readHeader(text, context.analytes) };
+  }).filter(({ text }) => text !== '');
+  return columns.map((column) => mapColumn(column, { columns, titleKind: null }, context));
+}
+
 /** By the headers and the orientation; the names of analytes do not count, nor how many there are side by side. */
 export function fingerprintOf({
   orientation,

@@ -397,6 +397,8 @@ export interface LabelReading {
 export interface MappedImport {
   /** What the file was read by. */
   readonly map: ColumnMap;
+  /** Which of the kept maps it was that applied by itself; null: none. */
+  readonly savedMap: number | null;
   readonly reading: Reading;
   readonly records: readonly MappedRecord[];
   readonly problems: readonly Problem[];

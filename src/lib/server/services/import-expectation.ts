@@ -7,7 +7,10 @@ import type {
   ReportedBasis
 } from '../../domain/vocabulary';
 import { sequelize } from '../db/sequelize';
+import type { ColumnMap } from '../../schemas/column-map';
+import type { CellMend } from '../imports/mends';
 import type {
+  Assignment,
   CalibrationSetExpectation,
   CheckExpectation,
   DecimalMark,
@@ -22,9 +25,26 @@ export interface Declared {
   readonly decimal: DecimalMark | null;
   /** The experiment whose page the file was dropped on. */
   readonly experimentId: string | null;
+  /** How the file is to be read where somebody changed what was recognised; null: as recognised, or by a kept map. */
+  readonly map: ColumnMap | null;
+  /** What sample labels mean, by the label as it stands in the file. */
+  readonly assignments: Readonly<Record<string, Assignment>>;
+  readonly mends: readonly CellMend[];
 }
 
-export const nothingDeclared: Declared = { basis: null, decimal: null, experimentId: null };
+export const nothingDeclared: Declared = {
+  basis: null,
+  decimal: null,
+  experimentId: null,
+  map: null,
+  assignments: {},
+  mends: []
+};
+
+/** What is declared about a kept file, as its row holds it. */
+export function declaredOf(row: unknown): Declared {
+  return { ...nothingDeclared, ...(row as Partial<Declared>) };
+}
 
 interface ExperimentRow {
   readonly id: string;
@@ -146,7 +166,7 @@ export async function loadExpectation(
     }),
     calibrationSets: calibrationSetExpectations(levels, checks),
     experimentId: declared.experimentId,
-    declared: { basis: declared.basis, decimal: declared.decimal }
+    declared: { basis: declared.basis, decimal: declared.decimal, assignments: declared.assignments }
   };
 }
 

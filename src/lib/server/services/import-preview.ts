@@ -16,7 +16,7 @@ import { columnLetters } from '../imports/cell-address';
 import { rowCells } from '../imports/sheet';
 import type { Expectation, MappedImport, MappedRecord, Sheet, Workbook } from '../imports/types';
 import { coveredPlaces } from './import-coverage';
-import { nothingDeclared, type Declared } from './import-expectation';
+import { declaredOf } from './import-expectation';
 import { readKeptFile } from './import-reading';
 import { importOfStudy } from './imports';
 import { require } from './permissions';
@@ -83,7 +83,7 @@ export async function previewImport(
 }
 
 async function frameOf(study: Study, kept: Import): Promise<ImportPreviewView> {
-  const declared: Declared = { ...nothingDeclared, ...(kept.declared as Partial<Declared>) };
+  const declared = declaredOf(kept.declared);
   const receiver = await User.findByPk(kept.receivedBy, { attributes: ['name'] });
   const [experiment] = declared.experimentId
     ? await sequelize.query<{ number: number; title: string }>(

@@ -17,7 +17,7 @@ import { Conflict, Invalid, NotFound } from '../errors';
 import type { Expectation, MappedImport, MappedRecord } from '../imports/types';
 import { coveredPlaces } from './import-coverage';
 import { declaredOf, loadExpectation } from './import-expectation';
-import { readKeptFile, type ImportReading } from './import-reading';
+import { readKeptFile, type FileRead } from './import-reading';
 import { createSequences, injectionKind } from './import-sequences';
 import { importOfStudy } from './imports';
 import { require } from './permissions';
@@ -283,7 +283,7 @@ async function markStored(
   actor: Actor,
   study: Study,
   kept: Import,
-  { mapped, keptMap }: Extract<ImportReading, { kind: 'read' }>,
+  { mapped, keptMap }: FileRead,
   reason: string
 ): Promise<void> {
   await sequelize.query(

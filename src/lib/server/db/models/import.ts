@@ -25,6 +25,7 @@ export class Import extends Model<InferAttributes<Import>, InferCreationAttribut
   declare counts: CreationOptional<Readonly<Record<string, number>>>;
   declare storedOrder: string | null;
   declare supersedesId: string | null;
+  declare columnMapVersionId: string | null;
   declare receivedBy: string;
   declare receivedAt: CreationOptional<Date>;
   declare storedBy: string | null;
@@ -52,6 +53,7 @@ Import.init(
     counts: { type: DataTypes.JSONB, allowNull: false, defaultValue: {} },
     storedOrder: DataTypes.BIGINT,
     supersedesId: DataTypes.UUID,
+    columnMapVersionId: DataTypes.UUID,
     receivedBy: { type: DataTypes.UUID, allowNull: false },
     receivedAt: { type: DataTypes.DATE, allowNull: false, defaultValue: DataTypes.NOW },
     storedBy: DataTypes.UUID,
