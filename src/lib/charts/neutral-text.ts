@@ -28,7 +28,7 @@ const marks: Readonly<Record<ChargeView, string>> = {
 export const chargeMark = (charge: ChargeView | null): string => (charge === null ? '' : marks[charge]);
 
 const chargeWords: Readonly<Record<ChargeView, string>> = {
-  none: 'mostly without charge',
+  none: 'mostly neutral',
   positive: 'mostly positive',
   negative: 'mostly negative',
   both: 'mostly with both charges'
@@ -39,18 +39,18 @@ export const chargeWord = (charge: ChargeView): string => chargeWords[charge];
 const down = (ph: number): number => Math.floor(ph * 10 + 1e-9) / 10;
 const up = (ph: number): number => Math.ceil(ph * 10 - 1e-9) / 10;
 
-/** Ranges of the axis in words: "below 2.9", "5 to 7.4, above 11"; null for none. */
-export function rangesText(ranges: readonly PhRangeView[]): string | null {
+/** Ranges of the axis in words: "below 2.9", "5 to 7.4, above 11", with `unit` "below pH 2.9"; null for none. */
+export function rangesText(ranges: readonly PhRangeView[], unit: '' | 'pH ' = ''): string | null {
   if (ranges.length === 0) return null;
   return ranges
     .map(({ low, high }) => {
       if (low <= 0 && high >= 14) return 'at any pH';
       // A range that leaves the axis at once has no tenth to be rounded to.
-      if (high < 0.1 || low > 13.9) return high < 0.1 ? 'about 0' : 'about 14';
-      if (low <= 0) return `below ${down(high)}`;
-      if (high >= 14) return `above ${up(low)}`;
+      if (high < 0.1 || low > 13.9) return high < 0.1 ? `about ${unit}0` : `about ${unit}14`;
+      if (low <= 0) return `below ${unit}${down(high)}`;
+      if (high >= 14) return `above ${unit}${up(low)}`;
       const [first, last] = [up(low), down(high)];
-      return first > last ? `about ${((low + high) / 2).toFixed(2)}` : `${first} to ${last}`;
+      return first > last ? `about ${unit}${((low + high) / 2).toFixed(2)}` : `${unit}${first} to ${last}`;
     })
     .join(', ');
 }
@@ -59,10 +59,17 @@ export function rangesText(ranges: readonly PhRangeView[]): string | null {
 export function neutralRowSentence(row: PanelChemistryRow, ph: number): string {
   if (row.neutral === null || row.charge === null) return `${row.name}: ${row.unknown ?? 'not known'}`;
   const parts = [
-    `${neutralText(row.neutral)} % without charge at pH ${ph}, ${chargeWord(row.charge)}`,
+    `${neutralText(row.neutral)} % neutral at pH ${ph}, ${chargeWord(row.charge)}`,
     row.logD === null ? 'log D not known' : `log D ${logDText(row.logD)}`,
-    `at least 99 % without charge: ${rangesText(row.neutralRanges) ?? 'at no pH'}`,
+    `at least 99 % neutral ${rangesText(row.neutralRanges, 'pH ') ?? 'at no pH'}`,
     ...row.also
   ];
   return `${row.name}: ${parts.join('; ')}`;
+}
+
+/** "A, B and C" of variants. */
+export function listedCodes(variants: readonly { readonly code: string }[]): string {
+  const codes = variants.map(({ code }) => code);
+  const last = codes.pop() ?? '';
+  return codes.length === 0 ? last : `${codes.join(', ')} and ${last}`;
 }

@@ -8,7 +8,6 @@ export interface ChemistryFindingView {
   readonly source: string;
   readonly standing: StandingView;
 }
-export type FindingView = ChemistryFindingView;
 
 /** Analytes that ask the same of the procedure. */
 export interface ChemistryGroupView {
@@ -20,30 +19,4 @@ export interface ChemistryGroupView {
   readonly findings: readonly ChemistryFindingView[];
   readonly source: string;
   readonly standing: StandingView;
-}
-
-/** log Kow with where it comes from: a value of the library always wins over a prediction. */
-export interface LogKowView {
-  readonly value: number;
-  readonly basis: 'library' | 'predicted';
-  readonly source: string;
-}
-
-/** What was typed beside what the structure says; `agree` is null where one of them is missing or cannot be compared. */
-export interface ComparedView {
-  readonly typed: string | null;
-  readonly computed: string | null;
-  readonly agree: boolean | null;
-}
-
-/** The structure of an analyte and what follows from it. */
-export interface StructureView {
-  /** A checked piece of SVG; null without a SMILES that can be read. */
-  readonly drawing: string | null;
-  /** Why there is no drawing though there is a SMILES. */
-  readonly problem: string | null;
-  readonly formula: ComparedView;
-  readonly molarMass: ComparedView;
-  readonly logKow: LogKowView | null;
-  readonly notes: readonly string[];
 }

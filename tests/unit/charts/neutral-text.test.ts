@@ -70,6 +70,7 @@ describe('neutralRowSentence', () => {
     role: 'target',
     class: 'acid',
     also: [],
+    evidence: 'acid pKa 4.91',
     pkaAcid: [4.91],
     pkaBase: [],
     logKow: { value: 3.97, basis: 'library', source: 'a handbook' },
@@ -85,7 +86,7 @@ describe('neutralRowSentence', () => {
 
   it('reads a row aloud', () => {
     expect(neutralRowSentence(row, 7)).toBe(
-      'Ibuprofen: 0.8 % without charge at pH 7, mostly negative; log D 1.9; at least 99 % without charge: below 2.9'
+      'Ibuprofen: 0.8 % neutral at pH 7, mostly negative; log D 1.9; at least 99 % neutral below pH 2.9'
     );
   });
 

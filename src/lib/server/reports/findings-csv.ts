@@ -10,7 +10,7 @@ export interface CsvAbout {
 }
 
 /** Invented data say so in every row, wherever a row is copied to. */
-const labText = ({ labName, labIsDemo }: CsvAbout): string =>
+export const labText = ({ labName, labIsDemo }: CsvAbout): string =>
   labIsDemo ? `${labName} (invented demo data)` : labName;
 
 /** A mass balance as CSV, figures unrounded: the judged part, each fraction, what was lost downstream, what is open. */

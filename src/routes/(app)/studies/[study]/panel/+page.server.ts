@@ -1,9 +1,9 @@
 import { redirect } from '@sveltejs/kit';
-import { chemistryGroups } from '$lib/server/chemistry';
 import { formObject } from '$lib/schemas/form-object';
 import { panelEntryForm, panelPasteForm } from '$lib/schemas/panel';
 import { answerForm, checked } from '$lib/server/form-answer';
 import { memberIn } from '$lib/server/hooks/member-in';
+import { panelChemistry } from '$lib/server/services/panel-chemistry';
 import {
   getPanel,
   pastePanel,
@@ -14,13 +14,28 @@ import {
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params, url }) => {
-  const panel = await getPanel(memberIn(locals), params.study);
+  const actor = memberIn(locals);
+  const panel = await getPanel(actor, params.study);
   const edited = url.searchParams.get('edit');
   const removed = url.searchParams.get('remove');
-  const judged = panel.filter(({ role }) => role === 'target' || role === 'surrogate');
+  const { lead, groups, further } = await panelChemistry(
+    actor,
+    params.study,
+    { ph: null, solids: null, phase: 'c18' },
+    { order: 'panel', href: () => '' }
+  );
   return {
     panel,
-    groups: chemistryGroups(judged.map(({ analyte }) => analyte)),
+    lead,
+    groups: [
+      ...groups.map(({ key, title, question, rows }) => ({
+        key,
+        title,
+        question,
+        names: rows.map(({ name }) => name)
+      })),
+      ...further
+    ],
     editing: panel.find(({ id }) => id === edited) ?? null,
     removing: panel.find(({ id }) => id === removed) ?? null,
     left: Number(url.searchParams.get('left') ?? 0),
