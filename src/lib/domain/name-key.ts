@@ -51,23 +51,37 @@ export function nameKey(text: string): string {
     .replaceAll(' ', '-');
 }
 
-/**
- * The CAS number in a text, in its canonical writing, or null where there is none.
- *
- * The last digit is a check digit: the other digits, numbered 1, 2, 3 … from the right, times their number, summed, modulo 10
- * (CAS Registry documentation, "Check digit verification"). A number that fails it is no CAS number.
- */
-export function parseCas(text: string): string | null {
-  const match = /^(?:cas(?:\s*(?:no\.?|number|rn|#))?\s*[:#]?\s*)?(\d{2,7})-(\d{2})-(\d)$/i.exec(
+/** A text that has the form of a CAS number, taken apart. */
+function casParts(text: string): { readonly body: string; readonly check: string } | null {
+  const match = /^(?:cas(?:\s*(?:no\.?|number|rn|#))?\s*[:#]?\s*)?(\d{2,7}-\d{2})-(\d)$/i.exec(
     text
       .normalize('NFKC')
       .replace(dashes, '-')
       .replace(/\s*-\s*/g, '-')
       .trim()
   );
-  if (!match) return null;
-  const [, first = '', second = '', check = ''] = match;
-  const digits = [...(first + second)].reverse();
-  const sum = digits.reduce((total, digit, index) => total + Number(digit) * (index + 1), 0);
-  return sum % 10 === Number(check) ? `${first}-${second}-${check}` : null;
+  return match ? { body: match[1] ?? '', check: match[2] ?? '' } : null;
+}
+
+/**
+ * The check digit of a CAS number: the other digits, numbered 1, 2, 3 … from the right, times their number, summed, modulo 10
+ * (CAS Registry documentation, "Check digit verification").
+ */
+function casCheckDigit(body: string): string {
+  const digits = [...body.replace('-', '')].reverse();
+  return String(digits.reduce((total, digit, index) => total + Number(digit) * (index + 1), 0) % 10);
+}
+
+/** The CAS number in a text, in its canonical writing, or null where there is none. One whose check digit fails is none. */
+export function parseCas(text: string): string | null {
+  const parts = casParts(text);
+  return parts && casCheckDigit(parts.body) === parts.check ? `${parts.body}-${parts.check}` : null;
+}
+
+/** Why a text is no CAS number, and what would be one. */
+export function casProblem(text: string): string {
+  const parts = casParts(text);
+  return parts
+    ? `'${text}' is not a CAS number: after ${parts.body} the check digit is ${casCheckDigit(parts.body)}, not ${parts.check}. Is a digit mistyped?`
+    : `'${text}' is not a CAS number. One is two to seven digits, two digits and a check digit, such as 58-08-2.`;
 }

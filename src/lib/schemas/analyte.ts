@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { parseCas } from '../domain/name-key';
+import { casProblem, parseCas } from '../domain/name-key';
 import { readNumber } from '../domain/numbers';
 import { optionalNumber, optionalText, requiredText, wholeNumber } from './fields';
 
@@ -44,12 +44,7 @@ export const analyteForm = z.object({
   cas: optionalText(40).transform((text, context) => {
     if (text === '') return null;
     const cas = parseCas(text);
-    if (cas === null) {
-      context.addIssue({
-        code: 'custom',
-        message: `'${text}' is not a CAS number: its check digit does not fit, or a part is missing.`
-      });
-    }
+    if (cas === null) context.addIssue({ code: 'custom', message: casProblem(text) });
     return cas;
   }),
   class: optionalText(80),
@@ -64,9 +59,17 @@ export const analyteForm = z.object({
   henryPaM3Mol: optionalNumber({ least: 0 }),
   waterSolubilityMgL: optionalNumber({ least: 0 }),
   sources: z.partialRecord(z.enum(sourcedProperties), optionalText(500)).default({}),
-  note: optionalText(4000)
+  note: optionalText(4000),
+  /** Said that another analyte of the same structure is meant. */
+  sameStructure: optionalText(3).transform((text) => text === 'yes')
 });
 export type AnalyteForm = z.output<typeof analyteForm>;
+
+/** As much of a form as says what an analyte is; a name may still be missing. */
+export const analytePreviewForm = analyteForm
+  .pick({ cas: true, smiles: true, formula: true, molarMass: true, logKow: true })
+  .extend({ name: optionalText(200) });
+export type AnalytePreviewForm = z.output<typeof analytePreviewForm>;
 
 export const analyteVersionForm = analyteForm.extend({
   /** The version that was opened. */

@@ -1,4 +1,5 @@
 import type { CriterionRule } from '../domain/criteria';
+import type { StructureView } from './structure';
 
 /** An analyte as lists and matches show it. */
 export interface AnalyteBrief {
@@ -35,6 +36,20 @@ export interface AnalyteView {
   readonly versions: readonly AnalyteVersionView[];
   /** Studies that have it on their panel. */
   readonly studies: readonly { readonly code: string; readonly title: string; readonly version: number }[];
+}
+
+/** Another analyte of the library that may be the same substance, and what says so. */
+export interface LikenessView {
+  readonly id: string;
+  readonly name: string;
+  /** `stereochemistry`: the same structure but for it. */
+  readonly by: 'name' | 'CAS number' | 'structure' | 'stereochemistry';
+}
+
+/** What a form says of an analyte before it is stored. */
+export interface AnalytePreview {
+  readonly structure: StructureView;
+  readonly alike: readonly LikenessView[];
 }
 
 export interface AnalytePage {

@@ -57,9 +57,15 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   '/(app)/studies/[study]/history': { read: 'studies.see' },
   '/(app)/library': { read: 'studies.see' },
   '/(app)/library/analytes': { read: 'studies.see' },
-  '/(app)/library/analytes/new': { read: 'library.edit', write: { default: 'library.edit' } },
+  '/(app)/library/analytes/new': {
+    read: 'library.edit',
+    write: { look: 'library.edit', store: 'library.edit' }
+  },
   '/(app)/library/analytes/[analyte]': { read: 'studies.see' },
-  '/(app)/library/analytes/[analyte]/edit': { read: 'library.edit', write: { default: 'library.edit' } },
+  '/(app)/library/analytes/[analyte]/edit': {
+    read: 'library.edit',
+    write: { look: 'library.edit', store: 'library.edit' }
+  },
   '/(app)/library/criteria': { read: 'studies.see' },
   '/(app)/library/criteria/new': { read: 'library.edit', write: { default: 'library.edit' } },
   '/(app)/library/criteria/[set]': { read: 'studies.see' },
@@ -116,6 +122,7 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   },
   '/(public)/help': { read: 'public' },
   '/(public)/help/figures': { read: 'public' },
+  '/(public)/help/chemistry': { read: 'public' },
   '/(public)/help/data-files': { read: 'public' },
   '/(public)/help/api': { read: 'public' },
 

@@ -10,12 +10,13 @@ export const briefColumns = `v.analyte_id AS id, v.name, v.cas, v.class, v.formu
 export interface NamedAnalyte extends AnalyteBrief {
   readonly versionId: string;
   readonly synonyms: readonly string[];
+  readonly smiles: string | null;
 }
 
 /** Every analyte of a lab's library in its current version, by name; archived ones are left out. */
 export async function currentAnalytes(labId: string): Promise<readonly NamedAnalyte[]> {
   return sequelize.query<NamedAnalyte>(
-    `SELECT ${briefColumns}, v.id AS "versionId", v.synonyms
+    `SELECT ${briefColumns}, v.id AS "versionId", v.synonyms, v.smiles
       FROM analytes a JOIN analyte_versions v ON v.lab_id = a.lab_id AND v.id = a.current_version_id
       WHERE a.lab_id = $1 AND a.archived_at IS NULL ORDER BY lower(v.name), v.id`,
     { bind: [labId], type: QueryTypes.SELECT }
@@ -25,6 +26,7 @@ export async function currentAnalytes(labId: string): Promise<readonly NamedAnal
 export function briefOf({
   versionId: _versionId,
   synonyms: _synonyms,
+  smiles: _smiles,
   ...brief
 }: NamedAnalyte): AnalyteBrief {
   return brief;

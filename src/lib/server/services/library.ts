@@ -11,7 +11,9 @@ import { sequelize } from '../db/sequelize';
 import { audit, inTransaction } from '../db/transaction';
 import { Invalid, NotFound } from '../errors';
 import { changesBetween, listed } from './changes';
+import { requireReadable } from './analyte-chemistry';
 import { knownId } from './known-id';
+import { likenesses, likenessProblems } from './library-likeness';
 import { briefColumns, briefOf, currentAnalytes } from './library-rows';
 import { matchNames } from './name-matching';
 import { require } from './permissions';
@@ -84,19 +86,14 @@ export async function getAnalyte(actor: Actor, id: string): Promise<AnalyteView>
   return { id, current, versions, studies };
 }
 
-/** Two analytes of one name or CAS number could not be told apart in a data file. */
+/** @throws Invalid when the structure cannot be read, or another analyte could be the same (`likenessProblems`) */
 async function requireDistinct(actor: Actor, form: AnalyteForm, ownId: string | null): Promise<void> {
+  await requireReadable(form.smiles);
   const others = (await currentAnalytes(actor.labId)).filter(({ id }) => id !== ownId);
-  const key = nameKey(form.name);
-  const problems = [];
-  if (key === '') problems.push({ path: 'name', message: 'A name needs a letter or a digit.' });
-  const sameName = others.find(({ name, synonyms }) =>
-    [name, ...synonyms].some((text) => nameKey(text) === key)
-  );
-  if (sameName)
-    problems.push({ path: 'name', message: `${sameName.name} in the library goes by this name.` });
-  const sameCas = form.cas === null ? undefined : others.find(({ cas }) => cas === form.cas);
-  if (sameCas) problems.push({ path: 'cas', message: `${sameCas.name} in the library has this CAS number.` });
+  const problems = [
+    ...(nameKey(form.name) === '' ? [{ path: 'name', message: 'A name needs a letter or a digit.' }] : []),
+    ...likenessProblems(await likenesses(form, others), form.sameStructure)
+  ];
   if (problems.length > 0) throw new Invalid(problems);
 }
 
@@ -127,7 +124,7 @@ async function lockLibrary(actor: Actor): Promise<void> {
   await Lab.findByPk(actor.labId, { lock: Transaction.LOCK.NO_KEY_UPDATE });
 }
 
-/** Puts an analyte into the library. @returns its id @throws Invalid when its name or CAS number is taken */
+/** Puts an analyte into the library. @returns its id @throws Invalid when its name, CAS number or structure is there already */
 export async function createAnalyte(actor: Actor, form: AnalyteForm): Promise<string> {
   require(actor, 'library.edit');
   return inTransaction(actor, {}, async () => {

@@ -1,10 +1,11 @@
 import { redirect } from '@sveltejs/kit';
 import { isAllowed } from '$lib/domain/permissions';
-import { analyteVersionForm } from '$lib/schemas/analyte';
+import { analytePreviewForm, analyteVersionForm } from '$lib/schemas/analyte';
 import { formObject } from '$lib/schemas/form-object';
 import { Forbidden } from '$lib/server/errors';
 import { answerForm, checked } from '$lib/server/form-answer';
 import { memberIn } from '$lib/server/hooks/member-in';
+import { previewAnalyte } from '$lib/server/services/analyte-chemistry';
 import { getAnalyte, listClasses, newAnalyteVersion } from '$lib/server/services/library';
 import { analyteFields } from '../../analyte-fields';
 import type { Actions, PageServerLoad } from './$types';
@@ -23,7 +24,19 @@ export const load: PageServerLoad = async ({ locals, params }) => {
 };
 
 export const actions: Actions = {
-  default: ({ request, locals, params }) =>
+  look: ({ request, locals, params }) =>
+    answerForm(request, async (fields, form) => ({
+      values: fields,
+      errors: {} as Record<string, string>,
+      message: null,
+      preview: await previewAnalyte(
+        memberIn(locals),
+        checked(analytePreviewForm, formObject(form)),
+        params.analyte
+      )
+    })),
+
+  store: ({ request, locals, params }) =>
     answerForm(request, async (_fields, form) => {
       await newAnalyteVersion(
         memberIn(locals),
