@@ -15,6 +15,7 @@ const namesSql = `
     WHERE lab_id = $1 AND id = ANY($2::uuid[])
   UNION ALL SELECT id, name FROM calibration_sets WHERE lab_id = $1 AND id = ANY($2::uuid[])
   UNION ALL SELECT id, label FROM calibration_levels WHERE lab_id = $1 AND id = ANY($2::uuid[])
+  UNION ALL SELECT id, label FROM check_standards WHERE lab_id = $1 AND id = ANY($2::uuid[])
   UNION ALL SELECT id, number || ', ' || title FROM experiments WHERE lab_id = $1 AND id = ANY($2::uuid[])
   UNION ALL SELECT id, code || ', ' || name FROM variants WHERE lab_id = $1 AND id = ANY($2::uuid[])
   UNION ALL SELECT id, name || ', version ' || version FROM criteria_set_versions
