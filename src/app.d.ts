@@ -1,3 +1,4 @@
+import type { AccessScope } from '$lib/domain/access-scopes';
 import type { Actor } from '$lib/domain/actor';
 import type { Problem } from '$lib/server/errors';
 
@@ -8,6 +9,8 @@ declare global {
       requestId: string;
       /** The signed-in member of the active lab; null for a stranger. */
       actor: Actor | null;
+      /** What the access key may do that the request came with; null in a session, and for a stranger. */
+      keyScopes: readonly AccessScope[] | null;
     }
     interface Error {
       message: string;
@@ -17,6 +20,8 @@ declare global {
       code?: string;
       /** What is wrong with what was sent, and where. */
       problems?: readonly Problem[];
+      /** The import that keeps a file which could not be stored. */
+      importId?: string;
       /** What is stored now, when a save came too late. */
       current?: unknown;
       retryAfterSeconds?: number;

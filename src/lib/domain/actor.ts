@@ -10,4 +10,6 @@ export interface Actor {
   readonly labName: string;
   /** The lab holds invented demo data, and every page and export says so. */
   readonly labIsDemo: boolean;
+  /** The name of the access key that acts for the person; absent in a session. */
+  readonly accessKey?: string;
 }

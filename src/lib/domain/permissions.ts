@@ -19,7 +19,9 @@ export const permissions = {
   'library.edit': ['chemist', 'manager'],
   'members.manage': ['manager'],
   'lab.settings': ['manager'],
-  'export.any': ['chemist', 'analyst', 'manager', 'reviewer']
+  'export.any': ['chemist', 'analyst', 'manager', 'reviewer'],
+  'access-keys.own': ['chemist', 'analyst', 'manager', 'reviewer'],
+  'access-keys.revoke-any': ['manager']
 } as const satisfies Record<string, readonly Role[]>;
 
 export type Permission = keyof typeof permissions;

@@ -70,6 +70,36 @@ export class Invalid extends ExpectedError {
   }
 }
 
+/** More was sent than is taken. */
+export class TooLarge extends ExpectedError {
+  override readonly name = 'TooLarge';
+  readonly status = 413;
+  readonly code = 'too-large';
+}
+
+/** What was sent is of a kind that is not taken here. */
+export class Unsupported extends ExpectedError {
+  override readonly name = 'Unsupported';
+  readonly status = 415;
+  readonly code = 'unsupported';
+}
+
+/** A data file was received and kept, and cannot be stored as it is. Carries every problem, by sheet and cell. */
+export class FileProblems extends ExpectedError {
+  override readonly name = 'FileProblems';
+  readonly status = 422;
+  readonly code = 'file-problems';
+  readonly problems: readonly Problem[];
+  /** The import that keeps the file. */
+  readonly importId: string;
+  /** @param problems errors first; may hold questions and notes beside them */
+  constructor(importId: string, problems: readonly Problem[], message: string) {
+    super(message);
+    this.importId = importId;
+    this.problems = problems;
+  }
+}
+
 /** The thing changed, or its state changed, since the person looked at it. */
 export class Conflict extends ExpectedError {
   override readonly name = 'Conflict';

@@ -15,6 +15,7 @@ export function personLinks(role: Role, labs = 1): readonly NavigationItem[] {
     { href: '/account', label: 'Your name and password' },
     ...(labs > 1 ? [{ href: '/account#labs', label: 'Switch lab', count: labs }] : []),
     { href: '/lab/members', label: 'Members' },
+    { href: '/lab/access-keys', label: 'Access keys' },
     ...(isAllowed(role, 'lab.settings')
       ? [
           { href: '/lab/settings', label: 'Lab settings' },

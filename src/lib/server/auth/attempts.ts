@@ -1,8 +1,8 @@
 import { createHash } from 'node:crypto';
 import { isIPv6 } from 'node:net';
-import { RateLimiterPostgres, RateLimiterRes } from 'rate-limiter-flexible';
+import type { RateLimiterPostgres } from 'rate-limiter-flexible';
 import { sequelize } from '../db/sequelize';
-import { TooManyRequests } from '../errors';
+import { countedLimit, spendPoint } from './counted-limit';
 
 /** What is limited. A person at the keyboard stays far below; a program that guesses does not. */
 const limits = {
@@ -36,37 +36,16 @@ export function subscriberOf(address: string): string {
 /** The keys are hashed: people type passwords into the wrong field, and the table should not learn them. */
 const keyOf = (text: string): string => createHash('sha256').update(text).digest('base64url');
 
-async function consume(limiter: RateLimiterPostgres, key: string): Promise<void> {
-  try {
-    await limiter.consume(key);
-  } catch (refusal) {
-    if (refusal instanceof RateLimiterRes) throw new TooManyRequests(refusal.msBeforeNext / 1000);
-    throw refusal;
-  }
-}
-
-/** Kept in the table `attempt_limits`, so that the limits hold over all processes that share the database. */
-function limiter(kind: AttemptKind, by: 'perEmail' | 'perAddress'): RateLimiterPostgres {
-  return new RateLimiterPostgres({
-    storeClient: sequelize,
-    storeType: 'sequelize',
-    tableName: 'attempt_limits',
-    // The migrations made it.
-    tableCreated: true,
-    clearExpiredByTimeout: false,
-    keyPrefix: `${kind}-${by}`,
-    points: limits[kind][by],
-    duration: limits[kind].minutes * 60
-  });
-}
+const limiter = (kind: AttemptKind, by: 'perEmail' | 'perAddress'): RateLimiterPostgres =>
+  countedLimit(`${kind}-${by}`, { points: limits[kind][by], seconds: limits[kind].minutes * 60 });
 
 /**
  * Counts an attempt before it is made, so that many at once cannot slip past.
  * @throws TooManyRequests with the seconds to wait
  */
 export async function spendAttempt(kind: AttemptKind, { email, address }: Attempt): Promise<void> {
-  await consume(limiter(kind, 'perAddress'), keyOf(subscriberOf(address)));
-  await consume(limiter(kind, 'perEmail'), keyOf(email));
+  await spendPoint(limiter(kind, 'perAddress'), keyOf(subscriberOf(address)));
+  await spendPoint(limiter(kind, 'perEmail'), keyOf(email));
 }
 
 /** Clears what an e-mail address had used up. */

@@ -121,8 +121,15 @@ export function audit(entry: AuditEntry): void {
   const frame = openFrame();
   if (!frame) throw new Error('audit events are written inside inTransaction');
   if (!frame.writer) throw new Error('an audit event needs a writer and a lab');
-  const { labId, userId, name } = frame.writer;
-  frame.unit.events.push({ ...entry, labId, actorId: userId, actorName: name });
+  const { labId, userId, name, accessKey } = frame.writer;
+  const after = accessKey === undefined ? entry.after : withKey(entry.after, accessKey);
+  frame.unit.events.push({ ...entry, after, labId, actorId: userId, actorName: name });
+}
+
+/** What a program did in a person's name says so. */
+function withKey(after: unknown, accessKey: string): unknown {
+  const isRecord = typeof after === 'object' && after !== null && !Array.isArray(after);
+  return { ...(isRecord ? after : after === undefined || after === null ? {} : { value: after }), accessKey };
 }
 
 /** The running transaction, or null outside of one. */

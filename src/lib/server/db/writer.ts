@@ -3,4 +3,6 @@ export interface Writer {
   readonly labId: string;
   readonly userId: string | null;
   readonly name: string;
+  /** The access key that writes in the person's name. */
+  readonly accessKey?: string;
 }

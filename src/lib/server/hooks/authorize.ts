@@ -2,11 +2,14 @@ import { error, redirect, type Handle, type RequestEvent } from '@sveltejs/kit';
 import { isAllowed } from '../../domain/permissions';
 import { signInPath } from '../auth/next-path';
 import { refusalSentence } from '../auth/refusal';
-import { isPermission, requiredAccess } from '../auth/route-access';
+import { isPermission, isWriteByKey, requiredAccess, scopeNeeded } from '../auth/route-access';
 import { Forbidden, NotFound, Unauthenticated, type ExpectedError } from '../errors';
 import { logger } from '../logger';
 import { isEnhancedForm, keepForm } from './kept-form';
 import { problemResponse } from './problem';
+
+const nobodyAsks =
+  'Nobody is signed in here, and no access key came with the request (Authorization: Bearer …).';
 
 const isApi = (routeId: string): boolean => routeId.startsWith('/api/');
 
@@ -17,11 +20,32 @@ function refuse(routeId: string, refusal: ExpectedError): Response {
 
 /** Sends a stranger to the sign-in page and back; programs get 401 and its reason, a page its form with what was typed. */
 async function turnAway(routeId: string, { url, request }: RequestEvent): Promise<Response> {
-  if (isApi(routeId)) return problemResponse(new Unauthenticated());
+  if (isApi(routeId)) return problemResponse(new Unauthenticated(nobodyAsks));
   if (isEnhancedForm(request)) return keepForm(request);
   // After a form was sent, the way back is to the page that held it, not to its action.
   const search = request.method === 'GET' ? url.search : '';
   redirect(303, signInPath(url.pathname, search));
+}
+
+/** Why a request is refused by what its key may do, or for want of one; null: it is not. */
+function refusalOfKey(
+  routeId: string,
+  method: string,
+  scopes: App.Locals['keyScopes']
+): Forbidden | Unauthenticated | null {
+  const scope = scopeNeeded(routeId, method);
+  if (scopes === null) {
+    return isWriteByKey(routeId, method)
+      ? new Unauthenticated(
+          'This takes an access key, sent as "Authorization: Bearer …"; a session does not do.'
+        )
+      : null;
+  }
+  if (scope === null) return new Forbidden('No access key can do this; a person does it on the page.');
+  if (scopes.includes(scope)) return null;
+  return new Forbidden(
+    `This takes an access key with the scope "${scope}". This one has "${scopes.join(', ')}".`
+  );
 }
 
 /** Denies by default, by route id: pages, their data, form actions and endpoints alike. */
@@ -40,6 +64,8 @@ export const authorize: Handle = async ({ event, resolve }) => {
   }
   if (access === 'public') return resolve(event);
   if (actor === null) return turnAway(routeId, event);
+  const keyRefusal = refusalOfKey(routeId, event.request.method, event.locals.keyScopes);
+  if (keyRefusal) return refuse(routeId, keyRefusal);
   if (isPermission(access) && !isAllowed(actor.role, access)) {
     return refuse(routeId, new Forbidden(refusalSentence(actor.role, access)));
   }

@@ -1,5 +1,5 @@
 import { error as kitError, type HandleServerError } from '@sveltejs/kit';
-import { Conflict, ExpectedError, Invalid, TooManyRequests } from '../errors';
+import { Conflict, ExpectedError, FileProblems, Invalid, TooManyRequests } from '../errors';
 import { logger } from '../logger';
 import { requestContext } from '../request-context';
 
@@ -39,7 +39,10 @@ export function toHttp(failure: unknown): HttpFailure {
     body: {
       message,
       code,
-      ...(failure instanceof Invalid ? { problems: failure.problems } : {}),
+      ...(failure instanceof Invalid || failure instanceof FileProblems
+        ? { problems: failure.problems }
+        : {}),
+      ...(failure instanceof FileProblems ? { importId: failure.importId } : {}),
       ...(failure instanceof Conflict && failure.current !== null ? { current: failure.current } : {}),
       ...(failure instanceof TooManyRequests ? { retryAfterSeconds: failure.retryAfterSeconds } : {})
     }

@@ -9,6 +9,9 @@ const titles: Readonly<Record<string, string>> = {
   forbidden: 'Not allowed',
   invalid: 'Entries need mending',
   conflict: 'Changed meanwhile',
+  'too-large': 'Too large',
+  unsupported: 'Kind not taken',
+  'file-problems': 'The file needs mending',
   'too-many-requests': 'Too many attempts',
   unforeseen: 'Failed'
 };
@@ -36,6 +39,8 @@ export function problemResponse(failure: unknown): Response {
 /** The problem+json response for a mapped failure. */
 export function problemFrom(mapped: HttpFailure): Response {
   const headers = new Headers({ 'content-type': 'application/problem+json', 'cache-control': 'no-store' });
+  // RFC 9110 asks for a challenge with every 401.
+  if (mapped.status === 401) headers.set('www-authenticate', 'Bearer realm="headwater"');
   if (mapped.body.retryAfterSeconds !== undefined)
     headers.set('retry-after', String(mapped.body.retryAfterSeconds));
   return new Response(JSON.stringify(problemBody(mapped)), { status: mapped.status, headers });
