@@ -90,6 +90,8 @@ export async function receiveFile(
   const sha256 = createHash('sha256').update(bytes).digest('hex');
 
   return inTransaction(actor, { study: study.id }, async () => {
+    // One at a time, so that bytes which come twice at the same moment are kept once.
+    await studyOf(actor, studyCode, { locked: true });
     const known = await sameBytes(actor, study, sha256);
     if (known?.state === 'stored') {
       return {
@@ -136,7 +138,8 @@ async function experimentIdOf(study: Study, number: number): Promise<string> {
   return row.id;
 }
 
-async function sameBytes(
+/** The import that holds these bytes already, one that is stored before one that waits. */
+export async function sameBytes(
   actor: Actor,
   study: Study,
   sha256: string
@@ -258,7 +261,22 @@ interface ListRow {
 /** Every file that a study ever received, the newest first. */
 export async function listImports(actor: Actor, studyCode: string): Promise<readonly ImportListView[]> {
   require(actor, 'studies.see');
-  const study = await studyOf(actor, studyCode);
+  return listed(actor, await studyOf(actor, studyCode), null);
+}
+
+/** One file of a study as its list shows it. @throws NotFound */
+export async function listedImport(actor: Actor, study: Study, importId: string): Promise<ImportListView> {
+  const [found] = await listed(actor, study, knownId(importId));
+  if (!found) throw new NotFound('There is no such import in this study.');
+  return found;
+}
+
+/** @param importId null: all of them */
+async function listed(
+  actor: Actor,
+  study: Study,
+  importId: string | null
+): Promise<readonly ImportListView[]> {
   const rows = await sequelize.query<ListRow>(
     `SELECT i.id, i.file_name, i.byte_size, i.sha256, i.state, i.counts, i.received_at, r.name AS received_by,
         i.stored_at, s.name AS stored_by, i.stored_by AS stored_by_id, i.ended_at, e.name AS ended_by, i.end_reason,
@@ -266,8 +284,9 @@ export async function listImports(actor: Actor, studyCode: string): Promise<read
           WHERE x.id IN (SELECT DISTINCT experiment_id FROM extracts WHERE import_id = i.id)) AS experiments
       FROM imports i JOIN users r ON r.id = i.received_by
         LEFT JOIN users s ON s.id = i.stored_by LEFT JOIN users e ON e.id = i.ended_by
-      WHERE i.lab_id = $1 AND i.study_id = $2 ORDER BY i.received_at DESC, i.id DESC`,
-    { bind: [actor.labId, study.id], type: QueryTypes.SELECT }
+      WHERE i.lab_id = $1 AND i.study_id = $2 AND ($3::uuid IS NULL OR i.id = $3)
+      ORDER BY i.received_at DESC, i.id DESC`,
+    { bind: [actor.labId, study.id, importId], type: QueryTypes.SELECT }
   );
   return rows.map((row) => ({
     id: row.id,

@@ -1,9 +1,7 @@
 import { subjectParameters } from '$lib/schemas/findings';
-import { NotFound } from '$lib/server/errors';
 import { checked } from '$lib/server/form-answer';
 import { memberIn } from '$lib/server/hooks/member-in';
-import { attachment } from '$lib/server/http/attachment';
-import { resultsCsv } from '$lib/server/reports/results-csv';
+import { recoveriesFile } from '$lib/server/http/recoveries-file';
 import { resultsTableView } from '$lib/server/services/results';
 import type { RequestHandler } from './$types';
 
@@ -12,12 +10,5 @@ export const GET: RequestHandler = async ({ locals, params, url }) => {
   const actor = memberIn(locals);
   const query = checked(subjectParameters, Object.fromEntries(url.searchParams));
   const { results } = await resultsTableView(actor, params.study, query, (address) => address);
-  if (!results) throw new NotFound('The study has no experiment yet.');
-  const text = resultsCsv(results, {
-    study: params.study,
-    labName: actor.labName,
-    labIsDemo: actor.labIsDemo
-  });
-  const name = `${params.study}-experiment-${results.experiment.number}-recoveries.csv`;
-  return attachment(name, new TextEncoder().encode(text), 'text/csv; charset=utf-8');
+  return recoveriesFile(actor, params.study, results);
 };
