@@ -59,7 +59,10 @@ export function curveLayout(input: CurveInput): CurveLayout {
   const xs = [...places, ...curve].map(({ x }) => x);
   const ys = [...places, ...curve].map(({ y }) => y);
   const positive = (values: readonly number[]): number[] => values.filter((value) => value > 0);
-  const [top, right] = [Math.max(...ys, 0), Math.max(...xs, 0)];
+  const right = Math.max(...xs, 0);
+  // A band that is wide against the curve itself would press everything else flat: the plot ends above it.
+  const edges = curve.flatMap(({ confidence, prediction }) => [confidence[1], prediction?.[1] ?? 0]);
+  const top = Math.min(Math.max(...ys, ...edges, 0), 1.5 * Math.max(...ys, 0));
 
   const x =
     axes === 'even'
@@ -68,7 +71,7 @@ export function curveLayout(input: CurveInput): CurveLayout {
   const low = axes === 'even' ? Math.min(0, ...ys) : Math.min(...positive(ys)) / 2;
   const y =
     axes === 'even' ? scaleLinear([low, top * 1.06 || 1], [100, 0]) : scaleLog([low, top * 1.5], [100, 0]);
-  const down = (value: number): number => round(y(Math.max(value, low)));
+  const down = (value: number): number => round(Math.max(0, y(Math.max(value, low))));
   const across = (value: number): number => round(x(value));
 
   const path = lineOf<CurvePointView>()

@@ -1,14 +1,9 @@
 import type { CriterionRule } from '../../domain/criteria';
+import { percentText } from '../../domain/figure-text';
 import type { CalibrationModelName } from '../../domain/vocabulary';
 import { coefficientTests, runsOneWay, solveCalibration, StatsError } from '../stats';
 import { calibrate, fitChoiceOf, type Calibration } from './calibration';
-import {
-  calibrationRules,
-  checkCalibration,
-  levelCount,
-  worstLevel,
-  type CalibrationCheck
-} from './calibration-check';
+import { checkCalibration, levelCount, worstLevel, type CalibrationCheck } from './calibration-check';
 import { fitKinds, withChoices, type ProposedFit } from './calibration-proposal';
 import type { CalibrationSet, PanelEntry } from './types';
 
@@ -96,7 +91,7 @@ export function calibrationCandidates(
       lowestError: lowestErrorOf(made),
       zero: emptyReadingOf(made),
       oneWay: fit.model === 'quadratic' ? runsOneWay(made.fit) : null,
-      speaksFor: forIt(made, checks, rules, lines),
+      speaksFor: forIt(made, lines),
       speaksAgainst: againstIt(made, checks, lines)
     };
   });
@@ -118,20 +113,12 @@ export function emptyReadingOf({ fit }: Usable): Candidate['zero'] {
   }
 }
 
-function forIt(
-  line: Usable,
-  checks: readonly CalibrationCheck[],
-  rules: readonly CriterionRule[],
-  lines: readonly Usable[]
-): string[] {
+function forIt(line: Usable, lines: readonly Usable[]): string[] {
   const said: string[] = [];
-  // The direction of a curve is asked of every curve and is no rule of the set.
-  const held = checks.filter(({ rule }) => rules.includes(rule));
-  if (held.length > 0 && checks.every(({ holds }) => holds)) said.push('It holds every rule.');
   const { rse, model, weighting } = line.fit;
   const others = lines.flatMap(({ fit }) => (fit.rse === null || fit === line.fit ? [] : [fit.rse]));
   if (rse !== null && others.length > 0 && others.every((other) => rse < other)) {
-    said.push(`Its RSE is the smallest, ${digits(rse)} %.`);
+    said.push(`Its RSE is the smallest, ${percentText(rse)} %.`);
   }
   const plain = lines.find(({ fit }) => fit.model === model && fit.weighting === 'none');
   const own = lowestErrorOf(line);
@@ -188,7 +175,7 @@ function againstIt(line: Usable, checks: readonly CalibrationCheck[], lines: rea
   const zero = emptyReadingOf(line);
   if (zero && Math.abs(zero.percent) >= emptyReading) {
     said.push(
-      `No response at all reads as ${digits(Math.abs(zero.percent))} % of the lowest level ${zero.x < 0 ? 'below' : 'above'} zero.`
+      `No response at all reads ${percentText(Math.abs(zero.percent))} % of the lowest level, ${zero.x < 0 ? 'below' : 'above'} zero.`
     );
   }
   return said;
@@ -206,10 +193,6 @@ function limitOf({ low, high, unit }: CriterionRule): string {
   return low === null ? '' : ` (at least ${low}${percent})`;
 }
 
-const off = (error: number): string => (Number.isFinite(error) ? `${digits(error)} %` : 'endlessly');
+const off = (error: number): string => (Number.isFinite(error) ? `${percentText(error)} %` : 'endlessly');
 const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1);
-const digits = (value: number): string => String(Number(value.toPrecision(3)));
 const pText = (p: number): string => (p < 0.001 ? '< 0.001' : '= ' + String(Number(p.toPrecision(2))));
-
-/** True when the rules say anything about the lines of a calibration. */
-export const rulesLines = (rules: readonly CriterionRule[]): boolean => calibrationRules(rules).length > 1;

@@ -1,7 +1,6 @@
 import type { Actor } from '../../domain/actor';
 import type { LevelsForm, LevelsProposal } from '../../schemas/calibration';
 import type { ProposedLevelsView } from '../../views/calibration';
-import { fitChoiceOf } from '../amounts/calibration';
 import type { CalibrationLevel as LevelData } from '../amounts/types';
 import { CalibrationLevel } from '../db/models/calibration-level';
 import { CalibrationLevelConcentration } from '../db/models/calibration-level-concentration';

@@ -50,6 +50,9 @@ export function calibrationProvenance(
       })
     ],
     inputs: [
+      input('Calibration set', set.name, '', {
+        href: `/studies/${figures.data.code}/calibration/${set.id}?analyte=${entry.id}#fit`
+      }),
       ...fit.coefficients.map((value, index) =>
         input(
           choice.model === 'average response factor' ? 'Average response factor' : `Coefficient b${index}`,

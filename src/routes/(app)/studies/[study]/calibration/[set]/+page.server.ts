@@ -15,6 +15,8 @@ import { overviewRow, standingSentence } from './overview-row';
 
 interface Asked {
   readonly proposal: ProposedFitsView | null;
+  /** The address asks for all analytes of the set, whatever is ticked. */
+  readonly all: boolean;
   readonly levels: 'keep' | 'these';
   readonly levelsLeftOut: readonly string[];
   readonly errors: Readonly<Record<string, string>>;
@@ -27,11 +29,12 @@ async function askedOf(
   set: CalibrationSetView,
   url: URL
 ): Promise<Asked> {
-  const nothing: Asked = { proposal: null, levels: 'these', levelsLeftOut: [], errors: {} };
+  const nothing: Asked = { proposal: null, all: false, levels: 'these', levelsLeftOut: [], errors: {} };
   if (!url.searchParams.has('model')) return nothing;
   const form = new FormData();
   for (const [name, value] of url.searchParams) form.append(name, value);
-  if (form.getAll('entries').includes('all')) {
+  const all = form.getAll('entries').includes('all');
+  if (all) {
     form.delete('entries');
     for (const { entryId } of set.fits) form.append('entries', entryId);
   }
@@ -39,13 +42,20 @@ async function askedOf(
   try {
     const asked = checked(proposalQuery, sent);
     const { levels, levelsLeftOut } = asked;
-    return { levels, levelsLeftOut, errors: {}, proposal: await proposeFits(actor, study, set.id, asked) };
+    return {
+      all,
+      levels,
+      levelsLeftOut,
+      errors: {},
+      proposal: await proposeFits(actor, study, set.id, asked)
+    };
   } catch (error) {
     if (!(error instanceof Invalid)) throw error;
     const errors: Record<string, string> = {};
     for (const { path, message } of error.problems) errors[path] ??= message;
     return {
       ...nothing,
+      all,
       levels: sent.levels === 'keep' ? 'keep' : 'these',
       levelsLeftOut: form.getAll('levelsLeftOut').map(String),
       errors
@@ -66,15 +76,22 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
       : null;
   const links = figureLinks(url);
   const { fits, ...rest } = set;
+  const fit = analyte === null ? null : await getCalibrationFit(actor, params.study, set, analyte, proposed);
+  const isLogarithmic = url.searchParams.get('axes') === 'logarithmic';
+  const otherAxes = new URLSearchParams(url.searchParams);
+  if (isLogarithmic) otherAxes.delete('axes');
+  else otherAxes.set('axes', 'logarithmic');
   return {
     set: rest,
     sentence: standingSentence(set),
     rows: fits.map(overviewRow),
     names: Object.fromEntries(panel.map(({ id, analyte: { name } }) => [id, name])),
-    fit: analyte === null ? null : await getCalibrationFit(actor, params.study, set, analyte, proposed),
+    fit,
     asked,
     query: url.searchParams.toString(),
-    axes: url.searchParams.get('axes') === 'logarithmic' ? ('logarithmic' as const) : ('even' as const),
+    axes: isLogarithmic ? ('logarithmic' as const) : ('even' as const),
+    axesHref: `?${otherAxes}#fit`,
+    provenanceHref: fit?.provenance ? links.figureLink(fit.provenance) : null,
     done: url.searchParams.get('done'),
     figure: await openFigure(actor, params.study, links)
   };

@@ -1,13 +1,13 @@
 import { redirect } from '@sveltejs/kit';
 import { calibrationSetForm } from '$lib/schemas/calibration';
 import { formObject } from '$lib/schemas/form-object';
-import { filledRows } from '$lib/schemas/form-rows';
 import { Forbidden } from '$lib/server/errors';
 import { answerForm, checked } from '$lib/server/form-answer';
 import { memberIn } from '$lib/server/hooks/member-in';
 import { createCalibrationSet } from '$lib/server/services/calibrations';
 import { getPanel } from '$lib/server/services/panels';
 import type { Actions, PageServerLoad } from './$types';
+import { filledLevels } from './filled-levels';
 
 export const load: PageServerLoad = async ({ locals, params, parent }) => {
   const { may } = await parent();
@@ -21,7 +21,7 @@ export const actions: Actions = {
   default: ({ request, locals, params }) =>
     answerForm(request, async (_fields, form) => {
       const sent = formObject(form);
-      const levels = filledRows(sent.levels, 'concentrationNgPerMl');
+      const levels = filledLevels(sent.levels);
       const id = await createCalibrationSet(
         memberIn(locals),
         params.study,
