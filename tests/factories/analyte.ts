@@ -19,6 +19,8 @@ export async function makeAnalyte(
       synonyms: readonly string[];
       class: string | null;
       logKow: number;
+      smiles: string;
+      pkaAcid: readonly number[];
     }>
   > = {}
 ): Promise<MadeAnalyte> {

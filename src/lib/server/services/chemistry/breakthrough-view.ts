@@ -1,4 +1,3 @@
-import { figureText } from '../../../domain/figure-text';
 import { givenText } from '../../../domain/given-text';
 import type { BedParameters, ChemistryParameters } from '../../../schemas/panel-chemistry';
 import type { ChemistryFindingView } from '../../../views/chemistry';
@@ -10,6 +9,7 @@ import type { ReadSubstance } from './read-substance';
 /** Where nobody says: the bed that published methods use for half a litre, and the loss that reviews speak of. */
 const usual = { bedMassMg: 500, lossPercent: 5 } as const;
 
+const twoDigits = (value: number): string => givenText(Number(value.toPrecision(2)));
 const percent = ({ low, middle, high }: EstimateView): EstimateView => ({
   low: 100 * low,
   middle: 100 * middle,
@@ -25,7 +25,7 @@ function capacityFinding(
   const { low, high, unit, source, standing } = bedCapacity(kind, bedMassMg);
   return {
     text: `${matrix} of the matrix take their part, usually more than the analytes do. How much does this sample bring?`,
-    evidence: `${givenText(bedMassMg)} mg of ${what} hold ${figureText(low, 2)} to ${figureText(high, 2)} ${unit} in all.`,
+    evidence: `${givenText(bedMassMg)} mg of ${what} hold ${twoDigits(low)} to ${twoDigits(high)} ${unit} in all.`,
     source,
     standing
   };
