@@ -19,6 +19,8 @@ export const nothing: Examples = {
   'variants/[variant]': 'ZZ',
   'data/[import]': nobodysId,
   'calibration/[set]': nobodysId,
+  'sequences/[sequence]': nobodysId,
+  'checks/[check]': nobodysId,
   'criteria/[set]': nobodysId,
   'analytes/[analyte]': nobodysId,
   'reset-password/[token]': madeUpToken,
@@ -38,12 +40,19 @@ export async function readExamples(request: APIRequestContext): Promise<Examples
   const study = '/studies/TARROW-1';
   const idBelow = (page: string) =>
     firstMatch(request, page, new RegExp(`${page}/([0-9a-f]{8}-[0-9a-f-]{27})`));
+  const set = await idBelow(`${study}/calibration`);
   return {
     'studies/[study]': 'TARROW-1',
     'experiments/[experiment]': '1',
     'variants/[variant]': 'A',
     'data/[import]': await idBelow(`${study}/data`),
-    'calibration/[set]': await idBelow(`${study}/calibration`),
+    'calibration/[set]': set,
+    'sequences/[sequence]': await firstMatch(
+      request,
+      `${study}/calibration`,
+      /calibration\/sequences\/([0-9a-f]{8}-[0-9a-f-]{27})/
+    ),
+    'checks/[check]': await idBelow(`${study}/calibration/${set}/checks`),
     'criteria/[set]': await idBelow('/library/criteria'),
     'analytes/[analyte]': await idBelow('/library/analytes'),
     'reset-password/[token]': madeUpToken,

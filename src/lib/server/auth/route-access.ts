@@ -120,6 +120,15 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
     read: 'calibrations.choose',
     write: { preview: 'calibrations.choose', store: 'calibrations.choose' }
   },
+  '/(app)/studies/[study]/calibration/[set]/checks': {
+    read: 'studies.see',
+    write: { add: 'calibrations.choose' }
+  },
+  '/(app)/studies/[study]/calibration/[set]/checks/[check]': {
+    read: 'calibrations.choose',
+    write: { change: 'calibrations.choose', remove: 'calibrations.choose' }
+  },
+  '/(app)/studies/[study]/calibration/sequences/[sequence]': { read: 'studies.see' },
   '/(public)/help': { read: 'public' },
   '/(public)/help/figures': { read: 'public' },
   '/(public)/help/chemistry': { read: 'public' },
@@ -134,12 +143,23 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
     read: 'studies.see',
     write: {
       declare: 'data.enter',
+      column: 'data.enter',
+      table: 'data.enter',
+      sheet: 'data.enter',
+      labels: 'data.enter',
+      assign: 'data.enter',
+      mend: 'data.enter',
+      unmend: 'data.enter',
+      reset: 'data.enter',
+      keep: 'data.enter',
       store: 'data.enter',
       drop: 'data.enter',
       withdraw: 'imports.withdraw-own'
     }
   },
   '/(app)/studies/[study]/data/[import]/file': { read: 'studies.see' },
+  '/(app)/studies/[study]/data/[import]/annotated.xlsx': { read: 'studies.see' },
+  '/(app)/lab/layouts': { read: 'studies.see', write: { retire: 'data.enter', revive: 'data.enter' } },
   '/(app)/studies/[study]/experiments/[experiment]/template.xlsx': { read: 'studies.see' },
   '/(app)/studies/[study]/experiments/[experiment]/type': {
     read: 'data.enter',
@@ -150,7 +170,12 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   '/(app)/studies/[study]/balance': { read: 'studies.see' },
   '/(app)/studies/[study]/walk-back': { read: 'studies.see' },
   '/(app)/studies/[study]/compare': { read: 'studies.see' },
-  '/(app)/studies/[study]/validation': { read: 'studies.see' },
+  '/(app)/studies/[study]/validation': {
+    read: 'studies.see',
+    write: { choose: 'studies.edit', pair: 'studies.edit', unpair: 'studies.edit' }
+  },
+  '/(app)/studies/[study]/validation/experiment': { read: 'studies.see' },
+  '/(app)/studies/[study]/validation.csv': { read: 'export.any' },
   '/(app)/studies/[study]/results.csv': { read: 'export.any' },
   '/(app)/studies/[study]/balance.csv': { read: 'export.any' },
   '/(app)/studies/[study]/balance.svg': { read: 'export.any' },
@@ -176,6 +201,7 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   '/api/v1/studies/[study]/chemistry': { read: 'studies.see' },
   '/api/v1/studies/[study]/walk-back': { read: 'studies.see' },
   '/api/v1/studies/[study]/compare': { read: 'studies.see' },
+  '/api/v1/studies/[study]/validation': { read: 'studies.see' },
   '/api/v1/studies/[study]/portions': { read: 'studies.see' },
   '/api/v1/studies/[study]/provenance': { read: 'studies.see' }
 };
