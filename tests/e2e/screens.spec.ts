@@ -31,6 +31,7 @@ const screens = [
   '/library/criteria',
   '/help',
   '/help/figures',
+  '/help/chemistry',
   '/help/data-files'
 ];
 /** Reached by a link of the screen before them, since their addresses hold ids. */

@@ -25,7 +25,7 @@ describe('molar masses by hand', () => {
 });
 
 describe('predicted log P', () => {
-  it('is within 0.6 of the measured log Kow for half of the substances, and within 1.6 for 9 of 10 (EPA/SRC KOWWIN set)', async () => {
+  it('is within 0.6 of the measured log Kow for half of 40 substances, and off by more than 1 for five (EPA/SRC KOWWIN set)', async () => {
     const errors: number[] = [];
     for (const { smiles, logKow } of structures) {
       const { predictedLogP } = await readStructure(smiles);
@@ -34,6 +34,6 @@ describe('predicted log P', () => {
     errors.sort((a, b) => a - b);
     expect(errors).toHaveLength(40);
     expect(errors[20]).toBeLessThan(0.6);
-    expect(errors[36]).toBeLessThan(1.6);
+    expect(errors.filter((error) => error > 1)).toHaveLength(5);
   });
 });

@@ -1,10 +1,11 @@
 import { givenText } from '../../domain/given-text';
+import { placeByCharge, type ChargeKey } from './charge-place';
 import { documents, practice, type Finding, type Origin } from './evidence';
-import { knownCharge, type PanelAnalyte } from './panel-analyte';
-import { checkedRange, mostNeutral, phWindows, type PhRange, type PhWindow } from './ph-windows';
+import type { PanelAnalyte } from './panel-analyte';
+import { checkedRange, type PhRange } from './ph-windows';
 import { notNegative, share as checkedShare } from './guards';
 import { workingRanges } from './sorbents';
-import { shareText, shortText } from './text';
+import { shareText } from './text';
 import { ChemistryError } from './errors';
 import { volatility, type Volatility } from './volatility';
 
@@ -40,9 +41,6 @@ export interface GroupingOptions {
 // Limits that are common practice, no source: they raise a question and decide nothing.
 const hydrophilicLogKow = 0;
 const hydrophobicLogKow = 5;
-
-type ChargeKey = 'neutral' | 'acid' | 'base' | 'both' | 'charged' | 'unknown';
-type Placed = { readonly key: ChargeKey; readonly evidence: string };
 
 /**
  * Sorts a panel into the groups that argue for one pass or two, an ion exchanger, a second cartridge, a rinse or a gentler
@@ -168,62 +166,6 @@ const basesBasic: Finding = {
   evidence: 'Named among what needs care.',
   ...documents.gcMs('1.4.8')
 };
-
-function placeByCharge(analyte: PanelAnalyte, range: PhRange, share: number): Placed {
-  const charge = knownCharge(analyte);
-  if (!charge.known) return { key: 'unknown', evidence: charge.why };
-  const { groups, hasPka, possible } = charge;
-  if (groups.permanentCharge !== 0) {
-    const sign = groups.permanentCharge > 0 ? '+' : '';
-    return { key: 'charged', evidence: `permanent charge ${sign}${givenText(groups.permanentCharge)}` };
-  }
-  const unsure = possible.length > 0 ? `; the structure shows ${possible.join(' and ')} without a pKa` : '';
-  if (!hasPka) return { key: 'neutral', evidence: `no pKa on file, taken to have no group${unsure}` };
-  const values = `${pkaText(analyte)}${unsure}`;
-  const neutral = phWindows(groups, 'neutral', share, range)[0];
-  if (neutral && !neutral.lowIsEdge && !neutral.highIsEdge) return { key: 'neutral', evidence: values };
-  const percent = shareText(share);
-  if (neutral)
-    return { key: keyOf(neutral), evidence: `${values}; ${percent} neutral ${windowText(neutral)}` };
-  const bothKinds = groups.acids.length > 0 && groups.bases.length > 0;
-  const most = mostNeutral(groups, range);
-  if (most.share <= 1 - share && !bothKinds) {
-    return { key: 'charged', evidence: `${values}; at least ${percent} charged throughout` };
-  }
-  return {
-    key: bothKinds ? 'both' : groups.acids.length > 0 ? 'acid' : 'base',
-    evidence: `${values}; ${mostText(most.share)} neutral at the most, at pH ${shortText(most.ph)}`
-  };
-}
-
-/** Cut and not rounded: 98.97 % must not read as 99 %. */
-function mostText(share: number): string {
-  const percent = Math.floor(1000 * share) / 10;
-  return percent < 0.1 ? 'less than 0.1 %' : `${givenText(percent)} %`;
-}
-
-function keyOf({ lowIsEdge, highIsEdge }: PhWindow): ChargeKey {
-  return lowIsEdge && highIsEdge ? 'both' : highIsEdge ? 'acid' : 'base';
-}
-
-/** Rounded towards the inside, so that the pH that is read off keeps the promise. */
-function windowText({ low, high, lowIsEdge, highIsEdge }: PhWindow): string {
-  const from = (Math.ceil(low * 100) / 100).toFixed(2);
-  const to = (Math.floor(high * 100) / 100).toFixed(2);
-  return lowIsEdge && highIsEdge
-    ? `from pH ${from} to ${to}`
-    : highIsEdge
-      ? `below pH ${to}`
-      : `above pH ${from}`;
-}
-
-function pkaText({ pkaAcid, pkaBase }: PanelAnalyte): string {
-  const list = (values: readonly number[]) => values.map(givenText).join(', ');
-  return [
-    ...(pkaAcid.length > 0 ? [`acid pKa ${list(pkaAcid)}`] : []),
-    ...(pkaBase.length > 0 ? [`base pKa ${list(pkaBase)}`] : [])
-  ].join(', ');
-}
 
 type Evaporating = { readonly member: GroupMember; readonly volatility: Volatility };
 
