@@ -43,17 +43,16 @@ function rowOf(
   };
 }
 
-/** The pH at which a row begins to turn, for an order in which the strips of a group read as one slope. */
-function turn({ neutralRanges: [range], pkaAcid, pkaBase }: PanelChemistryRow): number {
-  if (range && range.low <= 0) return range.high;
-  if (range) return range.low;
-  return Math.min(...pkaAcid, ...pkaBase, 15);
+/** Where a row turns, for an order in which the strips of a group read as one slope: its strongest acid, else its strongest base. */
+function turn({ pkaAcid, pkaBase }: PanelChemistryRow): number {
+  if (pkaAcid.length > 0) return Math.min(...pkaAcid);
+  return pkaBase.length > 0 ? Math.max(...pkaBase) : 99;
 }
 
 export type RowOrder = 'pka' | 'name' | 'panel';
 
 const orders: Readonly<Record<RowOrder, (a: PanelChemistryRow, b: PanelChemistryRow) => number>> = {
-  pka: (a, b) => turn(a) - turn(b),
+  pka: (a, b) => turn(a) - turn(b) || a.name.localeCompare(b.name),
   name: (a, b) => a.name.localeCompare(b.name),
   panel: () => 0
 };
