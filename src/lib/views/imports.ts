@@ -1,3 +1,4 @@
+import type { ColumnMeaning, Orientation } from '$lib/schemas/column-map';
 import type { ImportState, MeasurementState, ReportedBasis } from '$lib/domain/vocabulary';
 
 /** One file of a study's list of imports. */
@@ -40,6 +41,80 @@ export interface SheetCellView {
   readonly problem: 'error' | 'question' | 'note' | null;
 }
 
+/** What one column of a sheet means; of a turned sheet, one row. */
+export interface LineMeaningView {
+  /** Zero-based, as the map counts it. */
+  readonly line: number;
+  /** "B", or the number of the row. */
+  readonly name: string;
+  readonly header: string;
+  readonly means: ColumnMeaning;
+  readonly analyte: string | null;
+  readonly basis: 'vial' | 'ng' | 'ng_per_l' | null;
+  readonly unit: string | null;
+}
+
+/** How the table of one sheet is read. */
+export interface TableMapView {
+  readonly orientation: Orientation;
+  /** As the sheet counts them, from 1; columns of a turned sheet count so too. */
+  readonly headerLines: readonly number[];
+  readonly blocks: 'repeat their header' | 'share one header' | null;
+  /** Where a name stands that the rows lack: "sheet name", "block title" or a cell; null: in the rows. */
+  readonly carried: Readonly<Record<'sample' | 'fraction' | 'analyte', string | null>>;
+  /** The other sheets that are read alike. */
+  readonly alike: readonly string[];
+  readonly lines: readonly LineMeaningView[];
+}
+
+/** What one sample label of the file was found to mean. */
+export interface LabelView {
+  readonly label: string;
+  readonly sheet: string;
+  readonly cell: string | null;
+  readonly count: number;
+  readonly how: 'name' | 'pattern' | 'run order' | 'assigned' | 'left out' | 'ambiguous' | 'not found';
+  readonly place: string | null;
+  readonly nearest: readonly string[];
+}
+
+/** Places that a label can be given. */
+export interface PlaceGroup {
+  readonly title: string;
+  readonly places: readonly { readonly value: string; readonly label: string }[];
+  readonly fractions: readonly { readonly id: string; readonly name: string }[];
+}
+
+/** How a file is read, and what of it a person can change. */
+export interface FileMapView {
+  readonly source: 'recognised' | 'kept' | 'changed';
+  /** The kept layout that applied by itself. */
+  readonly kept: { readonly name: string; readonly version: number } | null;
+  readonly samplePattern: string | null;
+  readonly isPatternConfirmed: boolean;
+  readonly matching: 'names' | 'run order';
+  readonly fixed: { readonly experiment: string | null; readonly fraction: string | null };
+  /** Those that need a look first. */
+  readonly labels: readonly LabelView[];
+  readonly labelCount: number;
+  readonly places: readonly PlaceGroup[];
+  readonly analytes: readonly string[];
+  readonly texts: readonly {
+    readonly text: string;
+    readonly meaning: string;
+    readonly count: number;
+    readonly texts: number;
+    readonly sheet: string;
+    readonly cell: string;
+  }[];
+  readonly mends: readonly {
+    readonly sheet: string;
+    readonly cell: string;
+    readonly text: string;
+    readonly original: string;
+  }[];
+}
+
 export interface SheetWindowView {
   readonly name: string;
   readonly hidden: boolean;
@@ -53,7 +128,9 @@ export interface SheetWindowView {
     readonly headerRow: number;
     readonly recordCount: number;
   } | null;
-  readonly columns: readonly { readonly letter: string; readonly meaning: string | null }[];
+  /** What lies over the sheet; null: nothing of it is read. */
+  readonly map: TableMapView | null;
+  readonly columns: readonly { readonly letter: string }[];
   /** The rows shown, 1-based numbers. */
   readonly rows: readonly { readonly number: number; readonly cells: readonly SheetCellView[] }[];
   readonly firstRow: number;
@@ -96,6 +173,8 @@ export interface ImportPreviewView {
     readonly recordCount: number;
   }[];
   readonly window: SheetWindowView | null;
+  /** null where the file cannot be read. */
+  readonly map: FileMapView | null;
   readonly records: readonly RecordView[];
   readonly recordCount: number;
   readonly stateCounts: Readonly<Record<MeasurementState, number>>;

@@ -118,11 +118,11 @@ describe('a file on its way in', () => {
     const preview = await previewImport(analyst, study.code, importId, firstWindow);
     expect(preview.recordCount).toBe(6);
     expect(preview.stateCounts).toMatchObject({ value: 4, missing: 1 });
-    expect(preview.window?.columns.map(({ meaning }) => meaning)).toEqual([
-      'sample',
-      'fraction',
-      'analyte',
-      'value'
+    expect(preview.window?.map?.lines.map(({ name, means }) => [name, means])).toEqual([
+      ['A', 'sample'],
+      ['B', 'fraction'],
+      ['C', 'analyte'],
+      ['D', 'amount']
     ]);
     expect(preview.window?.rows[1]?.cells.map(({ text }) => text)).toEqual(['S1', 'Elution', 'Alpha', '40']);
     expect(preview.records[0]).toMatchObject({

@@ -15,6 +15,7 @@ import { sequelize } from '../db/sequelize';
 import { columnLetters } from '../imports/cell-address';
 import { rowCells } from '../imports/sheet';
 import type { Expectation, MappedImport, MappedRecord, Sheet, Workbook } from '../imports/types';
+import { fileMapView, tableMapView } from './import-map-view';
 import { coveredPlaces } from './import-coverage';
 import { declaredOf } from './import-expectation';
 import { readKeptFile } from './import-reading';
@@ -66,6 +67,7 @@ export async function previewImport(
       recordCount: recordsOfSheet.get(name) ?? 0
     })),
     window: sheetWindow(workbook, mapped, window),
+    map: fileMapView(reading, declaredOf(kept.declared)),
     records: mapped.records
       .slice(window.fromRecord, window.fromRecord + previewLimits.records)
       .map((record) => recordView(record, names)),
@@ -104,6 +106,7 @@ async function frameOf(study: Study, kept: Import): Promise<ImportPreviewView> {
     refusal: null,
     sheets: [],
     window: null,
+    map: null,
     records: [],
     recordCount: 0,
     stateCounts: countStates([]),
@@ -156,9 +159,9 @@ function sheetWindow(
       headerRow: read.headerRow + 1,
       recordCount: read.recordCount
     },
+    map: tableMapView(mapped.map, sheet.name),
     columns: Array.from({ length: columnCount }, (_, column) => ({
-      letter: columnLetters(column),
-      meaning: meanings.get(column) ?? null
+      letter: columnLetters(column)
     })),
     rows: Array.from({ length: Math.max(0, last - first + 1) }, (_, offset) => ({
       number: first + offset,

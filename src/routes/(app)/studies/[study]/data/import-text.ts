@@ -16,23 +16,6 @@ export const measurementStateWords: Readonly<Record<MeasurementState, string>> =
   missing: 'missing'
 };
 
-/** What a column of the sheet was taken for. */
-export const meaningWords: Readonly<Record<string, string>> = {
-  sample: 'sample',
-  experiment: 'experiment',
-  fraction: 'fraction',
-  analyte: 'analyte',
-  cas: 'CAS number',
-  value: 'value',
-  'internal area': 'area of the internal standard',
-  'final volume': 'final volume',
-  dilution: 'dilution',
-  'aliquot share': 'share of the fraction',
-  injection: 'injection',
-  'acquired at': 'acquired',
-  'not used': 'not used'
-};
-
 /** "1 value", "1,204 values". */
 export const valuesText = (count: number): string =>
   `${count.toLocaleString('en')} ${count === 1 ? 'value' : 'values'}`;
