@@ -20,8 +20,8 @@ export type Detail = 'whole' | 'flat';
 
 /**
  * The molecule that a SMILES describes, with rings and aromatic atoms found.
- * @throws ChemistryError `unreadable-structure` with what is wrong and where: no text, white space, unknown atoms, open rings,
- * placeholders, too many bonds at an atom, unpaired electrons, more than 150 atoms
+ * @throws ChemistryError `unreadable-structure` with what is wrong and where: no text, white space, unknown atoms, open rings
+ * and branches, placeholders, too many bonds at an atom, unpaired electrons, more than 150 atoms
  */
 export function openMolecule({ Molecule: Molecules }: Library, typed: string, detail: Detail): Molecule {
   const smiles = typeof typed === 'string' ? typed.trim() : '';
@@ -31,6 +31,8 @@ export function openMolecule({ Molecule: Molecules }: Library, typed: string, de
   const space = smiles.search(/\s/);
   if (space >= 0)
     throw unreadable(smiles, `there is a space at position ${space + 1}; give the structure alone`);
+  const cut = cutShort(smiles);
+  if (cut) throw unreadable(smiles, cut);
   const molecule = parsed(Molecules, smiles, detail);
   const atoms = molecule.getAllAtoms();
   if (atoms === 0) throw unreadable(smiles, 'it has no atoms');
@@ -50,6 +52,16 @@ export function openMolecule({ Molecule: Molecules }: Library, typed: string, de
     }
   }
   return molecule;
+}
+
+/** A text that ends too early is another, smaller molecule to the library. */
+function cutShort(smiles: string): string | null {
+  const count = (sign: string) => smiles.split(sign).length - 1;
+  const open = count('(') - count(')');
+  if (open > 0)
+    return `${open === 1 ? 'a branch is' : `${open} branches are`} opened by '(' and never closed`;
+  const ring = smiles.replace(/\[[^\]]*\]/g, '').search(/%(?!\d\d)/);
+  return ring >= 0 ? "two digits of a ring number must follow '%'" : null;
 }
 
 function parsed(Molecules: Library['Molecule'], smiles: string, detail: Detail): Molecule {
