@@ -1,5 +1,4 @@
 import ExcelJS from 'exceljs';
-import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { mapRecords } from '../../../src/lib/server/imports/map-records';
 import { readWorkbook } from '../../../src/lib/server/imports/read-workbook';
@@ -83,77 +82,6 @@ describe('the template', () => {
       expect(new Set(result.records.map(key)).size).toBe(result.records.length);
       expect(result.records.every(({ state, rawText }) => state === 'missing' && rawText === '')).toBe(true);
     }
-  );
-
-  it.each<Layout>(['long', 'wide'])(
-    'in the %s layout gives back every value to the last bit',
-    async (layout) => {
-      const bytes = await writeTemplate(offered(), 'experiment 1', layout);
-      const area = fc.double({ min: 0, noNaN: true, noDefaultInfinity: true }).map((value) => value + 0);
-      const positive = fc.double({ min: Number.MIN_VALUE, max: 1e300, noNaN: true });
-      const row = fc.record({
-        areas: fc.array(area, { minLength: 4, maxLength: 4 }),
-        internal: positive,
-        volume: positive,
-        dilution: fc.double({ min: 1, max: 1e12, noNaN: true }),
-        share: fc.double({ min: Number.MIN_VALUE, max: 1, noNaN: true }),
-        injection: fc.integer({ min: 1, max: 32_767 })
-      });
-      await fc.assert(
-        fc.asyncProperty(fc.array(row, { minLength: 15, maxLength: 15 }), async (rows) => {
-          // Volume and share belong to the extract, dilution to the injection: in the long layout three rows share them.
-          const ofExtract = (at: number) => rows[layout === 'long' ? at - (at % 3) : at];
-          const filled = await fill(bytes, (header, at) => {
-            const values = rows[at];
-            const extract = ofExtract(at);
-            if (!values || !extract) return undefined;
-            switch (header) {
-              case 'Area':
-              case 'Caffeine area':
-                return values.areas[0];
-              case '2,4-Testol area area':
-                return values.areas[1];
-              case 'Testol IS area':
-                return values.areas[2];
-              case 'Testol-d5 area':
-              case 'Internal standard area':
-                return values.internal;
-              case 'Final volume (mL)':
-                return extract.volume;
-              case 'Dilution':
-                return extract.dilution;
-              case 'Aliquot share':
-                return extract.share;
-              case 'Injection':
-                return extract.injection;
-              default:
-                return undefined;
-            }
-          });
-          const result = await mapped(filled);
-          expect(result.problems.filter(({ severity }) => severity !== 'note')).toEqual([]);
-          for (const record of result.records) {
-            const at = record.row - 3;
-            const values = rows[at];
-            const extract = ofExtract(at);
-            const analyte = ['entry Caffeine', 'entry 2,4-Testol area', 'entry Testol IS'].indexOf(
-              record.panelEntryId
-            );
-            const wanted =
-              layout === 'long' ? values?.areas[0] : analyte < 0 ? values?.internal : values?.areas[analyte];
-            expect(record.reported.value).toBe(wanted);
-            if (layout === 'long' || analyte === 0)
-              expect(record.reported.internalArea).toBe(values?.internal);
-            expect(record.finalVolumeMl).toBe(extract?.volume);
-            expect(record.dilution).toBe(extract?.dilution);
-            expect(record.aliquotShare).toBe(extract?.share);
-            expect(record.injection).toBe(extract?.injection);
-          }
-        }),
-        { numRuns: 12 }
-      );
-    },
-    60_000
   );
 
   it('keeps ND, limits and empty cells apart when filled', async () => {

@@ -2,6 +2,7 @@ import { cellAddress } from './cell-address';
 import { numberedChecks } from './check-injections';
 import type { DraftRecord } from './map-sheet';
 import type { Problems } from './problems';
+import { extractKey, injectionKey } from './record-keys';
 import type { Expectation, PanelExpectation } from './types';
 import { expectedWords } from './value-words';
 
@@ -27,21 +28,6 @@ export function checkRecords(
   checkVolumes(records, expectation, panel, problems);
   checkLimits(records, panel, problems);
   return records;
-}
-
-function extractKey({ place }: DraftRecord): string {
-  switch (place.kind) {
-    case 'extract':
-      return `${place.experimentId} ${place.replicateId} ${place.fractionId}`;
-    case 'level':
-      return `${place.calibrationSetId} ${place.levelId}`;
-    case 'check':
-      return `${place.calibrationSetId} ${place.checkStandardId}`;
-  }
-}
-
-function injectionKey(record: DraftRecord): string {
-  return `${extractKey(record)} ${record.injection}`;
 }
 
 function withoutRepeats(

@@ -1,6 +1,9 @@
 import { nameKey } from '../../domain/name-key';
 import type { CarriedName, ColumnMap, TableMap } from '../../schemas/column-map';
 import { cellAddress } from './cell-address';
+import { checkCompleteness } from './check-completeness';
+import { checkFellows } from './check-fellows';
+import { checkCalibratedRange, checkInternalStandards } from './check-ranges';
 import { checkRecords } from './check-records';
 import { labelsOf, readableSheets } from './column-map';
 import { planColumns } from './column-plan';
@@ -123,6 +126,7 @@ export function readByColumnMap(workbook: Workbook, map: ColumnMap, expectation:
   }
   if (!map.isPatternConfirmed) askAboutPattern(map, labels, problems);
   const records = checkRecords(drafts, expectation, problems);
+  askAboutValues(records, expectation, problems);
   return {
     map,
     savedMap: null,
@@ -132,6 +136,19 @@ export function readByColumnMap(workbook: Workbook, map: ColumnMap, expectation:
     valueMeanings: values.all(),
     labels: labels.readings()
   };
+}
+
+/** Numbers that can be read and yet look wrong. */
+function askAboutValues(
+  records: readonly DraftRecord[],
+  expectation: Expectation,
+  problems: ProblemList
+): void {
+  const panel = new Map(expectation.panel.map((entry) => [entry.id, entry]));
+  checkCalibratedRange(records, panel, problems);
+  checkInternalStandards(records, expectation, problems);
+  checkFellows(records, expectation, panel, problems);
+  checkCompleteness(records, expectation, problems);
 }
 
 function readingOf({ table, view, headerRow, plan }: PlannedTable, recordCount: number): SheetReading {

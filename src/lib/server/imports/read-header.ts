@@ -61,10 +61,11 @@ const shortQualifier = 3;
  */
 export function readHeader(text: string, analytes: NameMatcher<string>): Header {
   const { words, unit } = splitUnit(text);
-  const whole = wordOf(words) ?? wordOf(words.replace(/[([{][^)\]}]*[)\]}]/g, ' '));
+  const whole = wordOf(words);
   if (words.trim() === '' && unit !== null)
     return { meaning: 'value', kind: kindOf(text, unit), unit, analyte: null };
-  if (whole) return headerOf(whole, text, unit, null);
+  // "IS area" is the area of the analyte IS where the panel has one.
+  if (whole) return qualified(text, words, unit, analytes) ?? headerOf(whole, text, unit, null);
 
   // The whole text first: a name may end like a unit.
   const full = analyteOf(text, analytes);
@@ -72,6 +73,27 @@ export function readHeader(text: string, analytes: NameMatcher<string>): Header 
   const named = analyteOf(words, analytes);
   if (named !== null)
     return { meaning: 'value', kind: kindOf(withoutName(text, words), unit), unit, analyte: named };
+  const withWord = qualified(text, words, unit, analytes);
+  if (withWord) return withWord;
+  const beforeWords = vialOrSample(words);
+  if (beforeWords) {
+    const analyte = analyteOf(beforeWords.rest, analytes);
+    if (analyte !== null) return { meaning: 'value', kind: kindOf(text, unit), unit, analyte };
+    const word = wordOf(beforeWords.rest);
+    if (word) return headerOf(word, text, unit, null);
+  }
+  // What is in brackets may be anything once it is no analyte: "Area (counts)".
+  const bare = wordOf(words.replace(/[([{][^)\]}]*[)\]}]/g, ' '));
+  return bare ? headerOf(bare, text, unit, null) : { meaning: 'unknown', unit };
+}
+
+/** An analyte's name with a word behind or before it. */
+function qualified(
+  text: string,
+  words: string,
+  unit: string | null,
+  analytes: NameMatcher<string>
+): Header | null {
   const key = nameKey(words.replace(/[,;:|/]\s*$/, ''));
   for (const [qualifier, word] of qualifiers) {
     const rest = key.endsWith(qualifier)
@@ -83,14 +105,14 @@ export function readHeader(text: string, analytes: NameMatcher<string>): Header 
     const analyte = analyteOf(rest.replace(/^[,:;\-.]+|[,:;\-.]+$/g, ''), analytes);
     if (analyte !== null) return headerOf(word, text, unit, analyte);
   }
-  const beforeWords = vialOrSample(words);
-  if (beforeWords) {
-    const analyte = analyteOf(beforeWords.rest, analytes);
-    if (analyte !== null) return { meaning: 'value', kind: kindOf(text, unit), unit, analyte };
-    const word = wordOf(beforeWords.rest);
-    if (word) return headerOf(word, text, unit, null);
-  }
-  return { meaning: 'unknown', unit };
+  return null;
+}
+
+/** What a header means by its words alone, whatever the panel has; null: they are none of ours. */
+export function wordHeader(text: string): Header | null {
+  const { words, unit } = splitUnit(text);
+  const word = wordOf(words);
+  return word ? headerOf(word, text, unit, null) : null;
 }
 
 function headerOf(word: HeaderWord, text: string, unit: string | null, analyte: string | null): Header {

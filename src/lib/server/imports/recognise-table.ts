@@ -22,7 +22,7 @@ import {
 import type { Elsewhere, HeaderColumn, PartialLayout, SheetLayout } from './find-layout';
 import { nameIn } from './named-text';
 import type { Names } from './named-text';
-import { readHeader } from './read-header';
+import { readHeader, wordHeader } from './read-header';
 import type { Header, StatedKind } from './read-header';
 import { headerRepeats, isBlockTitle, sectionsOf } from './sheet-sections';
 import { cellAt, rowCells } from './sheet';
@@ -89,9 +89,10 @@ function elsewhereOf(
   return (row) => ({ sample: first.sample < row, analyte: first.analyte < row });
 }
 
-function tableOf(sheet: Sheet, layout: SheetLayout, context: RecogniseContext): SheetMap {
+function tableOf(sheet: Sheet, found: SheetLayout, context: RecogniseContext): SheetMap {
+  const layout = isByRow(found) ? { ...found, columns: found.columns.map(byWords) } : found;
   const columns = layout.columns.map((column) => mapColumn(column, layout, context));
-  const hasRowAnalyte = hasMeaning(layout.columns, 'analyte') || hasMeaning(layout.columns, 'cas');
+  const hasRowAnalyte = isByRow(layout);
   const orientation: Orientation =
     hasRowAnalyte || !namesAnalytes(layout.columns) ? 'long' : 'analytes across';
   const headerLines = [...layout.headerLines];
@@ -104,6 +105,16 @@ function tableOf(sheet: Sheet, layout: SheetLayout, context: RecogniseContext): 
   const blocks = blocksOf(sheet, base, wanted, context);
   const carried = wanted.flatMap((what) => carriedFrom(sheet, { ...base, blocks }, what, context) ?? []);
   return { ...base, blocks, carried, fingerprint: fingerprintOf({ ...base, carried }) };
+}
+
+function isByRow({ columns }: SheetLayout): boolean {
+  return hasMeaning(columns, 'analyte') || hasMeaning(columns, 'cas');
+}
+
+/** Where each row names its analyte, a header is not about one: "IS area" is that of the internal standard. */
+function byWords(column: HeaderColumn): HeaderColumn {
+  const isAbout = 'analyte' in column.header && column.header.analyte !== null;
+  return { ...column, header: (isAbout ? wordHeader(column.text) : null) ?? column.header };
 }
 
 type Unblocked = Pick<SheetMap, 'orientation' | 'headerLines' | 'columns' | 'leftOut'>;
