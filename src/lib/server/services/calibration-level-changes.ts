@@ -5,6 +5,7 @@ import type { CalibrationLevel as LevelData } from '../amounts/types';
 import { CalibrationLevel } from '../db/models/calibration-level';
 import { CalibrationLevelConcentration } from '../db/models/calibration-level-concentration';
 import { CalibrationSet } from '../db/models/calibration-set';
+import { CheckStandard } from '../db/models/check-standard';
 import { Injection } from '../db/models/injection';
 import type { Study } from '../db/models/study';
 import { audit, inTransaction } from '../db/transaction';
@@ -40,12 +41,7 @@ interface Change {
  * What a form makes of the levels of a set.
  * @throws NotFound for a level or an analyte that is not there, Invalid with a problem at each field
  */
-function changeOf(
-  data: StudyData,
-  set: StudyCalibrationSet,
-  form: LevelsProposal,
-  injected: ReadonlyMap<string, number>
-): Change {
+function changeOf(data: StudyData, set: StudyCalibrationSet, form: LevelsProposal, taken: Taken): Change {
   const problems: Problem[] = [];
   const stored = new Map(set.levels.map((level) => [level.id, level]));
   const nameOf = namesIn(data);
@@ -59,7 +55,7 @@ function changeOf(
     if (Object.keys(row.cells).some((id) => !panel.has(id))) throw new NotFound();
     const at = (path: string, message: string) => problems.push({ path: `levels.${index}.${path}`, message });
     if (row.remove && old) {
-      const count = injected.get(old.id) ?? 0;
+      const count = taken.injections.get(old.id) ?? 0;
       if (count > 0) {
         at(
           'label',
@@ -71,6 +67,7 @@ function changeOf(
     }
     if (row.label === '') at('label', 'Name the level as the instrument does, such as L1.');
     else if (labels.has(row.label)) at('label', `There are two levels called ${row.label}.`);
+    if (taken.checkLabels.has(row.label)) at('label', `A check of this set is called ${row.label}.`);
     labels.add(row.label);
     const concentrations = new Map(
       Object.entries(row.cells).flatMap(([id, value]) => (value ? [[id, value] as const] : []))
@@ -179,19 +176,28 @@ const proposedSet = (set: StudyCalibrationSet, { levels }: Change): StudyCalibra
   }))
 });
 
-/** Injections that stored files brought of each level, those of withdrawn and covered imports too. */
-async function injectionsByLevel(
-  study: Study,
-  set: StudyCalibrationSet
-): Promise<ReadonlyMap<string, number>> {
+/** What stands in the way of taking a level out, or of a name for one. */
+interface Taken {
+  /** Injections that stored files brought of each level, those of withdrawn and covered imports too. */
+  readonly injections: ReadonlyMap<string, number>;
+  /** A file could not tell a level from a check of the same name. */
+  readonly checkLabels: ReadonlySet<string>;
+}
+
+async function takenIn(study: Study, set: StudyCalibrationSet): Promise<Taken> {
   const rows = await Injection.findAll({
     attributes: ['levelId'],
     where: { ...studyKeys(study), levelId: set.levels.map(({ id }) => id) },
     raw: true
   });
-  const counts = new Map<string, number>();
-  for (const { levelId } of rows) if (levelId) counts.set(levelId, (counts.get(levelId) ?? 0) + 1);
-  return counts;
+  const injections = new Map<string, number>();
+  for (const { levelId } of rows) if (levelId) injections.set(levelId, (injections.get(levelId) ?? 0) + 1);
+  const checks = await CheckStandard.findAll({
+    attributes: ['label'],
+    where: { ...studyKeys(study), calibrationSetId: set.id },
+    raw: true
+  });
+  return { injections, checkLabels: new Set(checks.map(({ label }) => label)) };
 }
 
 /**
@@ -208,7 +214,7 @@ export async function proposeLevels(
   const study = await studyOf(actor, code);
   const figures = await figuresOfStudy(actor.labId, code);
   const set = setOf(figures.data, setId);
-  const change = changeOf(figures.data, set, form, await injectionsByLevel(study, set));
+  const change = changeOf(figures.data, set, form, await takenIn(study, set));
   const rows = Object.keys(change.after);
   return {
     rows: rows.map((what) => ({
@@ -242,7 +248,7 @@ export async function changeLevels(
     requireUnchanged(`the levels of ${row.name}`, form.seenVersion, row.version, null);
     const { data } = await figuresOfStudy(actor.labId, code);
     const set = setOf(data, setId);
-    const change = changeOf(data, set, form, await injectionsByLevel(study, set));
+    const change = changeOf(data, set, form, await takenIn(study, set));
     const names = Object.keys(change.after);
     if (names.length === 0) throw Invalid.at('levels', 'Nothing differs from what is stored.');
     if (form.foretold !== null && form.foretold !== tokenOf(study.dataVersion, setId, change.after)) {
