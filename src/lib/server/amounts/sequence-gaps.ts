@@ -183,7 +183,7 @@ function intervalGaps(
   return [
     gap(
       'interval',
-      `${whoCame(late.length)} up to ${figureText(longest)} h after the check before, and ${rule.high} h may lie between.`,
+      `${whoCame(late.length)}${late.length === 1 ? '' : ' up to'} ${figureText(longest, 2)} h after the check before ${late.length === 1 ? 'it' : 'them'}; at most ${rule.high} h may lie between.`,
       late,
       rule
     )
