@@ -206,20 +206,42 @@ function simulateVial(
 export const levelLabel = (calibration: number, level: number): string =>
   `CAL ${calibration + 1}-${level + 1}`;
 
+/** What a standard holds of one substance, ng/mL, and how much of its signal there is. */
+type StandardContent = (analyte: DemoAnalyte) => { readonly concentration: number; readonly signal: number };
+
+/** One injection of a solution that is made up and injected as it is: a level, a check, a blank. */
+export function simulateStandard(
+  calibration: number,
+  stream: string,
+  sample: string,
+  contentOf: StandardContent,
+  seed = demoSeed
+): SimulatedInjection {
+  const contents = new Map(demoRecovered.map((analyte) => [analyte.name, contentOf(analyte).concentration]));
+  return {
+    sample,
+    fraction: null,
+    injection: 1,
+    finalVolumeMl: null,
+    dilution: 1,
+    aliquotShare: 1,
+    ...inject(
+      createRandom(seed, stream),
+      seed,
+      calibration,
+      contents,
+      standardNgPerMl,
+      // The internal standards are in every vial alike.
+      (analyte) => (contents.has(analyte.name) ? contentOf(analyte).signal : 1)
+    )
+  };
+}
+
 /** The injections of a calibration set, lowest level first. */
 export function simulateCalibration(calibration: number, seed = demoSeed): readonly SimulatedInjection[] {
   return calibrationNgPerMl.map((concentration, level) => {
     const sample = levelLabel(calibration, level);
-    const chance = createRandom(seed, `level ${sample}`);
-    const concentrations = new Map(demoRecovered.map(({ name }) => [name, concentration]));
-    return {
-      sample,
-      fraction: null,
-      injection: 1,
-      finalVolumeMl: null,
-      dilution: 1,
-      aliquotShare: 1,
-      ...inject(chance, seed, calibration, concentrations, standardNgPerMl)
-    };
+    const holds = () => ({ concentration, signal: 1 });
+    return simulateStandard(calibration, `level ${sample}`, sample, holds, seed);
   });
 }

@@ -1,5 +1,6 @@
 import type { Actor } from '../../src/lib/domain/actor';
 import { createCalibrationSet } from '../../src/lib/server/services/calibrations';
+import { createCheckStandard } from '../../src/lib/server/services/check-standards';
 import { exclude } from '../../src/lib/server/services/exclusions';
 
 import { createExperiment, getExperiment } from '../../src/lib/server/services/experiments';
@@ -9,18 +10,12 @@ import {
   setProcedureSteps
 } from '../../src/lib/server/services/variants';
 import { spikeNg, surrogateNg } from './experiments';
-import {
-  calibrationNgPerMl,
-  levelLabel,
-  simulateCalibration,
-  simulateExperiment,
-  standardNg,
-  standardNgPerMl
-} from './generator';
+import { calibrationNgPerMl, levelLabel, standardNg, standardNgPerMl } from './generator';
 import { idOf, type PanelIds } from './panel-ids';
 import { demoPanel, demoRecovered } from './panel';
 import type { PlannedExperiment, PlannedPortion } from './planned';
 import type { PlannedVariant } from './procedures';
+import { checks, runOf } from './sequence';
 import { upload } from './upload';
 import { writeWorkbook } from './workbooks';
 
@@ -58,7 +53,7 @@ export async function seedCalibration(
   ids: PanelIds,
   calibration: 0 | 1
 ): Promise<string> {
-  return createCalibrationSet(chemist, studyCode, {
+  const setId = await createCalibrationSet(chemist, studyCode, {
     name: calibration === 0 ? 'First calibration' : 'Second calibration',
     instrument: 'Liquid and gas chromatograph, one table',
     calibratedOn: calibration === 0 ? '2026-10-05' : '2026-10-15',
@@ -72,6 +67,32 @@ export async function seedCalibration(
     constants: Object.fromEntries(standards.map(({ name }) => [idOf(ids, name), standardNgPerMl])),
     concentrations: {}
   });
+  await seedChecks(chemist, studyCode, setId);
+  return setId;
+}
+
+/** The second source, the continuing check and the blank of a set. The internal standards are in them as in the levels. */
+async function seedChecks(chemist: Actor, studyCode: string, setId: string): Promise<void> {
+  const { secondSource, continuing, blank } = checks;
+  const described = [
+    {
+      ...secondSource,
+      kind: 'second source',
+      source: 'Invented maker B, lot 7701',
+      note: 'Bought as a mixture, diluted once.'
+    },
+    { ...continuing, kind: 'continuing', source: 'As the levels', note: '' },
+    {
+      ...blank,
+      kind: 'instrument blank',
+      source: 'Solvent with the internal standards',
+      note: '',
+      concentrationNgPerMl: null
+    }
+  ] as const;
+  for (const check of described) {
+    await createCheckStandard(chemist, studyCode, setId, { ...check, concentrations: {} });
+  }
 }
 
 /** Portions of one kind and batch, in the order planned. */
@@ -157,10 +178,7 @@ export async function seedExperiment(
       levelLabel: ''
     });
   }
-  const vials = [
-    ...(calibration.levelsInRun ? simulateCalibration(experiment.calibration) : []),
-    ...simulateExperiment(experiment)
-  ];
+  const vials = runOf(experiment, calibration.levelsInRun);
   await upload(analyst, studyCode, {
     fileName: `run-${experiment.performedOn}-${experiment.key.toLowerCase()}.xlsx`,
     bytes: await writeWorkbook(title, experiment.layout, vials, demoRecovered),

@@ -11,6 +11,8 @@ export interface ReportedInjection {
   /** Area by substance; null: not detected. */
   readonly areas: ReadonlyMap<string, number | null>;
   readonly standardAreas: ReadonlyMap<string, number>;
+  /** "2026-10-05 16:30"; absent: the instrument gives no times. */
+  readonly acquiredAt?: string;
 }
 
 /** A substance's name and the injection standard whose area stands beside its own; null: external. */
@@ -23,6 +25,10 @@ type Cells = readonly (string | number | null)[];
 
 const places = ['Sample', 'Fraction', 'Injection', 'Final volume (mL)', 'Dilution', 'Aliquot share'] as const;
 
+/** The heads of the columns that say what an injection is; with times where the instrument gives them. */
+const headsOf = (vials: readonly ReportedInjection[]): readonly string[] =>
+  vials.some(({ acquiredAt }) => acquiredAt !== undefined) ? [...places, 'Acquired at'] : places;
+
 function placeCells(vial: ReportedInjection): Cells {
   return [
     vial.sample,
@@ -30,7 +36,8 @@ function placeCells(vial: ReportedInjection): Cells {
     vial.injection,
     vial.finalVolumeMl,
     vial.finalVolumeMl === null ? null : vial.dilution,
-    vial.finalVolumeMl === null ? null : vial.aliquotShare
+    vial.finalVolumeMl === null ? null : vial.aliquotShare,
+    ...(vial.acquiredAt === undefined ? [] : [vial.acquiredAt])
   ];
 }
 
@@ -42,7 +49,7 @@ function areaCells(vial: ReportedInjection, { name, internalStandard }: Reported
 /** One row for every injection and substance. */
 function longRows(vials: readonly ReportedInjection[], substances: readonly ReportedSubstance[]): Cells[] {
   return [
-    [...places, 'Analyte', 'Area', 'Internal standard area'],
+    [...headsOf(vials), 'Analyte', 'Area', 'Internal standard area'],
     ...vials.flatMap((vial) =>
       substances.map((substance) => [...placeCells(vial), substance.name, ...areaCells(vial, substance)])
     )
@@ -55,7 +62,7 @@ function wideRows(vials: readonly ReportedInjection[], substances: readonly Repo
     internalStandard === null ? [`${name} area`] : [`${name} area`, `${name} internal standard area`]
   );
   return [
-    [...places, ...heads],
+    [...headsOf(vials), ...heads],
     ...vials.map((vial) => [
       ...placeCells(vial),
       ...substances.flatMap((substance) =>
