@@ -20,6 +20,7 @@ interface Visit {
   /** The fields of a form; makes it a POST. */
   readonly form?: Readonly<Record<string, string>>;
   readonly address?: string;
+  readonly headers?: Readonly<Record<string, string>>;
 }
 
 /** The status of a form that was not taken; null for anything else. */
@@ -47,6 +48,7 @@ export class TestBrowser {
     const request = new Request(url, {
       method: visit.form ? 'POST' : 'GET',
       headers: {
+        ...visit.headers,
         host: url.host,
         origin: url.origin,
         cookie: [...this.cookies].map(([name, value]) => `${name}=${encodeURIComponent(value)}`).join('; ')
@@ -58,7 +60,7 @@ export class TestBrowser {
       request,
       params: visit.params ?? {},
       route: { id: visit.routeId },
-      locals: { requestId: 'test', actor: null },
+      locals: { requestId: 'test', actor: null, keyScopes: null },
       cookies: this.jar(),
       getClientAddress: () => visit.address ?? '127.0.0.1',
       setHeaders: () => undefined,

@@ -21,7 +21,7 @@ import { verdicts, type Verdict } from '../../views/verdict';
 import type { WalkBackView } from '../../views/walk-back';
 import { describes, hrefOfFigure, list, number, object, text, whole } from './describe';
 
-const verdict = describes<Verdict>()(
+export const verdict = describes<Verdict>()(
   'Verdict',
   z.enum(verdicts).meta({ description: 'How mean and RSD stand against the criteria.' })
 );
@@ -33,7 +33,7 @@ const interval = describes<IntervalView>()(
   })
 );
 
-const rule = describes<RuleView>()(
+export const rule = describes<RuleView>()(
   'Rule',
   object({
     what: text,

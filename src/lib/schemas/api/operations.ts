@@ -1,11 +1,15 @@
 import { z } from 'zod';
 import type { AccessScope } from '../../domain/access-scopes';
 import { experimentParameters, figureParameters, subjectParameters } from '../findings';
+import { chemistryParameters } from '../panel-chemistry';
+import { validationParameters } from '../validation';
+import { chemistry } from './chemistry';
 import { balance, compare, portions, results, stages, walkBack } from './figures';
 import { importParameters } from './import-parameters';
 import { resultsParameters, templateParameters } from './parameters';
 import { provenance } from './provenance';
 import { broughtFile, experiments, importDetail, imports, studies, study } from './records';
+import { validation } from './validation';
 
 /** What an answer holds: a schema for JSON, otherwise a file of that type. */
 export type AnswerContent = Readonly<Record<string, z.ZodType | 'file'>>;
@@ -187,6 +191,26 @@ export const operations: readonly Operation[] = [
     'Surrogates, blanks and matrix effects of one experiment',
     portions,
     experimentParameters
+  ),
+  finding(
+    'validation',
+    'getValidation',
+    'The validation of a variant, part by part',
+    validation,
+    validationParameters
+  ),
+  finding(
+    'chemistry',
+    'getChemistry',
+    'Charge over pH, log D and groups of the panel',
+    chemistry,
+    chemistryParameters.extend({
+      ph: chemistryParameters.shape.ph.meta({ description: 'The pH at which shares and log D are formed.' }),
+      solids: chemistryParameters.shape.solids.meta({ description: 'Suspended solids of the sample, mg/L.' }),
+      phase: chemistryParameters.shape.phase.meta({
+        description: 'What the bed is made of, which says what pH it stands.'
+      })
+    })
   ),
   finding(
     'provenance',

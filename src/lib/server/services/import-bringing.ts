@@ -1,5 +1,6 @@
 import { createHash } from 'node:crypto';
 import type { Actor } from '../../domain/actor';
+import type { ColumnMap } from '../../schemas/column-map';
 import type { ImportParameters } from '../../schemas/api/import-parameters';
 import type {
   BroughtFileView,
@@ -18,6 +19,7 @@ import { Refusal } from '../imports/refusal';
 import { codeForPrograms, standingOfFile } from './import-standing';
 import { storeImport } from './import-storing';
 import { declareAboutImport, importOfStudy, listedImport, receiveFile, sameBytes } from './imports';
+import { keptMapNamed } from './kept-maps';
 import { require } from './permissions';
 import { studyOf } from './study-of';
 
@@ -44,8 +46,8 @@ export async function bringFile(
 ): Promise<BroughtFileView> {
   require(actor, 'data.enter');
   const study = await studyOf(actor, studyCode);
-  requireKnownMap(parameters);
   requireTable(file);
+  const map = await namedMap(actor, parameters);
   const sha256 = createHash('sha256').update(file.bytes).digest('hex');
   const stored = await sameBytes(actor, study, sha256);
   if (stored?.state === 'stored') return knownAlready(actor, study, stored.id);
@@ -58,7 +60,8 @@ export async function bringFile(
     if (!kept.storedBefore) {
       await declareAboutImport(actor, studyCode, kept.importId, {
         basis: parameters.basis ?? null,
-        decimal: parameters.decimal ?? null
+        decimal: parameters.decimal ?? null,
+        ...(map === null ? {} : { map })
       });
     }
     return kept;
@@ -108,13 +111,20 @@ export function factsOf({ mayWithdraw: _, ...facts }: ImportListView): ImportFac
   return facts;
 }
 
-function requireKnownMap({ map, mapVersion }: ImportParameters): void {
-  if (map === undefined) return;
+/** The column map that was asked for; null: none was. @throws Invalid for one that the lab does not have */
+async function namedMap(actor: Actor, parameters: ImportParameters): Promise<ColumnMap | null> {
+  const { map: name, mapVersion: version } = parameters;
+  if (name === undefined) {
+    if (version === undefined) return null;
+    throw Invalid.at('mapVersion', 'Name the column map whose version this is.', { expected: 'map=…' });
+  }
+  const kept = await keptMapNamed(actor.labId, name, version ?? null);
+  if (kept) return kept.map;
   throw Invalid.at(
     'map',
-    `This lab has no column map called "${map}"${mapVersion === undefined ? '' : `, version ${mapVersion}`}.`,
+    `This lab has no column map called "${name}"${version === undefined ? '' : ` with a version ${version}`}.`,
     {
-      found: map,
+      found: name,
       expected: 'the name of a saved column map, or none: then the layout is recognised by its header'
     }
   );

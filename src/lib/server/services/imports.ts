@@ -10,7 +10,7 @@ import type { Study } from '../db/models/study';
 import { sequelize } from '../db/sequelize';
 import { audit, inTransaction } from '../db/transaction';
 import { Conflict, Forbidden, Invalid, NotFound } from '../errors';
-import { nothingDeclared, type Declared } from './import-expectation';
+import { declaredOf, nothingDeclared, type Declared } from './import-expectation';
 import { knownId } from './known-id';
 import { require } from './permissions';
 import { studyOf } from './study-of';
@@ -100,9 +100,12 @@ export async function receiveFile(
       };
     }
     if (known?.state === 'received') {
-      // The upload is repeated, perhaps from another experiment's page: the declaration follows the last one.
+      // The upload is repeated, perhaps from another experiment's page: what is said of it follows the last one, and what somebody
+      // worked out about it since (how it is read, what labels mean, mended cells) stays.
+      const waiting = await importOfStudy(actor, study, known.id);
+      const { map, assignments, mends } = declaredOf(waiting.declared);
       await Import.update(
-        { declared: { ...nothingDeclared, experimentId } },
+        { declared: { ...nothingDeclared, experimentId, map, assignments, mends } },
         { where: { id: known.id, state: 'received' } }
       );
       return { importId: known.id, storedBefore: null };
@@ -161,7 +164,7 @@ export async function declareAboutImport(
   actor: Actor,
   studyCode: string,
   importId: string,
-  declared: Pick<Declared, 'basis' | 'decimal'>
+  declared: Pick<Declared, 'basis' | 'decimal'> & Partial<Pick<Declared, 'map'>>
 ): Promise<void> {
   require(actor, 'data.enter');
   const study = await studyOf(actor, studyCode);
