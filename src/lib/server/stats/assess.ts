@@ -22,6 +22,8 @@ export type Assessable = Description & { readonly df?: number | null };
 
 const verdictLevel = 0.95;
 const rsdLevel = 0.8;
+/** Nobody prepares more; a count beyond it is a mistake. */
+const mostReplicates = 1_000_000;
 
 /**
  * Holds a description of net recoveries against acceptance criteria.
@@ -37,8 +39,7 @@ const rsdLevel = 0.8;
  */
 export function assess(d: Assessable, criteria: Criteria): Assessment {
   checkCriteria(criteria);
-  finite(d.mean, 'Mean to assess');
-  positive(d.n, 'Number of replicates to assess');
+  checkDescription(d);
   const { low, high, rsdMax, nMin } = criteria;
   if (d.n < nMin) return { verdict: 'too few', reasons: [`n ${d.n} < ${nMin}`] };
 
@@ -87,6 +88,22 @@ function compare(name: string, figure: number, sign: '<' | '>', limit: number): 
   let digits = 3;
   while (digits < 15 && Number(figure.toPrecision(digits)) === limit) digits += 1;
   return `${name} ${Number(figure.toPrecision(digits))} ${sign} ${limit}`;
+}
+
+function checkDescription({ n, mean, rsd, se, ci }: Assessable): void {
+  if (!Number.isInteger(positive(n, 'Number of replicates to assess')) || n > mostReplicates) {
+    throw new StatsError(
+      'out-of-range',
+      `Number of replicates to assess must be a whole number up to ${mostReplicates}, found ${n}.`
+    );
+  }
+  finite(mean, 'Mean to assess');
+  if (rsd !== null) finite(rsd, 'RSD to assess');
+  if (se !== null) finite(se, 'Standard error to assess');
+  if (ci !== null) {
+    finite(ci.lower, 'Lower bound of the mean to assess');
+    finite(ci.upper, 'Upper bound of the mean to assess');
+  }
 }
 
 function checkCriteria({ low, high, rsdMax, nMin }: Criteria): void {

@@ -2,7 +2,7 @@ import { assess, type Assessment, type Criteria } from './assess';
 import { balanceTables, type BalanceTables } from './balance-tables';
 import { StatsError } from './errors';
 import { found, missing, notDetected, requireFractionNames, type FractionTable } from './fraction-values';
-import { finiteValues, fractionOfOne, sameLength } from './guards';
+import { finite, finiteValues, fractionOfOne, sameLength } from './guards';
 import type { CountsAs, MassBalance } from './mass-balance';
 import { moments } from './moments';
 import { stageLosses, type StageLoss } from './stage-losses';
@@ -60,7 +60,7 @@ export function studyFigures(
   const { analytes, criteria, level = 0.95 } = options;
   fractionOfOne(level, 'Level');
   if (experiments.length === 0) throw new StatsError('empty-group', 'No experiment is given.');
-  if (!(Number.isInteger(analytes) && analytes > 0)) {
+  if (!(Number.isInteger(finite(analytes, 'Number of analytes')) && analytes > 0)) {
     throw new StatsError('empty-group', `Number of analytes must be at least 1, found ${analytes}.`);
   }
   for (const experiment of experiments) checkExperiment(experiment, analytes);
@@ -100,7 +100,7 @@ export function studyFigures(
  */
 export function columnMoments(values: Float64Array, size: number): { mean: Float64Array; sd: Float64Array } {
   finiteValues(values, 'Column');
-  if (!(size >= 2)) {
+  if (finite(size, 'Size of the groups') < 2) {
     throw new StatsError('too-few-values', `Groups of ${size} values given, at least 2 needed.`);
   }
   if (!(Number.isInteger(size) && values.length % size === 0)) {

@@ -196,8 +196,17 @@ function checkPoints(
   points: readonly CalibrationPoint[],
   model: CalibrationModel,
   weighting: CalibrationWeighting,
-  p: number
+  p: number | undefined
 ): void {
+  if (p === undefined) {
+    throw new StatsError('out-of-range', `The calibration model "${model}" is not one that can be fitted.`);
+  }
+  if (weighting !== 'none' && weighting !== '1/x' && weighting !== '1/x2') {
+    throw new StatsError(
+      'out-of-range',
+      `The weighting "${String(weighting)}" is none of none, 1/x and 1/x2.`
+    );
+  }
   if (points.length === 0) throw new StatsError('empty-group', 'No calibration point is given.');
   if (points.length <= p) {
     throw new StatsError(

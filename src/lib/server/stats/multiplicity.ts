@@ -4,9 +4,9 @@ type Probabilities = readonly (number | null)[];
 
 /**
  * Holm's adjusted p-values: p_(i) times (m - i + 1), made monotone and capped at 1. They hold the chance of any false
- * claim below the level. Nulls pass through and are not counted in m; order is kept. An empty list gives an empty list.
+ * claim below the level. Nulls pass through and are not counted in m; order is kept.
  *
- * @throws StatsError when a p-value is not between 0 and 1.
+ * @throws StatsError when the list is empty or a p-value is not between 0 and 1.
  * Source: S. Holm, Scand. J. Stat. 6 (1979) 65.
  */
 export function holm(p: Probabilities): (number | null)[] {
@@ -24,7 +24,7 @@ export function holm(p: Probabilities): (number | null)[] {
  * Benjamini and Hochberg's adjusted p-values: p_(i) m/i, made monotone from the largest down. They hold the expected share
  * of false claims below the level. Nulls pass through and are not counted in m; order is kept.
  *
- * @throws StatsError when a p-value is not between 0 and 1.
+ * @throws StatsError when the list is empty or a p-value is not between 0 and 1.
  * Source: Y. Benjamini and Y. Hochberg, J. R. Stat. Soc. B 57 (1995) 289.
  */
 export function benjaminiHochberg(p: Probabilities): (number | null)[] {
@@ -40,6 +40,8 @@ export function benjaminiHochberg(p: Probabilities): (number | null)[] {
 }
 
 function ascending(p: Probabilities): { value: number; index: number }[] {
+  if (!(p?.length > 0))
+    throw new StatsError('empty-group', 'p-values: no value is given, at least 1 needed.');
   const present: { value: number; index: number }[] = [];
   p.forEach((value, index) => {
     if (value === null) return;

@@ -42,7 +42,12 @@ export function netMean(sample: Sample, level = 0.95): Estimate {
 export function takeApart(sample: Sample, what = 'Sample'): NetMean {
   const { values, native, matrixEffect } = sample;
   finiteValues(values, `${what}, spiked values`);
-  const factor = matrixEffect ? 100 / positive(matrixEffect.estimate, `${what}, matrix effect`) : 1;
+  if (matrixEffect) {
+    positive(matrixEffect.estimate, `${what}, matrix effect`);
+    notNegative(matrixEffect.se, `${what}, standard error of the matrix effect`);
+    positive(matrixEffect.df, `${what}, degrees of freedom of the matrix effect`);
+  }
+  const factor = matrixEffect ? 100 / matrixEffect.estimate : 1;
   const subtracted = native === undefined ? null : subtraction(sample, native, what);
   const netValues =
     subtracted === null && factor === 1
@@ -69,11 +74,10 @@ export function takeApart(sample: Sample, what = 'Sample'): NetMean {
     });
   }
   if (matrixEffect) {
-    const se = notNegative(matrixEffect.se, `${what}, standard error of the matrix effect`);
     components.push({
       gradient: -net.mean / matrixEffect.estimate,
-      variance: se * se,
-      df: positive(matrixEffect.df, `${what}, degrees of freedom of the matrix effect`),
+      variance: matrixEffect.se * matrixEffect.se,
+      df: matrixEffect.df,
       shared: matrixEffect
     });
   }

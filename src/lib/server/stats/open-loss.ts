@@ -7,7 +7,7 @@ import {
   type FractionRecord,
   type FractionTable
 } from './fraction-values';
-import { fractionOfOne, notNegative, positive } from './guards';
+import { finite, fractionOfOne, notNegative, positive } from './guards';
 import { takeApart, varianceTerms, type NetMean } from './net-mean';
 import { noEstimate, type Estimate } from './types';
 import { linearEstimate, type VarianceTerm } from './variance-terms';
@@ -136,7 +136,8 @@ function readFactor(
   df: number | null
 ): Factor {
   const what = stage === null ? 'Signal reference' : `Step recovery of "${stage}"`;
-  if (ratio === null || (stage === null && ratio <= 0)) return { stage, ratio: null, log: null };
+  if (ratio === null || (stage === null && finite(ratio, what) <= 0))
+    return { stage, ratio: null, log: null };
   positive(ratio, what);
   if (se === null) return { stage, ratio, log: null };
   notNegative(se, `${what}, standard error`);

@@ -1,4 +1,5 @@
 import { studentUpper } from './distributions';
+import { StatsError } from './errors';
 import { fisherQuantile, studentQuantile } from './quantiles';
 import { finiteGroups, finiteValues, fractionOfOne } from './guards';
 import { moments } from './moments';
@@ -30,6 +31,9 @@ export function grubbs(
   const { alpha = 0.05, side = 'both' } = options;
   finiteValues(values, 'Values', 3);
   fractionOfOne(alpha, 'Significance level');
+  if (side !== 'both' && side !== 'low' && side !== 'high') {
+    throw new StatsError('out-of-range', `Side must be both, low or high, found "${String(side)}".`);
+  }
   const { n, mean, sd, min, max } = moments(values);
   const chances = side === 'both' ? 2 * n : n;
   const t = studentQuantile(alpha / chances, n - 2);

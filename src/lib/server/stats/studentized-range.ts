@@ -47,6 +47,8 @@ export function studentizedRangeUpper(q: number, k: number, df: number): number 
 
 /** q with P(Q > q) = `upper`: false position in logarithms, where the tail is nearly straight, inside a bracket. */
 export function studentizedRangeQuantile(upper: number, k: number, df: number): number {
+  // A level within rounding of zero asks for no width at all.
+  if (upper >= 1) return 0;
   const target = Math.log(upper);
   const excess = (logQ: number) =>
     Math.log(Math.max(studentizedRangeUpper(Math.exp(logQ), k, df), Number.MIN_VALUE)) - target;
