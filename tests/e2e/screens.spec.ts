@@ -12,6 +12,7 @@ const screens = [
   study,
   `${study}/aim`,
   `${study}/panel`,
+  `${study}/panel/chemistry`,
   `${study}/variants`,
   `${study}/variants/A`,
   `${study}/variants/A?edit=steps`,
@@ -38,6 +39,7 @@ const screens = [
 const behind = [
   { from: `${study}/data`, link: /\/data\/[0-9a-f-]{36}$/ },
   { from: `${study}/calibration`, link: /\/calibration\/[0-9a-f-]{36}$/ },
+  { from: `${study}/panel/chemistry`, link: /[?&]analyte=/ },
   { from: `${study}/balance`, link: /figure=recovery/ },
   { from: '/library/analytes', link: /\/library\/analytes\/[0-9a-f-]{36}$/ },
   { from: '/library/criteria', link: /\/library\/criteria\/[0-9a-f-]{36}$/ }

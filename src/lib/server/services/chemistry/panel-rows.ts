@@ -63,7 +63,7 @@ function atPhText(rows: readonly PanelChemistryRow[], ph: number): string {
   const neutral = known.filter(isNeutral).length;
   if (known.length === 1) return `At pH ${ph} it is ${neutral === 1 ? '' : 'not '}at least 99 % neutral.`;
   const many = neutral === known.length ? 'all' : neutral === 0 ? 'none' : `${neutral} of ${known.length}`;
-  return `At pH ${ph}, ${many} ${neutral === 1 ? 'is' : 'are'} at least 99 % neutral.`;
+  return `At pH ${ph}, ${many} ${neutral < 2 ? 'is' : 'are'} at least 99 % neutral.`;
 }
 
 /** The groups of charge with their rows, every analyte once, and the groups that come on top of them. */
