@@ -104,7 +104,7 @@ test('a SMILES that cannot be read is refused with its text, the place and what 
   const refused: readonly (readonly [string, RegExp])[] = [
     ['', /there is no text/],
     ['   ', /there is no text/],
-    ['xyz', /'xyz' cannot be read as SMILES: unknown element label/],
+    ['xyz', /'xyz' cannot be read as SMILES: 'x' at position 1 is no atom/],
     ['CC(', /'CC\(' cannot be read as SMILES: a branch is opened by '\(' and never closed/],
     ['C(C(C', /2 branches are opened/],
     ['C1CC1%', /two digits of a ring number must follow '%'/],
@@ -113,6 +113,19 @@ test('a SMILES that cannot be read is refused with its text, the place and what 
     ['C*', /placeholder/],
     ['CC~C', /placeholder/],
     ['C(C)(C)(C)(C)C', /atom 1 \(C\) has more bonds/],
+    ['CC=', /it ends after '=', where an atom should follow/],
+    ['C[', /the bracket at position 2 does not hold an atom/],
+    ['.C', /'\.' at position 1 cannot stand first/],
+    ['C==C', /'=' at position 3 cannot stand there/],
+    ['C()C', /'\)' at position 3 cannot stand there/],
+    ['C))', /'\)' at position 2 closes a branch that was never opened/],
+    ['C6H6', /'H' at position 3 is no atom that may stand without brackets/],
+    ['C\u{1f600}', /'\u{1f600}' at position 2 is no sign of SMILES/u],
+    ['[CH4]C', /atom 1 \(C\) has more bonds/],
+    ['C[NH3]C', /atom 2 \(N\) has more bonds/],
+    ['C[C@H](C)(O)C', /atom 2 \(C\) has more bonds/],
+    ['C[N+]', /atom 2 \(N\) has fewer bonds than it needs/],
+    ['[H]', /atom 1 \(H\) has fewer bonds/],
     ['c1cccc1', /unpaired electron/],
     ['[CH3]', /unpaired electron/],
     ['C'.repeat(151), /it has 151 atoms, at most 150/],
@@ -126,4 +139,21 @@ test('a SMILES that cannot be read is refused with its text, the place and what 
       message: expect.stringMatching(why) as string
     });
   }
+});
+
+test('what is unusual and possible is read', async () => {
+  const read: readonly (readonly [string, string])[] = [
+    ['C[N+]#[C-]', 'C2H3N'],
+    ['CN=[N+]=[N-]', 'CH3N3'],
+    ['F[P-](F)(F)(F)(F)F', 'F6P'],
+    ['[B-](F)(F)(F)F', 'BF4'],
+    ['OI(=O)=O', 'HIO3'],
+    ['CC[Pb](CC)(CC)CC', 'C8H20Pb'],
+    ['N[Pt](N)(Cl)Cl', 'Cl2H4N2Pt'],
+    ['c1cc[se]c1', 'C4H4Se'],
+    ['C%10CC%10', 'C3H6'],
+    ['C[C@TH1H](F)O', 'C2H5FO'],
+    ['[13C@H](F)(Cl)[Br:3]', 'CHBrClF']
+  ];
+  for (const [smiles, formula] of read) expect(await field(smiles, 'formula'), smiles).toBe(formula);
 });

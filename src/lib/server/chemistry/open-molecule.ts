@@ -1,4 +1,6 @@
+import { possibleBonds } from './bond-counts';
 import { ChemistryError } from './errors';
+import { brokenGrammar } from './smiles-grammar';
 import type { Molecule } from 'openchemlib';
 
 type Library = typeof import('openchemlib');
@@ -31,37 +33,37 @@ export function openMolecule({ Molecule: Molecules }: Library, typed: string, de
   const space = smiles.search(/\s/);
   if (space >= 0)
     throw unreadable(smiles, `there is a space at position ${space + 1}; give the structure alone`);
-  const cut = cutShort(smiles);
-  if (cut) throw unreadable(smiles, cut);
-  const molecule = parsed(Molecules, smiles, detail);
+  const broken = brokenGrammar(smiles);
+  if (broken) throw unreadable(smiles, broken);
+  // Flat first: a structure that is refused costs no drawing.
+  const molecule = parsed(Molecules, smiles, 'flat');
   const atoms = molecule.getAllAtoms();
   if (atoms === 0) throw unreadable(smiles, 'it has no atoms');
   if (atoms > mostAtoms) throw unreadable(smiles, `it has ${atoms} atoms, at most ${mostAtoms}`);
   if (molecule.isFragment()) throw unreadable(smiles, 'it holds a placeholder or a bond of any kind');
   molecule.ensureHelperArrays(Molecules.cHelperRings);
   for (let atom = 0; atom < atoms; atom += 1) {
-    const label = molecule.getAtomLabel(atom);
-    if (molecule.getOccupiedValence(atom) > molecule.getMaxValence(atom)) {
-      throw unreadable(smiles, `atom ${atom + 1} (${label}) has more bonds than it can have`);
-    }
-    if (molecule.getAtomRadical(atom) !== 0) {
-      throw unreadable(
-        smiles,
-        `atom ${atom + 1} (${label}) is left with an unpaired electron (is a hydrogen or a charge missing?)`
-      );
-    }
+    const odd = oddAtom(molecule, atom);
+    if (odd) throw unreadable(smiles, `atom ${atom + 1} (${molecule.getAtomLabel(atom)}) ${odd}`);
   }
-  return molecule;
+  if (detail === 'flat') return molecule;
+  const whole = parsed(Molecules, smiles, 'whole');
+  whole.ensureHelperArrays(Molecules.cHelperRings);
+  return whole;
 }
 
-/** A text that ends too early is another, smaller molecule to the library. */
-function cutShort(smiles: string): string | null {
-  const count = (sign: string) => smiles.split(sign).length - 1;
-  const open = count('(') - count(')');
-  if (open > 0)
-    return `${open === 1 ? 'a branch is' : `${open} branches are`} opened by '(' and never closed`;
-  const ring = smiles.replace(/\[[^\]]*\]/g, '').search(/%(?!\d\d)/);
-  return ring >= 0 ? "two digits of a ring number must follow '%'" : null;
+/** What an atom cannot be, where it is that. */
+function oddAtom(molecule: Molecule, atom: number): string | null {
+  if (molecule.getAtomRadical(atom) !== 0) {
+    return 'is left with an unpaired electron (is a hydrogen or a charge missing?)';
+  }
+  const bonds = molecule.getOccupiedValence(atom) + molecule.getImplicitHydrogens(atom);
+  const possible = possibleBonds(molecule.getAtomicNo(atom), molecule.getAtomCharge(atom));
+  const most = possible ? Math.max(...possible) : molecule.getMaxValence(atom);
+  if (bonds > most) return 'has more bonds than it can have';
+  return possible && !possible.includes(bonds)
+    ? 'has fewer bonds than it needs (is a hydrogen or a charge missing?)'
+    : null;
 }
 
 function parsed(Molecules: Library['Molecule'], smiles: string, detail: Detail): Molecule {
