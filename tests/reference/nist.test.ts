@@ -3,7 +3,7 @@ import * as stats from '../../src/lib/server/stats/index';
 import { leastSquares } from '../../src/lib/server/stats/least-squares';
 import { verify, type Check } from './check';
 import { atomicWeightOfSilver, gearDiameters, siliconResistivity, simonLesage } from './data/nist-anova';
-import { noInt1, noInt2, norris, pontius, wampler } from './data/nist-regression';
+import { filip, longley, noInt1, noInt2, norris, pontius, wampler } from './data/nist-regression';
 import { univariateSets } from './data/nist-univariate';
 
 describe('describe, NIST StRD univariate sets', () => {
@@ -275,5 +275,120 @@ describe('leastSquares, NIST StRD regression', () => {
       relative: 1e-13
     },
     ...[0, 1, 2, 3].flatMap(polynomial)
+  ]);
+});
+
+describe('leastSquares on centred and scaled columns, NIST StRD sets of higher difficulty', () => {
+  const sum = (values: readonly number[]): number => values.reduce((total, value) => total + value, 0);
+
+  // Filip: powers of u = (x - centre)/scale, taken back to powers of x.
+  const [lowest, highest] = [Math.min(...filip.map(({ x }) => x)), Math.max(...filip.map(({ x }) => x))];
+  const [centre, scale] = [(lowest + highest) / 2, (highest - lowest) / 2];
+  const degrees = Array.from({ length: 11 }, (_, k) => k);
+  const fit = leastSquares(
+    degrees.map((k) => filip.map(({ x }) => ((x - centre) / scale) ** k)),
+    filip.map(({ y }) => y)
+  );
+  const choose = (n: number, k: number): number =>
+    Array.from({ length: k }, (_, i) => (n - i) / (i + 1)).reduce((product, part) => product * part, 1);
+  const back = degrees.map((k) =>
+    degrees.map((j) => (j < k ? 0 : (choose(j, k) * (-centre) ** (j - k)) / scale ** j))
+  );
+  const certified: readonly (readonly [b: number, sd: number])[] = [
+    [-1467.4896142298, 298.084530995537],
+    [-2772.17959193342, 559.77986547495],
+    [-2316.37108160893, 466.477572127796],
+    [-1127.97394098372, 227.204274477751],
+    [-354.478233703349, 71.6478660875927],
+    [-75.1242017393757, 15.28971787474],
+    [-10.8753180355343, 2.23691159816033],
+    [-1.06221498588947, 0.221624321934227],
+    [-0.0670191154593408, 0.0142363763154724],
+    [-0.00246781078275479, 5.35617408889821e-4],
+    [-4.02962525080404e-5, 8.96632837373868e-6]
+  ];
+  const sigma2 = fit.residualSumOfSquares / 71;
+  const filipSource = 'NIST StRD, Filip, certified (figures from memory, recomputed with 80 digits)';
+
+  // Longley: each variable less its mean and over its root of squares; the constant taken back from the means.
+  const count = longley.length;
+  const variables = Array.from({ length: 6 }, (_, j) => longley.map(([row]) => row[j]!));
+  const means = variables.map((column) => sum(column) / count);
+  const lengths = variables.map((column, j) => Math.hypot(...column.map((value) => value - means[j]!)));
+  const meanY = sum(longley.map(([, y]) => y)) / count;
+  const local = leastSquares(
+    variables.map((column, j) => column.map((value) => (value - means[j]!) / lengths[j]!)),
+    longley.map(([, y]) => y - meanY)
+  );
+  const slopes = local.coefficients.map((coefficient, j) => coefficient / lengths[j]!);
+  const longleySigma2 = local.residualSumOfSquares / (count - 7);
+  const employed: readonly (readonly [b: number, sd: number])[] = [
+    [15.0618722713733, 84.9149257747669],
+    [-0.035819179292591, 0.0334910077722432],
+    [-2.02022980381683, 0.488399681651699],
+    [-1.03322686717359, 0.214274163161675],
+    [-0.0511041056535807, 0.22607320006937],
+    [1829.15146461355, 455.478499142212]
+  ];
+  const longleySource = 'NIST StRD, Longley, certified (figures from memory, recomputed with 80 digits)';
+
+  verify([
+    ...certified.flatMap(([b, sd], k): Check[] => [
+      {
+        what: `Filip B${k}`,
+        source: filipSource,
+        actual: () => sum(back[k]!.map((weight, j) => weight * fit.coefficients[j]!)),
+        expected: b,
+        relative: 1e-7
+      },
+      {
+        what: `Filip SD of B${k}`,
+        source: filipSource,
+        actual: () =>
+          Math.sqrt(
+            sigma2 *
+              sum(back[k]!.flatMap((a, i) => back[k]!.map((c, j) => a * c * fit.unscaledCovariance[i]![j]!)))
+          ),
+        expected: sd,
+        relative: 1e-6
+      }
+    ]),
+    {
+      what: 'Filip residual SD',
+      source: filipSource,
+      actual: () => Math.sqrt(sigma2),
+      expected: 0.00334801051324544,
+      relative: 1e-11
+    },
+    ...employed.flatMap(([b, sd], j): Check[] => [
+      {
+        what: `Longley B${j + 1}`,
+        source: longleySource,
+        actual: () => slopes[j]!,
+        expected: b,
+        relative: 1e-10
+      },
+      {
+        what: `Longley SD of B${j + 1}`,
+        source: longleySource,
+        actual: () => Math.sqrt(longleySigma2 * local.unscaledCovariance[j]![j]!) / lengths[j]!,
+        expected: sd,
+        relative: 1e-10
+      }
+    ]),
+    {
+      what: 'Longley B0',
+      source: longleySource,
+      actual: () => meanY - sum(slopes.map((slope, j) => slope * means[j]!)),
+      expected: -3482258.63459582,
+      relative: 1e-10
+    },
+    {
+      what: 'Longley residual SD',
+      source: longleySource,
+      actual: () => Math.sqrt(longleySigma2),
+      expected: 304.854073561965,
+      relative: 1e-11
+    }
   ]);
 });

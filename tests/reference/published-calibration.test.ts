@@ -137,6 +137,25 @@ describe('inverse reading with its error', () => {
   ]);
 });
 
+describe('standard addition', () => {
+  // The level that answers with nothing, on the line through seven additions; its error is that of the line alone, so that the
+  // reading of the response counts as made without end.
+  const source = 'Miller and Miller, standard addition (data from memory)';
+  const fit = stats.fitCalibration(
+    points([0, 5, 10, 15, 20, 25, 30], [0.32, 0.41, 0.52, 0.6, 0.7, 0.77, 0.89]),
+    { model: 'linear', weighting: 'none' }
+  );
+  const nothing = stats.solveCalibration(fit, 0, { replicates: 1e15 });
+  verify([
+    { what: 'slope', source, actual: () => fit.coefficients[1]!, expected: 0.0186429, absolute: 5e-8 },
+    { what: 'intercept', source, actual: () => fit.coefficients[0]!, expected: 0.3217857, absolute: 5e-8 },
+    { what: 'residual SD', source, actual: () => fit.residualSd, expected: 0.010922, absolute: 5e-7 },
+    { what: 'level added to', source, actual: () => -nothing.x!, expected: 17.2605, absolute: 5e-5 },
+    { what: 'its standard error', source, actual: () => nothing.se, expected: 0.74787, absolute: 5e-6 },
+    { what: 'its 95 % half width', source, actual: () => nothing.se! * t(5), expected: 1.92, absolute: 0.005 }
+  ]);
+});
+
 describe('DIN 32645', () => {
   const source = 'DIN 32645 example, as in tests of the R package chemCal';
   const x = Array.from({ length: 10 }, (_, i) => (i + 1) / 20);
@@ -166,6 +185,14 @@ describe('DIN 32645', () => {
       expected: 0.07434,
       absolute: 5e-6
     },
+    // At the response of the intercept the level is zero, and its one-sided 99 % bound the critical value.
+    {
+      what: 'critical value at 1 %',
+      source,
+      actual: () => stats.solveCalibration(fit, fit.coefficients[0]!).se! * 2.896459,
+      expected: 0.0698127,
+      absolute: 5e-7
+    },
     {
       what: 'detection limit 3.3 sigma/slope',
       source: 'ICH Q2 formula (from memory) on the same data',
@@ -186,6 +213,9 @@ describe('DIN 32645', () => {
 describe('response factors', () => {
   // SW-846 8000D notes that the average response factor equals a 1/x2 weighted fit through zero, and that with it the RSE
   // equals the RSD of the response factors up to the levels' own read-back: checked by hand on three levels.
+  // Published figures can be smaller: EPA's report on its method for 6PPD-quinone prints RSE of 2.70, 1.44 and 4.96 % for lines
+  // through seven levels, which its data give with n - 1 (2.67, 1.44, 4.95); with n - 2, as 8000D has it for a line, they are
+  // sqrt(6/5) times as large (2.93, 1.57, 5.43).
   const source = 'EPA SW-846 Method 8000D, 11.5, worked by hand';
   const fit = stats.fitCalibration(points([1, 2, 4], [10, 22, 36]), {
     model: 'average response factor',
@@ -208,6 +238,16 @@ describe('response factors', () => {
       relative: 1e-14
     },
     { what: 'RSE', source, actual: () => fit.rse, expected: 10, relative: 1e-13 },
+    {
+      what: 'RSE of a line through three levels, n - p = 1',
+      source,
+      // y = x but for the middle, which is one third high: the line is raised by 1/9 everywhere, read-back errors -1/9, 1/9, -1/27.
+      actual: () =>
+        stats.fitCalibration(points([1, 2, 3], [1, 2 + 1 / 3, 3]), { model: 'linear', weighting: 'none' })
+          .rse,
+      expected: 100 * Math.sqrt((1 / 9) ** 2 + (1 / 9) ** 2 + (1 / 27) ** 2),
+      relative: 1e-12
+    },
     {
       what: 'error at the second level',
       source,
