@@ -1,9 +1,8 @@
 import { relative, rsdInterval, sdInterval } from './describe';
 import { countNotDetected, rowSums, splitComplete, type FractionTable } from './fraction-values';
 import type { CountsAs, FractionFigure, MassBalance, Total } from './mass-balance';
-import { takeApart, varianceTerms } from './net-mean';
+import { ownEstimate, takeApart } from './net-mean';
 import type { Estimate, Sample } from './types';
-import { linearEstimate } from './variance-terms';
 
 /** One analyte of one experiment, read and checked. */
 export type BalanceTables = {
@@ -25,8 +24,17 @@ export function balanceTables(tables: BalanceTables): Balanced {
   const ofMethod = all.filter((column) => fractions[column]!.countsAs === 'method');
   const methodRows = splitComplete(spiked, ofMethod);
   const allRows = splitComplete(spiked, all);
+  const nativeRows = tables.unspiked && splitComplete(tables.unspiked, all).complete;
 
-  const methodSample = ofMethod.length > 0 ? sampleOf(tables, ofMethod, methodRows.complete, ofMethod) : null;
+  const methodSample =
+    ofMethod.length > 0
+      ? sampleOf(
+          tables,
+          ofMethod,
+          methodRows.complete,
+          tables.unspiked && splitComplete(tables.unspiked, ofMethod).complete
+        )
+      : null;
   const method = methodSample && describeTotal(tables, methodSample, ofMethod, methodRows.complete);
   const balance = figuresOf(all);
   const figures: MassBalance = {
@@ -39,7 +47,7 @@ export function balanceTables(tables: BalanceTables): Balanced {
   return { figures, methodSample };
 
   function figuresOf(columns: readonly number[]): Total | null {
-    const sample = sampleOf(tables, columns, allRows.complete, all);
+    const sample = sampleOf(tables, columns, allRows.complete, nativeRows);
     return sample && describeTotal(tables, sample, columns, allRows.complete);
   }
 
@@ -67,20 +75,19 @@ export function balanceTables(tables: BalanceTables): Balanced {
 }
 
 /**
- * Per-replicate sums over columns as a sample, with those of the native portions complete in `needed`. Null when no
- * replicate, or no native portion, is complete.
+ * Per-replicate sums over columns as a sample, with those of the native portions. Null when no replicate, or no native portion, is
+ * complete.
  */
 function sampleOf(
   tables: BalanceTables,
   columns: readonly number[],
   rows: readonly number[],
-  needed: readonly number[]
+  nativeRows: readonly number[] | null
 ): Sample | null {
   const { spiked, unspiked, batches, nativeBatches } = tables;
   if (rows.length === 0) return null;
   const values = rowSums(spiked, rows, columns, 'low');
-  if (!unspiked) return { values };
-  const nativeRows = splitComplete(unspiked, needed).complete;
+  if (!unspiked || nativeRows === null) return { values };
   if (nativeRows.length === 0) return null;
   return {
     values,
@@ -98,7 +105,7 @@ function describeTotal(
 ): Total {
   const taken = takeApart(sample);
   const { n, mean, sd, min, max } = taken.net;
-  const { se, df, ci } = linearEstimate(mean, varianceTerms([{ weight: 1, of: taken }]), level);
+  const { se, df, ci } = ownEstimate(taken, level);
   const notDetected = countNotDetected(spiked, rows, columns);
   const high =
     notDetected === 0 ? mean : takeApart({ ...sample, values: rowSums(spiked, rows, columns, 'high') }).mean;

@@ -34,8 +34,13 @@ export type NetMean = {
  */
 export function netMean(sample: Sample, level = 0.95): Estimate {
   fractionOfOne(level, 'Level');
-  const taken = takeApart(sample);
-  return linearEstimate(taken.mean, varianceTerms([{ weight: 1, of: taken }]), level);
+  return ownEstimate(takeApart(sample), level);
+}
+
+/** A net mean by itself, with its interval. A single source of error is its own variance term: its gradient is 1. */
+export function ownEstimate(of: NetMean, level: number): Estimate {
+  const terms = of.components?.length === 1 ? of.components : varianceTerms([{ weight: 1, of }]);
+  return linearEstimate(of.mean, terms, level);
 }
 
 /** Takes a sample apart into net mean and sources of error. Throws as {@link netMean} does. */

@@ -8,7 +8,7 @@ import {
   type FractionTable
 } from './fraction-values';
 import { finite, fractionOfOne, notNegative, positive } from './guards';
-import { takeApart, varianceTerms, type NetMean } from './net-mean';
+import { ownEstimate, takeApart, varianceTerms, type NetMean } from './net-mean';
 import { noEstimate, type Estimate } from './types';
 import { linearEstimate, type VarianceTerm } from './variance-terms';
 
@@ -64,7 +64,7 @@ export function openLoss(input: OpenLossInput): OpenLoss {
       native: unspiked ? weightedSums(unspiked, nativeRows, weights) : undefined
     });
   const ones = columns.map(() => 1);
-  const found = ownEstimate(weighted(ones));
+  const found = ownEstimate(weighted(ones), level);
 
   const inflations = columns.map((column) => inflation(fractions[column]!.passed, factors));
   if (inflations.some((value) => value === null)) {
@@ -88,10 +88,6 @@ export function openLoss(input: OpenLossInput): OpenLoss {
     downstream: withFactors(lostOnTheWay.mean, lostOnTheWay),
     open: withFactors(100 - collected.mean, collected)
   };
-
-  function ownEstimate(of: NetMean): Estimate {
-    return linearEstimate(of.mean, varianceTerms([{ weight: 1, of }]), level);
-  }
 
   function withFactors(estimate: number, of: NetMean): Estimate {
     const own = varianceTerms([{ weight: 1, of }]);

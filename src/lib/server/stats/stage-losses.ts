@@ -1,7 +1,7 @@
 import { StatsError } from './errors';
 import { fractionOfOne } from './guards';
 import { holm } from './multiplicity';
-import { takeApart, varianceTerms, type NetMean } from './net-mean';
+import { ownEstimate, takeApart, varianceTerms, type NetMean } from './net-mean';
 import { studentTwoSided } from './distributions';
 import { noEstimate, type Estimate, type Sample } from './types';
 import {
@@ -55,7 +55,7 @@ export function stageLosses(stages: readonly StageSample[], level = 0.95): Stage
 
   const rows = stages.map((stage, index): Omit<StageLoss, 'pAdjusted'> => {
     const own = means[index]!;
-    const recovered = linearEstimate(own.mean, varianceTerms([{ weight: 1, of: own }]), level);
+    const recovered = ownEstimate(own, level);
     if (stage.kind === 'signal') {
       return { stage: stage.stage, recovered, stepRecovery: noEstimate, lost: null, regain: null, p: null };
     }
