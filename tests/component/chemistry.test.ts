@@ -126,7 +126,7 @@ it('the table twin has every figure of the chart in words', async () => {
   const screen = await render(NeutralTable, { groups, ph: 7, caption: 'Neutral share over pH' });
   await expect
     .element(screen.getByRole('row', { name: /^Ibuprofen/ }))
-    .toHaveTextContent(/Acids.*4\.91.*3.*the library's.*0\.8.*−.*0\.9.*below 2\.9.*above 7/);
+    .toHaveTextContent(/Acids.*4\.91.*3.*the library's.*0\.8.*negative.*0\.9.*below 2\.9.*above 7/);
   await expect
     .element(screen.getByRole('row', { name: /^Unheard-of/ }))
     .toHaveTextContent('neither pKa nor log Kow');

@@ -19,12 +19,12 @@ export function logDText(logD: number): string {
 
 const marks: Readonly<Record<ChargeView, string>> = {
   none: '',
-  positive: '+',
-  negative: '\u2212',
-  both: '±'
+  positive: '(+)',
+  negative: '(\u2212)',
+  both: '(±)'
 };
 
-/** The sign of what most of an analyte carries; nothing where most carries none. */
+/** The sign of what most of an analyte carries, in brackets, so that it is not read as one of the figure; nothing for none. */
 export const chargeMark = (charge: ChargeView | null): string => (charge === null ? '' : marks[charge]);
 
 const chargeWords: Readonly<Record<ChargeView, string>> = {

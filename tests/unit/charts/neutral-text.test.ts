@@ -55,9 +55,9 @@ describe('rangesText', () => {
 it('writes log D with one decimal and a real minus', () => {
   expect([-3.04, -0.02, 2, 0.96].map(logDText)).toEqual(['\u22123.0', '0.0', '2.0', '1.0']);
   expect([chargeMark('positive'), chargeMark('negative'), chargeMark('both'), chargeMark('none')]).toEqual([
-    '+',
-    '\u2212',
-    '±',
+    '(+)',
+    '(\u2212)',
+    '(±)',
     ''
   ]);
 });

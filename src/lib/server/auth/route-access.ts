@@ -83,6 +83,7 @@ export const routeAccess: Readonly<Record<string, RouteRule>> = {
   },
   '/(app)/studies/[study]/panel/chemistry': { read: 'studies.see' },
   '/(app)/studies/[study]/panel/chemistry.csv': { read: 'export.any' },
+  '/(app)/studies/[study]/panel/chemistry.svg': { read: 'export.any' },
   '/(app)/studies/[study]/variants': { read: 'studies.see' },
   '/(app)/studies/[study]/variants/new': { read: 'studies.edit', write: { default: 'studies.edit' } },
   '/(app)/studies/[study]/variants/[variant]': {
