@@ -56,7 +56,7 @@ export function findLayout(
   let best: { row: number; columns: readonly HeaderColumn[]; score: number } | null = null;
   for (const row of sheet.rowNumbers.subarray(0, rowsLookedAt)) {
     const columns = singleLine(sheet, row, read);
-    const elsewhere = elsewhereAt(row);
+    const elsewhere = hasNumbers(sheet, row) ? nothingElsewhere() : elsewhereAt(row);
     if (isComplete(columns, elsewhere)) return withSecondLine(sheet, row, columns, read, elsewhere);
     const composed = twoLines(sheet, row, read);
     if (isComplete(composed, elsewhere)) return layoutOf(sheet, [row - 1, row], composed, read);
@@ -101,8 +101,7 @@ function singleLine(sheet: Sheet, row: number, read: ReadText): readonly HeaderC
 /** Reads a row together with the one above it, from which columns take the analyte, or their whole header. */
 function twoLines(sheet: Sheet, row: number, read: ReadText): readonly HeaderColumn[] {
   // A line with numbers is one of results, and what is above it the header.
-  if (row === 0 || rowCells(sheet, row).some(({ cell }) => cell.kind === 'number' || cell.kind === 'date'))
-    return [];
+  if (row === 0 || hasNumbers(sheet, row)) return [];
   const cellText = mergeAwareReader(sheet);
   const textAt = (at: number, column: number): string => {
     const cell = cellText(at, column);
@@ -117,6 +116,10 @@ function twoLines(sheet: Sheet, row: number, read: ReadText): readonly HeaderCol
     else columns.push(joined(column, upper, lower, read));
   }
   return columns;
+}
+
+function hasNumbers(sheet: Sheet, row: number): boolean {
+  return rowCells(sheet, row).some(({ cell }) => cell.kind === 'number' || cell.kind === 'date');
 }
 
 function joined(column: number, upper: string, lower: string, read: ReadText): HeaderColumn {

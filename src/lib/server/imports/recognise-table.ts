@@ -20,6 +20,7 @@ import {
   titlesOf
 } from './find-layout';
 import type { Elsewhere, HeaderColumn, PartialLayout, SheetLayout } from './find-layout';
+import { mergeAwareReader } from './merged-cells';
 import { nameIn } from './named-text';
 import type { Names } from './named-text';
 import { readHeader, wordHeader } from './read-header';
@@ -43,17 +44,19 @@ export interface RecogniseContext extends Names {
 export function recogniseTable(sheet: Sheet, context: RecogniseContext): SheetMap | PartialLayout | null {
   const plain = findLayout(sheet, context.analytes);
   if (plain && isLayout(plain)) return tableOf(sheet, plain, context);
-  const down = recogniseDown(sheet, context);
-  if (down) return down;
   const elsewhere = elsewhereOf(sheet, context);
   const byContent = completedByContent(sheet, elsewhere, context);
-  if (byContent) return tableOf(sheet, byContent, context);
-  const carried = findLayout(sheet, context.analytes, elsewhere);
-  if (carried && isLayout(carried)) {
-    const table = tableOf(sheet, carried, context);
-    if (isWhole(table)) return table;
-  }
-  return plain ?? (carried && !isLayout(carried) ? carried : null);
+  const carried = byContent ?? findLayout(sheet, context.analytes, elsewhere);
+  const table = carried && isLayout(carried) ? tableOf(sheet, carried, context) : null;
+  const whole = table && isWhole(table) ? table : null;
+  // Several columns of one kind, or of one analyte each, may as well be samples side by side.
+  if (whole && hasOneValue(whole)) return whole;
+  return recogniseDown(sheet, context) ?? whole ?? plain ?? (carried && !isLayout(carried) ? carried : null);
+}
+
+function hasOneValue({ orientation, columns }: SheetMap): boolean {
+  const values = columns.filter(({ means }) => means === 'area' || means === 'amount');
+  return orientation === 'long' && values.length === 1;
 }
 
 export function isSheetMap(found: SheetMap | PartialLayout): found is SheetMap {
@@ -369,9 +372,13 @@ function tableDown(
       : read;
   });
   // Columns that describe the analytes (CAS number, formula, unit) hold no sample.
+  const labelled = mergeAwareReader(turned);
   const leftOut = lines.filter((each) => {
-    const label = cellAt(turned, each, sampleLine)?.raw.trim() ?? '';
-    return label !== '' && !context.isSample(label) && isHeaderWord(label, context);
+    const label = labelled(each, sampleLine)?.raw.trim() ?? '';
+    if (label !== '') return !context.isSample(label) && isHeaderWord(label, context);
+    return Array.from({ length: firstAnalyte }, (_, column) => cellAt(turned, each, column)?.raw ?? '').some(
+      (text) => text !== '' && isHeaderWord(text, context)
+    );
   });
   const base = { orientation: 'analytes down' as const, headerLines: [line], columns: mapped, leftOut };
   const needs = context.needsFraction && ![...meanings.values()].includes('fraction');
