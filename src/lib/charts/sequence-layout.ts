@@ -14,7 +14,7 @@ export interface PlaceScale {
 /** Places 1 to `count`, as far apart as a screen allows and never closer than letters can be read; long runs scroll. */
 export function placeScale(count: number, room = 1040): PlaceScale {
   const free = room - sequenceSize.left - sequenceSize.right;
-  const step = Math.max(15, Math.min(28, Math.floor(free / Math.max(1, count))));
+  const step = Math.max(15, Math.min(34, Math.floor(free / Math.max(1, count))));
   return {
     count,
     step,

@@ -1,14 +1,15 @@
-import { flagsText } from '../../amounts/figure-flags';
+import { flagsText, type FlaggedPart } from '../../amounts/figure-flags';
 import type { StudyExperiment, StudyPanelEntry } from './study-data';
 import type { StudyFigures } from './study-figures';
 
-/** What the recovery of an entry rests on that the checks of its sequence put in doubt, as a clause; null: nothing. */
+/** What the method recovery of an entry, or its balance, rests on that the checks of its sequence put in doubt, as a clause; null: nothing. */
 export function flaggedText(
   figures: StudyFigures,
   experiment: Pick<StudyExperiment, 'id'>,
-  entry: Pick<StudyPanelEntry, 'id'>
+  entry: Pick<StudyPanelEntry, 'id'>,
+  part: FlaggedPart = 'method'
 ): string | null {
-  const flags = figures.flagged(experiment.id, entry.id);
+  const flags = figures.flagged(experiment.id, entry.id, part);
   return flags && flagsText(flags);
 }
 

@@ -32,7 +32,7 @@ export function massBalanceOf(figures: StudyFigures, subject: Subject, link: Lin
             : [
                 {
                   ...rowOf(subject, experiment, entry, found, link),
-                  flagged: flaggedText(figures, experiment, entry)
+                  flagged: flaggedText(figures, experiment, entry, 'balance')
                 }
               ];
         })

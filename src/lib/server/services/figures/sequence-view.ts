@@ -110,9 +110,14 @@ function setView(
       fails: failures.length > 0
     }))
   }));
-  const drift = grouped(readings, ({ entryId }) => entryId).map(([id, own]): TraceView => ({
+  // A second source is another solution: what it reads is no step on the way from one continuing check to the next.
+  const kindOfCheck = new Map(figures.data.checkStandards.map(({ id, kind }) => [id, kind]));
+  const drift = grouped(
+    readings,
+    ({ entryId, checkStandardId }) => `${entryId} ${kindOfCheck.get(checkStandardId) ?? ''}`
+  ).map(([id, own]): TraceView => ({
     id,
-    name: nameOf(id),
+    name: nameOf(own[0]?.entryId ?? ''),
     points: own.map(({ injectionId, percent, state }) => ({
       place: places.get(injectionId) ?? 0,
       percent,
@@ -223,7 +228,7 @@ function flagViews(
   for (const { id } of run.injections) {
     for (const own of flags.get(id)?.values() ?? []) {
       for (const flag of own) {
-        const key = `${flag.cause} ${flag.text} ${flag.cause === 'internal standard' ? id : ''}`;
+        const key = `${flag.cause} ${flag.injectionId} ${flag.cause === 'internal standard' ? flag.text : flag.entryId}`;
         const known = reasons.get(key) ?? { flag, ids: new Set<string>() };
         reasons.set(key, known);
         known.ids.add(id);
@@ -231,7 +236,8 @@ function flagViews(
     }
   }
   return [...reasons.values()].map(({ flag, ids }) => ({
-    text: sentence(ids.size === 1 ? flag.text : flag.text.replace(/ (before|after) it,/, ' $1 them,')),
+    // Which side it lies on is told by the places.
+    text: sentence(flag.text.replace(/ (?:before|after) it, ([^,]+),/, ' $1')),
     rule: ruleView(flag.rule),
     places: [...ids].map((id) => places.get(id) ?? 0),
     labels: [...ids].map((id) => names.of(id))

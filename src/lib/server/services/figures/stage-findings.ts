@@ -115,7 +115,7 @@ function flaggedNotes(figures: StudyFigures, context: VariantContext): string[] 
     const experiment = stage.evidence?.amounts.experiment;
     if (!experiment) return [];
     const names = figures.targets
-      .filter((entry) => figures.flagged(experiment.id, entry.id) !== null)
+      .filter((entry) => figures.flagged(experiment.id, entry.id, 'method') !== null)
       .map(({ name }) => name);
     if (names.length === 0) return [];
     const which = names.length > 6 ? `${names.length} analytes` : listed(names);

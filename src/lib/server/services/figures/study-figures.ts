@@ -1,5 +1,11 @@
 import { amountsOf, type ExperimentAmounts } from '../../amounts/experiment-amounts';
-import { flagsOfNumbers, numbersOf, numbersOfRecovery, type FigureFlags } from '../../amounts/figure-flags';
+import {
+  flagsOfNumbers,
+  numbersOf,
+  numbersOfRecovery,
+  type FigureFlags,
+  type FlaggedPart
+} from '../../amounts/figure-flags';
 import { matrixFigures, type MatrixFigures } from '../../amounts/matrix-effects';
 import { methodFigures, type MethodFigures } from '../../amounts/method-figures';
 import { recoveryInput, type RecoveryRefusal } from '../../amounts/recovery-input';
@@ -41,8 +47,8 @@ export interface StudyFigures {
   readonly matrix: (experimentId: string, entryId: string) => MatrixFigures | null;
   /** What was run to watch over the instrument, and what is flagged by it. */
   readonly checks: () => SequenceChecks;
-  /** What the recovery of an entry rests on that is flagged; null: nothing. */
-  readonly flagged: (experimentId: string, entryId: string) => FigureFlags | null;
+  /** What the method recovery of an entry, or its balance, rests on that is flagged; null: nothing. */
+  readonly flagged: (experimentId: string, entryId: string, part: FlaggedPart) => FigureFlags | null;
   /** The same of a surrogate, over all portions that received it. */
   readonly flaggedSurrogate: (experimentId: string, entryId: string) => FigureFlags | null;
 }
@@ -96,15 +102,19 @@ export function studyFigures(data: StudyData): StudyFigures {
     })
   );
 
-  const flagged = perEntry((of, item) => {
-    const found = entry(of.experiment.id, item.id);
-    const numbers = found.ready ? numbersOfRecovery(found) : found.portions.flatMap(numbersOf);
-    return flagsOfNumbers(numbers, item.id, checks(''));
-  });
+  const flaggedIn = (part: FlaggedPart) =>
+    perEntry((of, item) => {
+      const found = entry(of.experiment.id, item.id);
+      const numbers = found.ready
+        ? numbersOfRecovery(found, part)
+        : found.portions.flatMap((portion) => numbersOf(portion, part));
+      return flagsOfNumbers(numbers, item.id, checks(''));
+    });
+  const flagged = { method: flaggedIn('method'), balance: flaggedIn('balance') };
   const surrogate = perEntry((of, item) => surrogateFigures(of, item, surrogateRule));
   const flaggedSurrogate = perEntry((of, item) =>
     flagsOfNumbers(
-      surrogate(of.experiment.id, item.id).portions.flatMap(({ portion }) => numbersOf(portion)),
+      surrogate(of.experiment.id, item.id).portions.flatMap(({ portion }) => numbersOf(portion, 'method')),
       item.id,
       checks('')
     )
@@ -140,7 +150,7 @@ export function studyFigures(data: StudyData): StudyFigures {
     surrogate,
     matrix: perEntry((of, item) => matrixFigures(of, item)),
     checks: () => checks(''),
-    flagged,
+    flagged: (experimentId, entryId, part) => flagged[part](experimentId, entryId),
     flaggedSurrogate
   };
 }
