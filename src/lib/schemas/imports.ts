@@ -25,7 +25,12 @@ export const storeForm = z.object({
     .string()
     .default('')
     .transform((value) => value === 'confirmed'),
-  reason: z.string().max(1000, 'Keep the reason under 1,000 characters.').default('')
+  reason: z.string().max(1000, 'Keep the reason under 1,000 characters.').default(''),
+  /** Ids of imports whose place the file takes as a whole. */
+  supersedes: z
+    .union([z.string(), z.array(z.string())])
+    .default([])
+    .transform((ids) => (typeof ids === 'string' ? [ids] : ids))
 });
 
 export const withdrawForm = z.object({

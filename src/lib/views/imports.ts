@@ -154,6 +154,35 @@ export interface RecordView {
   readonly applied: string;
 }
 
+/** One value of a difference, and the cell it stands in. */
+export interface DifferenceValue {
+  readonly state: MeasurementState;
+  readonly reported: number | null;
+  readonly limit: number | null;
+  readonly internalArea: number | null;
+  readonly injection: number;
+  readonly where: string;
+}
+
+/** What a file would change of the values that count now. */
+export interface DifferenceView {
+  readonly changed: number;
+  readonly added: number;
+  /** Values of the files it covers for which it holds nothing: they go on counting unless those files are superseded. */
+  readonly gone: number;
+  readonly same: number;
+  /** The files whose values it covers. */
+  readonly files: readonly { readonly id: string; readonly fileName: string }[];
+  /** Changed ones first, then gone, then added; the first few hundred. */
+  readonly rows: readonly {
+    readonly kind: 'changed' | 'added' | 'gone';
+    readonly place: string;
+    readonly analyte: string;
+    readonly before: readonly DifferenceValue[];
+    readonly after: readonly DifferenceValue[];
+  }[];
+}
+
 /** What a received file will become, beside the sheet as it is. */
 export interface ImportPreviewView {
   readonly id: string;
@@ -186,6 +215,8 @@ export interface ImportPreviewView {
   /** Values of earlier imports that these will cover. */
   readonly coveredCount: number;
   readonly coveredFiles: readonly string[];
+  /** Against what counts now; null where nothing is covered. */
+  readonly difference: DifferenceView | null;
   /** Things to know that no cell is to blame for. */
   readonly remarks: readonly string[];
 }

@@ -301,3 +301,77 @@ describe('a copy to mend', () => {
     expect(copy?.getCell('D2').note).toBeUndefined();
   });
 });
+
+describe('a corrected file', () => {
+  const first: readonly Row[] = [
+    ['Sample', 'Fraction', 'Analyte', 'Amount (ng)'],
+    ['S1', 'Elution', 'Alpha', 90],
+    ['S2', 'Elution', 'Alpha', 91],
+    ['S3', 'Elution', 'Alpha', 92],
+    ['S1', 'Elution', 'Beta', 50]
+  ];
+  const corrected: readonly Row[] = [
+    ['Sample', 'Fraction', 'Analyte', 'Amount (ng)'],
+    ['S1', 'Elution', 'Alpha', 90],
+    ['S2', 'Elution', 'Alpha', 95],
+    ['S4', 'Elution', 'Alpha', 93]
+  ];
+
+  it('is shown as a difference against what counts', async () => {
+    await store(await receive(first));
+    const { difference } = await preview(await receive(corrected, 'corrected.csv'));
+    expect(difference).toMatchObject({
+      changed: 1,
+      added: 1,
+      gone: 2,
+      same: 1,
+      files: [{ fileName: 'run.csv' }]
+    });
+    expect(
+      difference?.rows.map(({ kind, place, analyte, before, after }) => [
+        kind,
+        place,
+        analyte,
+        before.map(({ reported }) => reported),
+        after.map(({ reported }) => reported)
+      ])
+    ).toEqual([
+      ['changed', 'S2, Elution', 'Alpha', [91], [95]],
+      ['gone', 'S3, Elution', 'Alpha', [92], []],
+      ['gone', 'S1, Elution', 'Beta', [50], []],
+      ['added', 'S4, Elution', 'Alpha', [], [93]]
+    ]);
+    expect(difference?.rows[0]?.before[0]?.where).toBe('run.csv, D3');
+  });
+
+  it('leaves what it holds nothing for counting, unless it takes the place of the file as a whole', async () => {
+    const old = await receive(first);
+    await store(old);
+    await store(await receive(corrected, 'corrected.csv'));
+    expect((await bench.result(number, 'Alpha')).n).toBe(4);
+    const whole = await receive([...corrected, ['S5', 'Elution', 'Alpha', 94]], 'whole.csv');
+    await expect(
+      storeImport(bench.actor, bench.code, whole, { questionsConfirmed: true, reason: '', supersedes: [old] })
+    ).rejects.toBeInstanceOf(Invalid);
+    await storeImport(bench.actor, bench.code, whole, {
+      questionsConfirmed: true,
+      reason: 'integrated again',
+      supersedes: [old]
+    });
+    // By hand: S1, S2, S4 and S5 count; S3 stood in the superseded file alone.
+    expect((await bench.result(number, 'Alpha')).mean).toBeCloseTo((90 + 95 + 93 + 94) / 4, 12);
+    expect((await bench.result(number, 'Beta')).n ?? 0).toBe(0);
+  });
+
+  it("does not take the place of somebody else's file for an analyst", async () => {
+    const old = await receive(first);
+    await store(old);
+    const lab = await Lab.findByPk(bench.actor.labId);
+    if (!lab) throw new Error('the bench has no lab');
+    const analyst = await makeMember({ role: 'analyst', lab });
+    const id = await receive(corrected, 'corrected.csv');
+    const input = { questionsConfirmed: true, reason: 'integrated again', supersedes: [old] };
+    await expect(storeImport(analyst, bench.code, id, input)).rejects.toBeInstanceOf(Forbidden);
+    expect((await bench.result(number, 'Alpha')).n).toBe(3);
+  });
+});

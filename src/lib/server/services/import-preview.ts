@@ -17,6 +17,7 @@ import { rowCells } from '../imports/sheet';
 import type { Expectation, MappedImport, MappedRecord, Sheet, Workbook } from '../imports/types';
 import { fileMapView, tableMapView } from './import-map-view';
 import { coveredPlaces } from './import-coverage';
+import { importDifference } from './import-difference';
 import { declaredOf } from './import-expectation';
 import { readKeptFile } from './import-reading';
 import { importOfStudy } from './imports';
@@ -80,6 +81,7 @@ export async function previewImport(
     questionCount: count('question'),
     coveredCount: covered.count,
     coveredFiles: covered.fileNames,
+    difference: covered.count > 0 ? await importDifference(study, mapped.records, expectation) : null,
     remarks: await remarksOn(study, mapped.records)
   };
 }
@@ -117,6 +119,7 @@ async function frameOf(study: Study, kept: Import): Promise<ImportPreviewView> {
     questionCount: 0,
     coveredCount: 0,
     coveredFiles: [],
+    difference: null,
     remarks: []
   };
 }

@@ -19,7 +19,7 @@ import { coveredPlaces } from './import-coverage';
 import { declaredOf, loadExpectation } from './import-expectation';
 import { readKeptFile, type FileRead } from './import-reading';
 import { createSequences, injectionKind } from './import-sequences';
-import { importOfStudy } from './imports';
+import { importOfStudy, requireMayWithdraw } from './imports';
 import { require } from './permissions';
 import { studyOf } from './study-of';
 
@@ -35,13 +35,18 @@ export interface StoredImport {
  * @param input.questionsConfirmed the person read the open questions and takes the values as they stand; a program says it
  *   of each code
  * @param input.reason why values that are on record are covered; needed when any are
+ * @param input.supersedes imports whose place this file takes as a whole: what it holds nothing for stops counting too
  * @throws Invalid naming every problem with sheet and cell; Conflict when it is not waiting, or the study changed meanwhile
  */
 export async function storeImport(
   actor: Actor,
   studyCode: string,
   importId: string,
-  input: Readonly<{ questionsConfirmed: boolean | ((code: string) => boolean); reason: string }>
+  input: Readonly<{
+    questionsConfirmed: boolean | ((code: string) => boolean);
+    reason: string;
+    supersedes?: readonly string[];
+  }>
 ): Promise<StoredImport> {
   require(actor, 'data.enter');
   const study = await studyOf(actor, studyCode);
@@ -80,6 +85,7 @@ export async function storeImport(
     await copyMeasurements(rows);
     await copyQualifiers(qualifiers);
     await markStored(actor, study, locked, reading, reason);
+    for (const other of input.supersedes ?? []) await supersede(actor, study, { by: locked, other, reason });
 
     const numbers = await experimentNumbers(study, mapped.records);
     audit({
@@ -305,6 +311,42 @@ async function markStored(
       ]
     }
   );
+}
+
+/** A file that another takes the place of stops counting as a whole; it stays on record with the reason. */
+async function supersede(
+  actor: Actor,
+  study: Study,
+  { by, other, reason }: Readonly<{ by: Import; other: string; reason: string }>
+): Promise<void> {
+  const found = await importOfStudy(actor, study, other);
+  requireMayWithdraw(actor, found);
+  if (reason.length < 3) {
+    throw Invalid.at(
+      'reason',
+      `Say why ${found.fileName} is superseded. It stays on record with your name.`,
+      {
+        expected: 'a few words'
+      }
+    );
+  }
+  const [changed] = await Import.update(
+    { state: 'superseded', endedBy: actor.userId, endedAt: new Date(), endReason: reason },
+    { where: { id: found.id, labId: actor.labId, state: 'stored' } }
+  );
+  if (changed === 0 || found.id === by.id)
+    throw new Conflict(`${found.fileName} does not count any more, so it cannot be superseded.`);
+  await Import.update({ supersedesId: found.id }, { where: { id: by.id, labId: actor.labId } });
+  audit({
+    action: 'superseded',
+    entity: 'import',
+    entityId: found.id,
+    studyId: study.id,
+    sentence: `${by.fileName} took the place of ${found.fileName} as a whole.`,
+    before: { state: 'stored' },
+    after: { state: 'superseded', by: by.id },
+    reason
+  });
 }
 
 async function experimentNumbers(study: Study, records: readonly MappedRecord[]): Promise<number[]> {

@@ -199,6 +199,15 @@ export async function dropImport(actor: Actor, studyCode: string, importId: stri
   });
 }
 
+/** @throws Forbidden for somebody else's import without the right to end it */
+export function requireMayWithdraw(actor: Actor, stored: Pick<Import, 'storedBy'>): void {
+  if (stored.storedBy !== actor.userId && !isAllowed(actor.role, 'imports.withdraw-any')) {
+    throw new Forbidden(
+      'An analyst withdraws their own imports. Ask a chemist or a lab manager for this one.'
+    );
+  }
+}
+
 /**
  * Withdraws a stored import as a whole: its values stop counting, and those that it had covered count again.
  * @throws Invalid without a reason; Forbidden for somebody else's import without the right to; Conflict
@@ -212,11 +221,7 @@ export async function withdrawImport(
   require(actor, 'imports.withdraw-own');
   const study = await studyOf(actor, studyCode);
   const found = await importOfStudy(actor, study, importId);
-  if (found.storedBy !== actor.userId && !isAllowed(actor.role, 'imports.withdraw-any')) {
-    throw new Forbidden(
-      'An analyst withdraws their own imports. Ask a chemist or a lab manager for this one.'
-    );
-  }
+  requireMayWithdraw(actor, found);
   const cause = reason.trim();
   if (cause.length < 3) {
     throw Invalid.at('reason', 'Say why this import is withdrawn. It stays on record with your name.', {

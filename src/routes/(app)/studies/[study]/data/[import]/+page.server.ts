@@ -10,6 +10,7 @@ import {
   tableForm,
   unmendForm
 } from '$lib/schemas/import-mapping';
+import { formObject } from '$lib/schemas/form-object';
 import { declareForm, previewQuery, storeForm, withdrawForm } from '$lib/schemas/imports';
 import { answerForm, checked } from '$lib/server/form-answer';
 import { memberIn } from '$lib/server/hooks/member-in';
@@ -121,11 +122,12 @@ export const actions: Actions = {
     }),
 
   store: ({ locals, params, request }) =>
-    answerForm(request, async (fields) => {
-      const { questions, reason } = checked(storeForm, fields);
+    answerForm(request, async (_fields, form) => {
+      const { questions, reason, supersedes } = checked(storeForm, formObject(form));
       await storeImport(memberIn(locals), params.study, params.import, {
         questionsConfirmed: questions,
-        reason
+        reason,
+        supersedes
       });
       redirect(303, `${address(params)}?stored=1`);
     }),
