@@ -1,5 +1,6 @@
 import type { PortionsView, ResultsTableView, RuleView, StageFindings } from './findings';
 import type { MassBalanceView } from './mass-balance';
+import type { ValidationView } from './validation';
 import type { WalkBackView } from './walk-back';
 
 export interface SummaryExperiment {
@@ -133,6 +134,7 @@ export interface SummaryView {
     readonly experiments: readonly SummaryExperiment[];
   }[];
   readonly findings: readonly SummaryFindings[];
+  readonly validation: ValidationView;
   readonly calibrations: readonly SummaryCalibration[];
   readonly exclusions: readonly SummaryExclusion[];
   readonly imports: readonly SummaryImport[];

@@ -1,6 +1,7 @@
 import { decimalsBeside } from '../../domain/figure-text';
 import type { SummaryFindings, SummaryView } from '../../views/summary';
 import type { ReportCell, ReportColumn } from './sheet-writer';
+import { validationEvidenceSheet, validationFiguresSheet } from './validation-sheets';
 
 /** One sheet of the validation workbook. */
 export interface ReportSheet {
@@ -26,6 +27,8 @@ export function summarySheets(view: SummaryView, origin: string): ReportSheet[] 
     lossesSheet(view),
     surrogatesSheet(view),
     blanksSheet(view),
+    validationEvidenceSheet(view.validation, origin),
+    validationFiguresSheet(view.validation),
     calibrationSheet(view),
     exclusionsSheet(view, origin),
     importsSheet(view, origin)

@@ -149,7 +149,7 @@ function conditionsOf(base: Base, notAbove: readonly Preparation[]): Condition[]
       ? []
       : [
           {
-            what: `spike within ${spikeLow} to ${spikeHigh} times the limit`,
+            what: `spike ${spikeLow} to ${spikeHigh} times the limit`,
             found: `${Number(ratio.toPrecision(3))} times`,
             holds: ratio >= spikeLow && ratio <= spikeHigh
           }

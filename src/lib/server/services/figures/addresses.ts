@@ -21,6 +21,13 @@ export type FigureAddress =
       /** 'whole' for what hangs on no fraction. */
       readonly fraction: string;
     }
+  /** A figure of the validation; variant '-' for all. */
+  | {
+      readonly kind: 'demonstration' | 'confirmation' | 'detection' | 'precision' | 'blanks' | 'control';
+      readonly variant: string;
+      readonly entry: string;
+    }
+  | { readonly kind: 'duplicate'; readonly pair: string; readonly entry: string }
   | { readonly kind: 'loss'; readonly variant: string; readonly stage: string; readonly entry: string }
   | { readonly kind: 'open'; readonly variant: string; readonly entry: string };
 
@@ -37,7 +44,15 @@ export function addressText(address: FigureAddress): string {
     case 'loss':
       return [address.kind, address.variant, address.stage, address.entry].join(':');
     case 'open':
+    case 'demonstration':
+    case 'confirmation':
+    case 'detection':
+    case 'precision':
+    case 'blanks':
+    case 'control':
       return [address.kind, address.variant, address.entry].join(':');
+    case 'duplicate':
+      return [address.kind, address.pair, address.entry].join(':');
     default:
       return [address.kind, address.experiment, address.entry].join(':');
   }
@@ -49,7 +64,11 @@ const patterns = {
   fraction: new RegExp(`^fraction:(\\d{1,6}):(${uuid}):(${uuid}|whole)$`),
   amount: new RegExp(`^amount:(\\d{1,6}):(${uuid}):(${uuid}):(${uuid}|whole)$`),
   loss: new RegExp(`^loss:([A-Za-z0-9]{1,8}):([a-z][a-z0-9-]{0,39}):(${uuid})$`),
-  open: new RegExp(`^open:([A-Za-z0-9]{1,8}):(${uuid})$`)
+  open: new RegExp(`^open:([A-Za-z0-9]{1,8}):(${uuid})$`),
+  validation: new RegExp(
+    `^(demonstration|confirmation|detection|precision|blanks|control):([A-Za-z0-9]{1,8}|-):(${uuid})$`
+  ),
+  duplicate: new RegExp(`^duplicate:(${uuid}):(${uuid})$`)
 };
 
 /** @throws Invalid for a text that is no address of a figure */
@@ -77,5 +96,13 @@ export function parseAddress(text: string): FigureAddress {
   if (loss) return { kind: 'loss', variant: loss[1] ?? '', stage: loss[2] ?? '', entry: loss[3] ?? '' };
   const open = patterns.open.exec(text);
   if (open) return { kind: 'open', variant: open[1] ?? '', entry: open[2] ?? '' };
+  const validation = patterns.validation.exec(text);
+  if (validation) {
+    const kind = validation[1] as
+      'demonstration' | 'confirmation' | 'detection' | 'precision' | 'blanks' | 'control';
+    return { kind, variant: validation[2] ?? '', entry: validation[3] ?? '' };
+  }
+  const duplicate = patterns.duplicate.exec(text);
+  if (duplicate) return { kind: 'duplicate', pair: duplicate[1] ?? '', entry: duplicate[2] ?? '' };
   throw Invalid.at('figure', 'This is not the address of a figure.', { found: text.slice(0, 120) });
 }

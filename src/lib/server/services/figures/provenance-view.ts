@@ -6,6 +6,7 @@ import { calibrationProvenance } from './provenance/calibration';
 import { matrixProvenance, relativeProvenance, surrogateProvenance } from './provenance/portions';
 import { fractionProvenance, recoveryProvenance } from './provenance/recovery';
 import { lossProvenance, openProvenance } from './provenance/stages';
+import { duplicateProvenance, validationProvenance } from './provenance/validation';
 import type { StudyFigures } from './study-figures';
 import { experimentByNumber, variantByCode } from './subject';
 
@@ -16,6 +17,17 @@ import { experimentByNumber, variantByCode } from './subject';
 export function provenanceOf(figures: StudyFigures, address: FigureAddress, link: Link): ProvenanceView {
   const entry = figures.entries.get(address.entry);
   if (!entry) throw new NotFound();
+  switch (address.kind) {
+    case 'demonstration':
+    case 'confirmation':
+    case 'detection':
+    case 'precision':
+    case 'blanks':
+    case 'control':
+      return validationProvenance(figures, address, entry, link);
+    case 'duplicate':
+      return orNotFound(duplicateProvenance(figures, address.pair, entry, link));
+  }
   if (address.kind === 'loss' || address.kind === 'open') {
     const context = figures.variant(variantByCode(figures, address.variant));
     const view =

@@ -11,6 +11,7 @@ import { resultsTableOf } from '../figures/results-table-view';
 import { stageFindingsOf } from '../figures/stage-findings';
 import type { StudyFigures } from '../figures/study-figures';
 import { subjectOf, subjectView } from '../figures/subject';
+import { usualVariant, validationOf } from '../figures/validation/validation-view';
 import { walkBackOf } from '../figures/walk-back-view';
 import { lookAtOf } from './look-at';
 import { analyteView, stageViews, variantView } from './plan-parts';
@@ -49,6 +50,7 @@ export function summaryOf(figures: StudyFigures, lab: SummaryView['lab'], link: 
     variants: data.variants.map((variant) => variantView(figures, variant)),
     stages,
     findings,
+    validation: validationOf(figures, usualVariant(figures), link),
     calibrations: data.calibrationSets.map((set) => calibrationView(figures, set, link)),
     exclusions,
     imports,
