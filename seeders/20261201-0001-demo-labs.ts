@@ -4,6 +4,7 @@ import { demoAccounts, demoLabName, secondLabName } from './demo-accounts';
 import { createDemoLab } from './demo/labs';
 import { seedSecondLab } from './demo/second-lab';
 import { seedLargeStudy } from './demo/seed-large-study';
+import { seedLowLevelStudy } from './demo/seed-low-level-study';
 import { seedDemoStudy } from './demo/study';
 
 /** The two demo labs with their people and invented studies: all of it or nothing, so that an interrupted start can begin anew. */
@@ -13,6 +14,7 @@ export async function up(): Promise<void> {
     if (first && (await User.count({ where: { email: first.email } })) > 0) return;
     const lab = await createDemoLab(demoLabName);
     await seedDemoStudy(lab);
+    await seedLowLevelStudy(lab);
     await seedLargeStudy(lab);
     await seedSecondLab(await createDemoLab(secondLabName));
   });
