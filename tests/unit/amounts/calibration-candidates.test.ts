@@ -13,6 +13,7 @@ function reported(levelId: string, value: number, index: number): LevelReported 
   return {
     id: String(index),
     importId: 'import',
+    injectionId: 'injection',
     entryId: 'one',
     levelId,
     basis: 'area',

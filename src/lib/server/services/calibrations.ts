@@ -28,6 +28,7 @@ async function itemsOf(study: Study): Promise<readonly CalibrationSetItem[]> {
         (SELECT count(DISTINCT k.panel_entry_id)::int FROM calibration_levels l
           JOIN calibration_level_concentrations k ON k.level_id = l.id WHERE l.calibration_set_id = c.id) AS entries,
         (SELECT count(*)::int FROM measurements m JOIN imports i ON i.id = m.import_id AND i.state = 'stored'
+            JOIN injections j ON j.id = m.injection_id AND j.kind = 'level'
           WHERE m.calibration_set_id = c.id) AS values,
         ARRAY(SELECT e.number FROM experiments e WHERE e.calibration_set_id = c.id ORDER BY e.number) AS experiments
       FROM calibration_sets c WHERE c.lab_id = $1 AND c.study_id = $2 ORDER BY c.calibrated_on, c.created_at`,
