@@ -1,4 +1,5 @@
 import { percentText } from '$lib/domain/figure-text';
+import { phFrom, phUpTo } from '$lib/domain/ph-text';
 import type { ChargeView, PanelChemistryRow, PhRangeView } from '$lib/views/panel-chemistry';
 
 /** Shares at which the groups part: what is rounded never crosses them. */
@@ -35,10 +36,6 @@ const chargeWords: Readonly<Record<ChargeView, string>> = {
 };
 export const chargeWord = (charge: ChargeView): string => chargeWords[charge];
 
-// Rounded inwards, so that a range never promises more than was computed.
-const down = (ph: number): number => Math.floor(ph * 10 + 1e-9) / 10;
-const up = (ph: number): number => Math.ceil(ph * 10 - 1e-9) / 10;
-
 /** Ranges of the axis in words: "below 2.9", "5 to 7.4, above 11", with `unit` "below pH 2.9"; null for none. */
 export function rangesText(ranges: readonly PhRangeView[], unit: '' | 'pH ' = ''): string | null {
   if (ranges.length === 0) return null;
@@ -47,9 +44,9 @@ export function rangesText(ranges: readonly PhRangeView[], unit: '' | 'pH ' = ''
       if (low <= 0 && high >= 14) return 'at any pH';
       // A range that leaves the axis at once has no tenth to be rounded to.
       if (high < 0.1 || low > 13.9) return high < 0.1 ? `about ${unit}0` : `about ${unit}14`;
-      if (low <= 0) return `below ${unit}${down(high)}`;
-      if (high >= 14) return `above ${unit}${up(low)}`;
-      const [first, last] = [up(low), down(high)];
+      if (low <= 0) return `below ${unit}${phUpTo(high)}`;
+      if (high >= 14) return `above ${unit}${phFrom(low)}`;
+      const [first, last] = [phFrom(low), phUpTo(high)];
       return first > last ? `about ${unit}${((low + high) / 2).toFixed(2)}` : `${unit}${first} to ${last}`;
     })
     .join(', ');

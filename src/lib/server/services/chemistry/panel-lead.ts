@@ -1,8 +1,6 @@
+import { phFrom, phUpTo } from '../../../domain/ph-text';
 import type { PanelChemistryRow, PhRangeView } from '../../../views/panel-chemistry';
 import { listed } from '../changes';
-
-const down = (ph: number): number => Math.floor(ph * 10 + 1e-9) / 10;
-const up = (ph: number): number => Math.ceil(ph * 10 - 1e-9) / 10;
 
 /** True for an analyte of which at least 99 % is neutral at the chosen pH. */
 export const isNeutral = ({ neutral }: PanelChemistryRow): boolean => neutral !== null && neutral >= 0.99;
@@ -14,12 +12,12 @@ function elsewhere(ranges: readonly PhRangeView[]): readonly (readonly [number, 
   const between = ranges.filter(({ low, high }) => low > 0 && high < 14);
   const [only] = between;
   return [
-    [below.length, `below pH ${down(Math.min(...below.map(({ high }) => high)))}`] as const,
-    [above.length, `above pH ${up(Math.max(...above.map(({ low }) => low)))}`] as const,
+    [below.length, `below pH ${phUpTo(Math.min(...below.map(({ high }) => high)))}`] as const,
+    [above.length, `above pH ${phFrom(Math.max(...above.map(({ low }) => low)))}`] as const,
     [
       between.length,
       between.length === 1 && only
-        ? `from pH ${up(only.low)} to ${down(only.high)}`
+        ? `from pH ${phFrom(only.low)} to ${phUpTo(only.high)}`
         : 'between two pH values of their own'
     ] as const
   ].filter(([count]) => count > 0);
