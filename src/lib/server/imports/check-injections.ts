@@ -17,7 +17,9 @@ interface CheckRows {
  * read, sample by sample and analyte by analyte; an analyte that then has fewer readings than its fellows leaves open where the gap is,
  * and that is a problem.
  *
- * @returns all drafts in their order; those of checks with `injection` counted through the file from 1
+ * A check whose cells are all empty was not run (templates have rows for each), and is passed over.
+ *
+ * @returns the drafts in their order; those of checks with `injection` counted through the file from 1
  */
 export function numberedChecks(
   drafts: readonly DraftRecord[],
@@ -40,11 +42,14 @@ export function numberedChecks(
     const runs = timed ? byTime(group) : byOccurrence(group, panel, problems);
     for (const [draft, run] of runs) runOf.set(draft, `${key} ${run}`);
   }
+  const filled = new Set<string>();
+  for (const [draft, run] of runOf) if (draft.state !== 'missing') filled.add(run);
   const numberOf = new Map<string, number>();
   const counted = new Map<string, number>();
-  return drafts.map((draft) => {
+  return drafts.flatMap((draft): readonly DraftRecord[] => {
     const run = runOf.get(draft);
-    if (run === undefined || draft.place.kind !== 'check') return draft;
+    if (run === undefined || draft.place.kind !== 'check') return [draft];
+    if (!filled.has(run)) return [];
     const { checkStandardId } = draft.place;
     let number = numberOf.get(run);
     if (number === undefined) {
@@ -52,7 +57,7 @@ export function numberedChecks(
       counted.set(checkStandardId, number);
       numberOf.set(run, number);
     }
-    return { ...draft, injection: number };
+    return [{ ...draft, injection: number }];
   });
 }
 

@@ -5,7 +5,7 @@ import { suggestPattern } from './label-reader';
 import { isSheetMap, recogniseLoosely, recogniseTable } from './recognise-table';
 import type { RecogniseContext, SheetMap } from './recognise-table';
 import { sectionsOf } from './sheet-sections';
-import { cellAt } from './sheet';
+import { cellAt, rowCells } from './sheet';
 import { markSheet, readMeSheet } from './template-mark';
 import { turnedSheet } from './turned-sheet';
 import type { Expectation, Sheet, Workbook } from './types';
@@ -120,21 +120,31 @@ export function labelsOf(workbook: Workbook, tables: readonly TableMap[]): reado
  * @returns null where no table of the saved map is in the file
  */
 export function applySavedMap(saved: ColumnMap, workbook: Workbook, recognised: ColumnMap): ColumnMap | null {
+  const sheets = new Map(readableSheets(workbook).map((sheet) => [sheet.name, sheet]));
+  const placedOf = (name: string): TableMap | null => {
+    const sheet = sheets.get(name);
+    return sheet
+      ? (saved.tables.map((table) => placedOn(sheet, table)).find((table) => table !== null) ?? null)
+      : null;
+  };
   let isKnown = false;
-  const tables = recognised.tables.map((table): TableMap => {
+  const tables: TableMap[] = [];
+  const placed = new Set<string>();
+  const place = (name: string): boolean => {
+    const table = placedOf(name);
+    if (table) tables.push(table);
+    if (table) placed.add(name);
+    return table !== null;
+  };
+  for (const table of recognised.tables) {
     const same = saved.tables.find(({ fingerprint }) => fingerprint === table.fingerprint);
-    if (!same) return table;
-    isKnown = true;
-    return withChoices(table, same);
-  });
-  const read = new Set(tables.flatMap(({ sheets }) => sheets));
-  for (const sheet of readableSheets(workbook)) {
-    if (read.has(sheet.name)) continue;
-    const placed = saved.tables.map((table) => placedOn(sheet, table)).find((table) => table !== null);
-    if (!placed) continue;
-    isKnown = true;
-    tables.push(placed);
+    const others = same ? table.sheets : table.sheets.filter((name) => !place(name));
+    if (others.length > 0) tables.push(same ? withChoices(table, same) : { ...table, sheets: others });
+    isKnown ||= same !== undefined;
   }
+  const read = new Set(recognised.tables.flatMap((table) => table.sheets));
+  for (const name of sheets.keys()) if (!read.has(name)) place(name);
+  isKnown ||= placed.size > 0;
   if (!isKnown) return null;
   const { samplePattern, isPatternConfirmed, matching, decimal, dateOrder, fixed } = saved;
   return {
@@ -148,6 +158,9 @@ export function applySavedMap(saved: ColumnMap, workbook: Workbook, recognised: 
     fixed
   };
 }
+
+/** How far down the header of a saved map is looked for. */
+const linesLookedAt = 200;
 
 /** What was chosen for a header holds for the same header, the second of a name for the second. */
 function withChoices(table: TableMap, saved: TableMap): TableMap {
@@ -176,18 +189,21 @@ function numbered(
   });
 }
 
-/** The saved table where all its headers stand in the same columns, on whatever line. */
+/** The saved table where its headers, and no others, stand in the same columns, on whatever line. */
 function placedOn(sheet: Sheet, saved: TableMap): TableMap | null {
   const view = saved.orientation === 'analytes down' ? turnedSheet(sheet) : sheet;
   const heads = saved.columns.filter(({ header }) => nameKey(header) !== '');
   if (!view || heads.length < 2) return null;
   const depth = saved.headerLines.length;
-  const row = view.rowNumbers.subarray(0, 200).find((each) =>
-    heads.every(({ column, header }) => {
-      const lower = cellAt(view, each, column)?.raw.trim() ?? '';
-      const upper = depth > 1 && each > 0 ? (cellAt(view, each - 1, column)?.raw.trim() ?? '') : '';
-      return [lower, upper, `${upper} ${lower}`].some((text) => nameKey(text) === nameKey(header));
-    })
+  const known = new Set(saved.columns.map(({ column }) => column));
+  const row = view.rowNumbers.subarray(0, linesLookedAt).find(
+    (each) =>
+      rowCells(view, each).every(({ column, cell }) => cell.kind !== 'text' || known.has(column)) &&
+      heads.every(({ column, header }) => {
+        const lower = cellAt(view, each, column)?.raw.trim() ?? '';
+        const upper = depth > 1 && each > 0 ? (cellAt(view, each - 1, column)?.raw.trim() ?? '') : '';
+        return [lower, upper, `${upper} ${lower}`].some((text) => nameKey(text) === nameKey(header));
+      })
   );
   if (row === undefined) return null;
   const headerLines = saved.headerLines.map((_, index) => row - (depth - 1) + index);

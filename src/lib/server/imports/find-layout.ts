@@ -74,7 +74,7 @@ export function isLayout(found: SheetLayout | PartialLayout): found is SheetLayo
 export function linesWithValue(sheet: Sheet, analytes: NameMatcher<string>): readonly SheetLayout[] {
   const read = cachedHeaders(analytes);
   return [...sheet.rowNumbers.subarray(0, rowsLookedAt)].flatMap((row) => {
-    const columns = singleLine(sheet, row, read);
+    const columns = hasNumbers(sheet, row) ? [] : singleLine(sheet, row, read);
     return columns.length > 1 && hasMeaning(columns, 'value') ? [layoutOf(sheet, [row], columns, read)] : [];
   });
 }

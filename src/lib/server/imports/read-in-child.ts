@@ -72,7 +72,7 @@ async function run(
   recogniseFile(Buffer.from(bytes.buffer, bytes.byteOffset, bytes.byteLength), limits);
   options.signal?.throwIfAborted();
   const { timeoutMs = defaults.timeoutMs, memoryMb = defaults.memoryMb } = options;
-  const child = startChild(memoryMb);
+  const { child, ready } = takePrepared(memoryMb) ?? startChild(memoryMb);
   return new Promise((resolve, reject) => {
     const collected = new Collected();
     let ended: { code: RefusalCode; message: string } | null = null;
@@ -96,10 +96,11 @@ async function run(
     options.signal?.addEventListener('abort', abort);
 
     child.on('message', (message: ChildMessage) => {
-      if (message.type === 'ready') {
-        const request: ChildRequest = { bytes, limits, expectation, maps };
-        child.send(request, (error) => error && end('failed', unforeseen));
-      } else collected.take(message);
+      if (message.type !== 'ready') collected.take(message);
+    });
+    void ready.then(() => {
+      const request: ChildRequest = { bytes, limits, expectation, maps };
+      child.send(request, (error) => error && end('failed', unforeseen));
     });
     child.on('error', () => end('failed', unforeseen));
     child.on('close', (code, signal) => {
@@ -125,10 +126,53 @@ function explainEnd(code: number | null, signal: NodeJS.Signals | null): Refusal
     : new Refusal('failed', unforeseen);
 }
 
-function startChild(memoryMb: number): ChildProcess {
+interface Started {
+  readonly child: ChildProcess;
+  /** Settles when the child waits for its file; never when it ended before. */
+  readonly ready: Promise<void>;
+}
+
+/** Started ahead of a file that is on its way; it has read nothing. */
+let prepared: (Started & { readonly expiry: NodeJS.Timeout }) | null = null;
+const preparedForMs = 30_000;
+
+/**
+ * Starts a reading process while a file is still being received, so that the file need not wait for it. One at most waits; it ends
+ * by itself when no file comes, and does not keep this process alive.
+ */
+export function prepareChild(): void {
+  if (prepared) return;
+  const started = startChild(defaults.memoryMb);
+  const { child } = started;
+  const expiry = setTimeout(() => child.kill('SIGKILL'), preparedForMs);
+  const own = { ...started, expiry };
+  prepared = own;
+  const forget = (): void => {
+    clearTimeout(expiry);
+    if (prepared === own) prepared = null;
+  };
+  child.once('error', forget);
+  child.once('exit', forget);
+  expiry.unref();
+  child.unref();
+  child.channel?.unref();
+}
+
+/** The prepared child, if there is one with this much memory, now kept alive until it has answered. */
+function takePrepared(memoryMb: number): Started | null {
+  if (!prepared || memoryMb !== defaults.memoryMb) return null;
+  const { child, ready, expiry } = prepared;
+  prepared = null;
+  clearTimeout(expiry);
+  child.ref();
+  child.channel?.ref();
+  return child.connected ? { child, ready } : null;
+}
+
+function startChild(memoryMb: number): Started {
   const root = projectRoot();
   const { file, loader } = entry(root);
-  return fork(file, [], {
+  const child = fork(file, [], {
     // Outside the project no compiler settings are looked for; the child's imports are relative.
     cwd: tmpdir(),
     // No configuration and no secrets: the child reads bytes and nothing else.
@@ -137,6 +181,12 @@ function startChild(memoryMb: number): ChildProcess {
     serialization: 'advanced',
     stdio: ['ignore', 'ignore', 'ignore', 'ipc']
   });
+  const ready = new Promise<void>((resolve) => {
+    child.on('message', (message: ChildMessage) => {
+      if (message.type === 'ready') resolve();
+    });
+  });
+  return { child, ready };
 }
 
 /** The built child beside the built server, which starts sooner; in development, tests and scripts the source. */

@@ -297,8 +297,9 @@ function withNamingColumn(
   for (let column = 0; column < Math.min(sheet.columnCount, rowsLookedAt); column++) {
     if ((headed.get(column)?.header.meaning ?? 'unknown') !== 'unknown') continue;
     const texts = textsBelow(sheet, row, column);
-    if (texts.length === 0 || !texts.every(names)) continue;
     const text = headed.get(column)?.text ?? '';
+    // A line that itself has such a name is one of results.
+    if (texts.length === 0 || !texts.every(names) || names(text)) continue;
     const found: HeaderColumn = { column, text, header: { meaning: what, unit: null } };
     return [...columns.filter((each) => each.column !== column), found].sort(
       (one, other) => one.column - other.column

@@ -26,7 +26,7 @@ const meanings: readonly (readonly [string, string])[] = [
 const columnNotes: readonly (readonly [string, string])[] = [
   [
     'Sample',
-    'The label of the replicate, or the name of a calibration level: add a row for each injection of a level.'
+    'The label of the replicate, or the name of a calibration level or check: add a row for each injection of one. A check whose row stays empty was not run.'
   ],
   ['Fraction', 'The name of the fraction; empty for standards.'],
   [

@@ -1,7 +1,7 @@
 import type ExcelJS from 'exceljs';
 import { markNames, markSheet, readMeSheet, templateVersion } from './template-mark';
 import { fillReadMe, templateFont } from './template-read-me';
-import type { Expectation, ExperimentExpectation, PanelExpectation } from './types';
+import type { CheckExpectation, Expectation, ExperimentExpectation, PanelExpectation } from './types';
 
 export interface TemplateOptions {
   /** Shown on every sheet of a lab whose data are invented; null for real labs. */
@@ -70,7 +70,7 @@ const preparationColumns: readonly Column[] = [
 
 /**
  * The data template of one experiment: a row for every sample, fraction and analyte (long), or for every sample and
- * fraction with a column for each analyte (wide), to be filled with peak areas. It carries the experiment's id, by which its import
+ * fraction with a column for each analyte (wide), to be filled with peak areas, between the checks of its calibration set. It carries the experiment's id, by which its import
  * recognises it.
  *
  * @throws RangeError when the expectation has no such experiment
@@ -92,8 +92,12 @@ export async function writeTemplate(
   results.addRow([
     'Fill in what was measured. The sheet “Read me” says what empty cells, ND, <x and >x mean.'
   ]);
+  const injected = runOf(
+    experiment,
+    expectation.calibrationSets.find(({ id }) => id === experiment.calibrationSetId)?.checks ?? []
+  );
   const { columns, rows } =
-    layout === 'long' ? longTable(experiment, expectation.panel) : wideTable(experiment, expectation.panel);
+    layout === 'long' ? longTable(injected, expectation.panel) : wideTable(injected, expectation.panel);
   addTable(results, columns, rows);
   fillReadMe(workbook.addWorksheet(readMeSheet), { experiment, panel: expectation.panel, layout, demoLabel });
   addMark(workbook, experimentId, layout);
@@ -121,7 +125,23 @@ function extractsOf(experiment: ExperimentExpectation): readonly ExtractRow[] {
   );
 }
 
-function longTable(experiment: ExperimentExpectation, panel: readonly PanelExpectation[]): Table {
+/** The extracts between the checks that are on record: all of them before, the continuing ones after as well. */
+function runOf(
+  experiment: ExperimentExpectation,
+  checks: readonly CheckExpectation[]
+): readonly ExtractRow[] {
+  const rowsOf = (...kinds: readonly CheckExpectation['kind'][]): readonly ExtractRow[] =>
+    kinds.flatMap((kind) =>
+      checks.filter((check) => check.kind === kind).map(({ name }) => ({ sample: name, fraction: null }))
+    );
+  return [
+    ...rowsOf('second source', 'instrument blank', 'continuing'),
+    ...extractsOf(experiment),
+    ...rowsOf('continuing')
+  ];
+}
+
+function longTable(injected: readonly ExtractRow[], panel: readonly PanelExpectation[]): Table {
   const names = new Map(panel.map(({ id, name }) => [id, name]));
   // Standards that are added for the instrument have their area beside each analyte they calibrate.
   const entries = panel.filter(({ role }) => role !== 'injection internal standard');
@@ -135,7 +155,7 @@ function longTable(experiment: ExperimentExpectation, panel: readonly PanelExpec
       { header: 'Internal standard area', width: 20 },
       ...preparationColumns
     ],
-    rows: extractsOf(experiment).flatMap(({ sample, fraction }) =>
+    rows: injected.flatMap(({ sample, fraction }) =>
       entries.map(({ name, internalStandard }): Row => [
         sample,
         fraction,
@@ -153,7 +173,7 @@ function longTable(experiment: ExperimentExpectation, panel: readonly PanelExpec
   };
 }
 
-function wideTable(experiment: ExperimentExpectation, panel: readonly PanelExpectation[]): Table {
+function wideTable(injected: readonly ExtractRow[], panel: readonly PanelExpectation[]): Table {
   return {
     columns: [
       { header: 'Sample', width: 18 },
@@ -161,15 +181,7 @@ function wideTable(experiment: ExperimentExpectation, panel: readonly PanelExpec
       ...preparationColumns,
       ...panel.map(({ name }) => ({ header: `${name} area`, width: Math.max(14, name.length + 6) }))
     ],
-    rows: extractsOf(experiment).map(({ sample, fraction }): Row => [
-      sample,
-      fraction,
-      null,
-      null,
-      null,
-      1,
-      null
-    ])
+    rows: injected.map(({ sample, fraction }): Row => [sample, fraction, null, null, null, 1, null])
   };
 }
 
