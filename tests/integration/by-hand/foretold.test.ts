@@ -307,6 +307,7 @@ describe('levels that are changed after they were described', () => {
       after: '40'
     });
     // Who opened the page before is told.
+    await expect(look(typed)).rejects.toBeInstanceOf(Conflict);
     await expect(store(typed, moves.token)).rejects.toBeInstanceOf(Conflict);
   });
 

@@ -200,6 +200,14 @@ async function takenIn(study: Study, set: StudyCalibrationSet): Promise<Taken> {
   return { injections, checkLabels: new Set(checks.map(({ label }) => label)) };
 }
 
+/** @throws NotFound, Conflict where somebody changed its levels since */
+async function unchangedSet(study: Study, setId: string, seenVersion: number): Promise<CalibrationSet> {
+  const row = await CalibrationSet.findOne({ where: { ...studyKeys(study), id: knownId(setId) } });
+  if (!row) throw new NotFound();
+  requireUnchanged(`the levels of ${row.name}`, seenVersion, row.version, null);
+  return row;
+}
+
 /**
  * What the study's figures would be with other levels: nothing is stored.
  * @throws NotFound, Invalid, Conflict when somebody changed the levels meanwhile
@@ -212,6 +220,7 @@ export async function proposeLevels(
 ): Promise<ProposedLevelsView> {
   require(actor, 'calibrations.choose');
   const study = await studyOf(actor, code);
+  await unchangedSet(study, setId, form.seenVersion);
   const figures = await figuresOfStudy(actor.labId, code);
   const set = setOf(figures.data, setId);
   const change = changeOf(figures.data, set, form, await takenIn(study, set));
@@ -243,9 +252,7 @@ export async function changeLevels(
   const seen = await studyOf(actor, code);
   return inTransaction(actor, { study: seen.id }, async () => {
     const study = await studyOf(actor, code, { locked: true });
-    const row = await CalibrationSet.findOne({ where: { ...studyKeys(study), id: knownId(setId) } });
-    if (!row) throw new NotFound();
-    requireUnchanged(`the levels of ${row.name}`, form.seenVersion, row.version, null);
+    const row = await unchangedSet(study, setId, form.seenVersion);
     const { data } = await figuresOfStudy(actor.labId, code);
     const set = setOf(data, setId);
     const change = changeOf(data, set, form, await takenIn(study, set));

@@ -52,7 +52,8 @@ async function askedOf(
   } catch (error) {
     if (!(error instanceof Invalid)) throw error;
     const errors: Record<string, string> = {};
-    for (const { path, message } of error.problems) errors[path] ??= message;
+    // One of a list is told at the list.
+    for (const { path, message } of error.problems) errors[path.split('.')[0] ?? path] ??= message;
     return {
       ...nothing,
       all,
