@@ -26,6 +26,8 @@ const screens = [
   `${study}/walk-back`,
   `${study}/compare`,
   `${study}/validation`,
+  `${study}/validation/experiment`,
+  '/studies/TARROW-2/validation',
   `${study}/summary`,
   `${study}/history`,
   '/library/analytes',

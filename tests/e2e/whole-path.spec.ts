@@ -414,7 +414,7 @@ test('four people take a study from its first line to the summary', async ({ bro
     const walk = rowOf(chemist.getByRole('table', { name: /Walk-back, variant A/ }), 'Carbamazepine');
     for (const figure of [extractionTakes, dryingTakes, concentrationTakes])
       await expect(walk).toContainText(figure);
-    await chemist.goto(`${base}/validation?variant=A`);
+    await chemist.goto(`${base}/validation/experiment?variant=A`);
     const surrogates = part(chemist, 'Surrogates').getByRole('row');
     for (const portion of ['E4-S1 spiked', 'E4-U2 unspiked', 'E4-B1 method blank'])
       await expect(surrogates.filter({ hasText: portion })).toContainText(byHand.surrogate);

@@ -71,8 +71,14 @@ async function lowLevel(
   return experiment;
 }
 
-it.each(quinoneStudies.map(({ values, fromTheData }, index) => ({ index, values, mdl: fromTheData.mdl })))(
-  'study $index of 6PPD-quinone: MDLs from its rounded data, and no MDL without blanks',
+it.each(
+  quinoneStudies.map(({ values, fromTheData }, index) => ({
+    study: `study ${index + 1}`,
+    values,
+    mdl: fromTheData.mdl
+  }))
+)(
+  '$study of 6PPD-quinone: MDLs from its rounded data, and no MDL without blanks',
   async ({ values, mdl }) => {
     // EPA Research Summary, draft SPE method for 6PPD-quinone (Nov 2023), Table 5-2; t s worked from the rounded data.
     const bench = await openBench();

@@ -85,6 +85,8 @@ function blanksOf(
 interface Sum {
   readonly low: number;
   readonly high: number;
+  /** A fraction has no figure, so that the sum is a lower bound. */
+  readonly partial: boolean;
 }
 
 /** Sum with not-detected as zero and at its limit; null when nothing is known. */
@@ -93,13 +95,16 @@ function sumOf(values: readonly Value[]): Sum | null {
   if (known.length === 0) return null;
   return {
     low: known.reduce<number>((sum, value) => sum + (typeof value === 'number' ? value : 0), 0),
-    high: known.reduce<number>((sum, value) => sum + (typeof value === 'number' ? value : value.below), 0)
+    high: known.reduce<number>((sum, value) => sum + (typeof value === 'number' ? value : value.below), 0),
+    partial: known.length < values.length
   };
 }
 
+/** "0.52", "<0.1"; "≥0.52" where a fraction is missing, "<0.1, incomplete" where nothing was found in the others. */
 function sumText(sum: Sum | null): string {
   if (!sum) return '';
-  return sum.low > 0 ? figureText(sum.low) : `<${figureText(sum.high)}`;
+  if (sum.low > 0) return `${sum.partial ? '≥' : ''}${figureText(sum.low)}`;
+  return `<${figureText(sum.high)}${sum.partial ? ', incomplete' : ''}`;
 }
 
 function matrixOf(

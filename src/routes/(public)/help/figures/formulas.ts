@@ -184,5 +184,71 @@ export const formulas = {
       )
     ),
     reading: 'RSE = 100 √( Σ ((x′ − x)/x)² / (n − p) )'
+  },
+  detection: {
+    formula: row(
+      name('MDL'),
+      equals,
+      name('max'),
+      operator('('),
+      sub(name('t'), row(number('0.99'), operator(','), name('n'), minus, number('1'))),
+      times,
+      symbol('s', 'spiked'),
+      operator(','),
+      meanOf('b'),
+      operator('+'),
+      sub(name('t'), row(number('0.99'), operator(','), name('n'), minus, number('1'))),
+      times,
+      symbol('s', 'blanks'),
+      operator(')')
+    ),
+    reading: 'MDL = max( t(0.99, n − 1) · s_spiked , b̄ + t(0.99, n − 1) · s_blanks )'
+  },
+  lineLimit: {
+    formula: row(
+      name('LOD'),
+      equals,
+      over(row(number('3.3'), times, name('σ')), name('b')),
+      operator(','),
+      name('LOQ'),
+      equals,
+      over(row(number('10'), times, name('σ')), name('b'))
+    ),
+    reading: 'LOD = 3.3 σ / b , LOQ = 10 σ / b'
+  },
+  halfRange: {
+    formula: row(
+      name('HR'),
+      equals,
+      sub(name('t'), row(number('0.995'), operator(','), name('n'), minus, number('1'))),
+      times,
+      name('s'),
+      times,
+      root(row(number('1'), operator('+'), over(number('1'), name('n'))))
+    ),
+    reading: 'HR = t(0.995, n − 1) · s · √(1 + 1/n)'
+  },
+  intermediate: {
+    formula: row(
+      power(symbol('s', 'I'), number('2')),
+      equals,
+      power(symbol('s', 'r'), number('2')),
+      operator('+'),
+      over(row(symbol('MS', 'between'), minus, symbol('MS', 'within')), sub(name('n'), number('0')))
+    ),
+    reading: 's_I² = s_r² + (MS_between − MS_within) / n_0'
+  },
+  rpd: {
+    formula: row(
+      name('RPD'),
+      equals,
+      number('200'),
+      times,
+      over(
+        row(operator('|'), name('a'), minus, name('b'), operator('|')),
+        row(name('a'), operator('+'), name('b'))
+      )
+    ),
+    reading: 'RPD = 200 |a − b| / (a + b)'
   }
 } as const satisfies Record<string, HelpFormula>;
