@@ -45,10 +45,14 @@ export interface SequenceItem {
   readonly sets: readonly { readonly id: string; readonly name: string }[];
   readonly experiments: readonly number[];
   readonly injections: number;
+  /** Injections of levels: what its sets were fitted to. */
+  readonly levels: number;
   readonly checks: number;
   /** Injections with at least one flag. */
   readonly flagged: number;
   readonly gaps: number;
+  /** The imports that brought it. */
+  readonly importIds: readonly string[];
   readonly href: string;
 }
 

@@ -35,12 +35,14 @@ export function sequenceItem(figures: StudyFigures, findings: RunFindings): Sequ
     sets: sets.map(({ set }) => ({ id: set.id, name: set.name })),
     experiments: experimentsOf(figures, findings),
     injections: run.injections.length,
+    levels: run.injections.filter(({ subject }) => subject.kind === 'level').length,
     checks: run.injections.filter(({ subject }) => subject.kind === 'check').length,
     flagged: run.injections.filter(({ id }) => flags.has(id)).length,
     gaps: sets.reduce(
       (sum, { gaps }) => sum + gaps.filter(({ kind }) => kind !== 'order of the file').length,
       0
     ),
+    importIds: run.sequences.map(({ importId }) => importId),
     href: runHref(figures, findings)
   };
 }

@@ -19,6 +19,7 @@ import { assignLabel, changeMap, mendCell, resetMap, unmendCell } from '$lib/ser
 import { previewImport } from '$lib/server/services/import-preview';
 import { storeImport } from '$lib/server/services/import-storing';
 import { declareAboutImport, dropImport, listImports, withdrawImport } from '$lib/server/services/imports';
+import { listSequences } from '$lib/server/services/sequences';
 import type { Actions, PageServerLoad, RequestEvent } from './$types';
 import { tableChange } from './table-change';
 
@@ -30,6 +31,10 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
   return {
     preview,
     listed,
+    sequences:
+      preview.state === 'stored'
+        ? (await listSequences(actor, params.study)).filter(({ importIds }) => importIds.includes(preview.id))
+        : [],
     again: url.searchParams.has('again'),
     stored: url.searchParams.has('stored'),
     layouts: (await listColumnMaps(actor)).map(({ name }) => name),
