@@ -1,11 +1,19 @@
-import { describe, expect, it } from 'vitest';
+import { fork, type ChildProcess } from 'node:child_process';
+import { once } from 'node:events';
+import { beforeEach, describe, expect, it, vi } from 'vitest';
 import { mapRecords } from '../../../src/lib/server/imports/map-records';
-import { mapInChild, readInChild } from '../../../src/lib/server/imports/read-in-child';
+import { mapInChild, prepareChild, readInChild } from '../../../src/lib/server/imports/read-in-child';
 import { readWorkbook } from '../../../src/lib/server/imports/read-workbook';
 import { Refusal } from '../../../src/lib/server/imports/refusal';
 import { expectation } from '../../factories/expectation';
 import { lyingSize } from '../../fixtures/workbooks/bombs';
 import { streamed } from '../../fixtures/workbooks/exceljs-files';
+
+// The real one, counted.
+vi.mock('node:child_process', async (importOriginal) => {
+  const original = await importOriginal<{ readonly fork: typeof fork }>();
+  return { ...original, fork: vi.fn(original.fork) };
+});
 
 const rows = [
   ['Sample', 'Fraction', 'Analyte', 'Area', 'Final volume (mL)'],
@@ -72,5 +80,42 @@ describe('reading in a process of its own', () => {
     calling.abort(new Error('called off'));
     await expect(reading).rejects.toThrow('called off');
     await expect(readInChild(await file(), { signal: calling.signal })).rejects.toThrow('called off');
+  }, 60_000);
+});
+
+describe('a process prepared for a file that is on its way', () => {
+  const started = vi.mocked(fork);
+  beforeEach(() => {
+    started.mockClear();
+  });
+
+  it('is one at most, and reads the next file', async () => {
+    const bytes = await file();
+    prepareChild();
+    prepareChild();
+    expect(started).toHaveBeenCalledTimes(1);
+    expect(await readInChild(bytes)).toEqual(await readWorkbook(bytes));
+    expect(started).toHaveBeenCalledTimes(1);
+    await readInChild(bytes);
+    expect(started).toHaveBeenCalledTimes(2);
+  }, 60_000);
+
+  it('is not waited for when it has ended meanwhile', async () => {
+    const bytes = await file();
+    prepareChild();
+    const child = started.mock.results[0]!.value as ChildProcess;
+    child.kill('SIGKILL');
+    await once(child, 'exit');
+    expect(await readInChild(bytes)).toEqual(await readWorkbook(bytes));
+    expect(started).toHaveBeenCalledTimes(2);
+  }, 60_000);
+
+  it('is left for another file by a reading that wants other memory', async () => {
+    const bytes = await file();
+    prepareChild();
+    await readInChild(bytes, { memoryMb: 300 });
+    expect(started).toHaveBeenCalledTimes(2);
+    await readInChild(bytes);
+    expect(started).toHaveBeenCalledTimes(2);
   }, 60_000);
 });

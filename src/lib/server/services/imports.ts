@@ -10,6 +10,7 @@ import type { Study } from '../db/models/study';
 import { sequelize } from '../db/sequelize';
 import { audit, inTransaction } from '../db/transaction';
 import { Conflict, Forbidden, Invalid, NotFound } from '../errors';
+import { prepareChild } from '../imports/read-in-child';
 import { declaredOf, nothingDeclared, type Declared } from './import-expectation';
 import { knownId } from './known-id';
 import { require } from './permissions';
@@ -88,6 +89,8 @@ export async function receiveFile(
   const experimentId =
     input.experimentNumber === null ? null : await experimentIdOf(study, input.experimentNumber);
   const sha256 = createHash('sha256').update(bytes).digest('hex');
+  // What follows reads the file: its process starts while the bytes are kept.
+  prepareChild();
 
   return inTransaction(actor, { study: study.id }, async () => {
     // One at a time, so that bytes which come twice at the same moment are kept once.
