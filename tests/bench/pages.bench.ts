@@ -8,7 +8,7 @@ import { from as copyFrom } from 'pg-copy-streams';
 import { largeInjections, largeSubstances } from '../../seeders/demo/large-study';
 import { writeWorkbook } from '../../seeders/demo/workbooks';
 import { hashPassword, isPassword } from '../../src/lib/server/auth/passwords';
-import { medianMs, type BenchContext, type Benchmark, type BenchResult } from './benchmark';
+import { median, medianMs, type BenchContext, type Benchmark, type BenchResult } from './benchmark';
 import { inflateAndScan } from './reading.bench';
 import { serveLab, Visitor, type ServedLab } from './served-lab';
 
@@ -88,40 +88,21 @@ async function copyFloor(databaseUrl: string, rows: number): Promise<number> {
   }
 }
 
-interface Upload {
-  /** From the first byte sent to the mass balance that rests on it. */
-  readonly wholeMs: number;
-  readonly floorMs: number;
-  /** Delays of a signed-in page asked for again and again, in ms: before, and meanwhile. */
-  readonly quiet: readonly number[];
-  readonly meanwhile: readonly number[];
+interface Visit {
+  readonly analyst: Visitor;
+  readonly bytes: Buffer;
 }
 
-let uploaded: Promise<Upload> | null = null;
-
-function uploadOnce(context: BenchContext): Promise<Upload> {
-  uploaded ??= upload(context);
-  return uploaded;
+/** A file of the large study's size with numbers of its own, and somebody to bring it. */
+async function visit(lab: ServedLab, seed: number): Promise<Visit> {
+  const analyst = new Visitor(lab.origin);
+  await analyst.signIn('analyst');
+  const bytes = await writeWorkbook('Invented bench data', 'long', largeInjections(seed), largeSubstances);
+  return { analyst, bytes };
 }
 
-async function upload(context: BenchContext): Promise<Upload> {
-  const { lab, databaseUrl } = await demoLab(context);
-  const [analyst, reader] = [new Visitor(lab.origin), new Visitor(lab.origin)];
-  await Promise.all([analyst.signIn('analyst'), reader.signIn('reviewer')]);
-  const bytes = await writeWorkbook('Invented bench data', 'long', largeInjections(4711), largeSubstances);
-  const delayOf = async (): Promise<number> => {
-    const begun = performance.now();
-    await reader.page('/account');
-    return performance.now() - begun;
-  };
-  const quiet: number[] = [];
-  for (let turn = 0; turn < 30; turn++) quiet.push(await delayOf());
-
-  const meanwhile: number[] = [];
-  let working = true;
-  const watching = (async () => {
-    while (working) meanwhile.push(await delayOf());
-  })();
+/** From the first byte sent to the mass balance that rests on it. */
+async function upload({ analyst, bytes }: Visit): Promise<{ readonly ms: number; readonly count: number }> {
   const begun = performance.now();
   const form = new FormData();
   form.set('file', new Blob([new Uint8Array(bytes)]), 'bench-run.xlsx');
@@ -135,14 +116,51 @@ async function upload(context: BenchContext): Promise<Upload> {
   );
   if (answer.status !== 303) throw new Error(`storing answered ${answer.status}`);
   await analyst.page(`${large}/balance`);
-  const wholeMs = performance.now() - begun;
+  return { ms: performance.now() - begun, count };
+}
+
+/** The median of three uploads with nobody else about, after one that is not counted, as its floors are medians of warm runs. */
+async function uploadAlone(context: BenchContext): Promise<BenchResult> {
+  const { lab, databaseUrl } = await demoLab(context);
+  const times: number[] = [];
+  let last: Visit | null = null;
+  let count = 0;
+  for (const seed of [4710, 4711, 4712, 4713]) {
+    last = await visit(lab, seed);
+    const uploaded = await upload(last);
+    times.push(uploaded.ms);
+    ({ count } = uploaded);
+  }
+  const [first = NaN, ...counted] = times;
+  context.note(`the first upload to a server just started: ${first.toFixed(0)} ms`);
+  const readMs =
+    last === null ? NaN : await medianMs(() => inflateAndScan(last.bytes), { runs: 5, warmUps: 1 });
+  return { figure: median(counted), floor: readMs + (await copyFloor(databaseUrl, count)), unit: 'ms' };
+}
+
+/** A signed-in page asked for again and again, before and during an upload. */
+async function pageMeanwhile(context: BenchContext): Promise<BenchResult> {
+  const { lab } = await demoLab(context);
+  const reader = new Visitor(lab.origin);
+  await reader.signIn('reviewer');
+  const brought = await visit(lab, 4714);
+  const delayOf = async (): Promise<number> => {
+    const begun = performance.now();
+    await reader.page('/account');
+    return performance.now() - begun;
+  };
+  const quiet: number[] = [];
+  for (let turn = 0; turn < 30; turn++) quiet.push(await delayOf());
+  const meanwhile: number[] = [];
+  let working = true;
+  const watching = (async () => {
+    while (working) meanwhile.push(await delayOf());
+  })();
+  await upload(brought);
   working = false;
   await watching;
-
-  const readMs = await medianMs(() => inflateAndScan(bytes), { runs: 5, warmUps: 1 });
-  const copyMs = await copyFloor(databaseUrl, count);
-  context.note(`upload of ${count} values: ${wholeMs.toFixed(0)} ms to the mass balance`);
-  return { wholeMs, floorMs: readMs + copyMs, quiet, meanwhile };
+  context.note(`the slowest of ${meanwhile.length} pages meanwhile: ${atShare(meanwhile, 1).toFixed(0)} ms`);
+  return { figure: atShare(meanwhile, 0.95), floor: atShare(quiet, 0.95), unit: 'ms' };
 }
 
 const atShare = (values: readonly number[], share: number): number =>
@@ -178,21 +196,12 @@ export const benchmarks: readonly Benchmark[] = [
   {
     name: 'upload of 150 analytes × 60 injections, stored and shown, against inflate + scan + COPY',
     goal: { ratio: 3, is: 'at most' },
-    run: async (context) => {
-      const { wholeMs, floorMs } = await uploadOnce(context);
-      return { figure: wholeMs, floor: floorMs, unit: 'ms' };
-    }
+    run: uploadAlone
   },
   {
     name: 'a signed-in page meanwhile (95 of 100), against before',
     goal: { ratio: 6, is: 'at most' },
-    run: async (context) => {
-      const { quiet, meanwhile } = await uploadOnce(context);
-      context.note(
-        `the slowest of ${meanwhile.length} pages meanwhile: ${atShare(meanwhile, 1).toFixed(0)} ms`
-      );
-      return { figure: atShare(meanwhile, 0.95), floor: atShare(quiet, 0.95), unit: 'ms' };
-    }
+    run: pageMeanwhile
   },
   {
     name: 'JavaScript of the mass-balance page (gzip) against a page of text',
