@@ -130,6 +130,26 @@ describe('typed beside computed', () => {
     expect(after.atPhs.find(({ ph }) => ph === 10)?.logD).toBeCloseTo(1.7736, 4);
   });
 
+  it('asks for the pKa that a structure makes one expect', async () => {
+    const actor = await makeMember();
+    const chemistryOf = async (fields: object) => {
+      const id = await createAnalyte(actor, form(fields));
+      return analyteChemistry(actor, (await getAnalyte(actor, id)).current);
+    };
+    const pyridine = await chemistryOf({ name: 'Pyridine', smiles: 'c1ccncc1', logKow: '0.65' });
+    expect(pyridine.assumed).toMatch(/\(nitrogen in an aromatic ring\), and the library holds no pKa/);
+    const naphthalene = await chemistryOf({ name: 'Naphthalene', smiles: 'c1ccc2ccccc2c1', logKow: '3.3' });
+    expect(naphthalene.assumed).toMatch(/taken to have no group that ionises/);
+    // An acid that is certain is not taken for neutral at all.
+    const acid = await chemistryOf({
+      name: 'Ibuprofen',
+      smiles: 'CC(C)Cc1ccc(cc1)C(C)C(=O)O',
+      logKow: '3.97'
+    });
+    expect(acid).toMatchObject({ assumed: null, curve: null, atPhs: [] });
+    expect(acid.unknown).toContain('carboxylic acid');
+  });
+
   it('tells impossible values on file instead of failing', async () => {
     const actor = await makeMember();
     const id = await createAnalyte(

@@ -1,6 +1,7 @@
 import { givenText } from '../../../domain/given-text';
 import type { SourcedPropertyView, SubstanceAtPhView, SubstanceView } from '../../../views/panel-chemistry';
 import { ChemistryError, logD, volatility, type Volatility } from '../../chemistry';
+import { listed } from '../changes';
 import { chargeAt, chargeCurve, type ReadSubstance } from './read-substance';
 import { structureView } from './structure-view';
 import type { Substance } from './panel-substances';
@@ -45,6 +46,16 @@ function volatilityView(substance: Substance, finalVolumeMl: number | null): Sub
   }
 }
 
+/** What the library leaves open of the charge, as a question; null: nothing. */
+function assumedOf({ charge }: ReadSubstance): string | null {
+  if (!charge.known || charge.groups.permanentCharge !== 0) return null;
+  if (charge.possible.length > 0)
+    return `The structure shows something that may take up or lose a proton (${listed(charge.possible)}), and the library holds no pKa of it. Is it charged at a pH that is used?`;
+  return charge.hasPka
+    ? null
+    : 'The library holds no pKa, so it is taken to have no group that ionises. Is that so?';
+}
+
 function atPh({ charge, logKow }: ReadSubstance, ph: number): readonly SubstanceAtPhView[] {
   if (!charge.known) return [];
   const distribution = logKow && logD(logKow.value, charge.groups, ph);
@@ -78,10 +89,7 @@ export async function substanceView(
     version: substance.version,
     structure: await structureView(substance),
     properties: propertiesOf(substance),
-    assumed:
-      charge.known && !charge.hasPka && charge.groups.permanentCharge === 0
-        ? 'The library holds no pKa, so it is taken to have no group that ionises. Is that so?'
-        : null,
+    assumed: assumedOf(read),
     atPhs: phs.flatMap((ph) => atPh(read, ph)),
     volatility: volatilityView(substance, finalVolumeMl),
     ...chargeCurve(charge)
