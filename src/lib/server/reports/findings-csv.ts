@@ -133,7 +133,7 @@ export function compareCsv(view: CompareView, about: CsvAbout): string {
           cell?.mean ?? null,
           cell?.halfWidth ?? null,
           cell === null ? null : (cell.verdict ?? 'no verdict'),
-          cell?.reason ?? row.gaps[index] ?? null,
+          cell ? [cell.reason, cell.flagged].filter(Boolean).join('; ') : (row.gaps[index] ?? null),
           labText(about)
         ];
       })
