@@ -252,6 +252,17 @@ export interface RangeMoveView {
   readonly worse: boolean;
 }
 
+/** What a stage takes of 100 in the sample, before and after a change that is only proposed. */
+export interface MovedLossView {
+  readonly variant: string;
+  readonly stage: string;
+  readonly name: string;
+  readonly before: number | null;
+  readonly after: number | null;
+  /** The loss is named: it stands out over the panel. */
+  readonly named: readonly [before: boolean, after: boolean];
+}
+
 /** What a proposed change of a calibration would do to the study's figures. */
 export interface MovesView {
   /** Stands for the data and the proposal that were looked at; the change is stored only while it still does. */
@@ -263,6 +274,8 @@ export interface MovesView {
   readonly unmoved: number;
   readonly verdictChanges: number;
   readonly range: readonly RangeMoveView[];
+  /** Losses of the walk-back that move by a tenth of a point at least, or are named or no longer; the largest first. */
+  readonly losses: readonly MovedLossView[];
   /** Lines as they would be, against the rules: only those whose standing changes. */
   readonly standings: readonly { readonly name: string; readonly before: string; readonly after: string }[];
 }

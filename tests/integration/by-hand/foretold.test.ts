@@ -8,7 +8,9 @@ import { changeLevels, proposeLevels } from '../../../src/lib/server/services/ca
 import { getCalibrationFit, getCalibrationSet } from '../../../src/lib/server/services/calibrations';
 import type { PanelEntry } from '../../../src/lib/server/db/models/panel-entry';
 import type { MovedFigureView } from '../../../src/lib/views/calibration';
+import { walkBackView } from '../../../src/lib/server/services/results';
 import { makeMember } from '../../factories/member';
+import { makeVariant } from '../../factories/variant';
 import { openBench, portions, type Bench, type Row } from './bench';
 
 /*
@@ -53,7 +55,9 @@ async function filled(): Promise<Case> {
       concentrationNgPerMl
     }))
   });
+  await makeVariant(bench.made.study, { code: 'A' });
   const experiment = await bench.experiment({
+    variantCode: 'A',
     calibrationSetId: setId,
     spikes: [{ kind: 'spiked', targetsNg: '20' }],
     finalVolumeMl: '1',
@@ -99,6 +103,12 @@ describe('what a choice moves, told before it is stored', () => {
     expect(moved?.verdicts[0]).toBe('outside');
     expect(moves.sentence).toContain('One in experiment 1 goes from outside to');
     expect([moves.moved.length, moves.unmoved]).toEqual([1, 1]);
+    // The only stage that is measured takes what is not recovered.
+    const [loss, ...others] = moves.losses;
+    expect(others).toEqual([]);
+    expect(loss).toMatchObject({ variant: 'A', stage: 'Extraction', name: 'One' });
+    expect(loss?.before).toBeCloseTo(100 - byR.average, 8);
+    expect(loss?.after).toBeCloseTo(100 - byR.weighted, 8);
     // Nothing is stored by looking.
     expect(await mean(made, 'One')).toBeCloseTo(byR.average, 8);
 
@@ -118,6 +128,9 @@ describe('what a choice moves, told before it is stored', () => {
     expect(row.n).toBe(moved?.n[1]);
     expect(row.verdict).toBe(moved?.verdicts[1]);
     expect(await mean(made, 'Other')).toBeCloseTo(byR.average, 8);
+    const { walkBack } = await walkBackView(bench.actor, bench.code, { variant: 'A' }, (text) => text);
+    const lost = walkBack.rows.find(({ name }) => name === 'One')?.losses.find((item) => item !== null);
+    expect(lost?.lost).toBe(loss?.after);
   });
 
   it('does not hold once other data came: nothing is stored then', async () => {

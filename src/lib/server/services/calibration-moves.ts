@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { percentText } from '../../domain/figure-text';
-import type { MovedFigureView, MovesView, RangeMoveView } from '../../views/calibration';
+import type { MovedFigureView, MovedLossView, MovesView, RangeMoveView } from '../../views/calibration';
 import { calibrate } from '../amounts/calibration';
 import { checkCalibration } from '../amounts/calibration-check';
 import type { CalibrationSet } from '../amounts/types';
@@ -39,6 +39,7 @@ export function movesOf(figures: StudyFigures, proposed: StudyCalibrationSet, pr
     unmoved: compared.length - moved.length,
     verdictChanges,
     range,
+    losses: movedLosses(figures, after),
     standings
   };
 }
@@ -223,6 +224,31 @@ function rangeMoves(before: StudyFigures, after: StudyFigures, experiment: Study
       });
     });
 }
+
+/** What the stages of each variant take, where that moves: it follows from the recoveries, and is named by rules of its own. */
+function movedLosses(before: StudyFigures, after: StudyFigures): MovedLossView[] {
+  return before.data.variants
+    .flatMap((variant) => {
+      const now = before.variant(variant);
+      const then = after.variant(variant).figures.entries;
+      return [...now.figures.entries.values()].flatMap(({ entry, rows }) => {
+        const others = new Map((then.get(entry.id)?.rows ?? []).map((item) => [item.stage, item]));
+        return rows.flatMap((item): MovedLossView[] => {
+          const other = others.get(item.stage);
+          const [left, right] = [item.lost?.estimate ?? null, other?.lost?.estimate ?? null];
+          const named = [item.named, other?.named ?? false] as const;
+          const isSame = (left === null) === (right === null) && named[0] === named[1];
+          if (isSame && Math.abs((right ?? 0) - (left ?? 0)) < 0.1) return [];
+          const stage = before.data.stages.find(({ key }) => key === item.stage)?.name ?? item.stage;
+          return [{ variant: variant.code, stage, name: entry.name, before: left, after: right, named }];
+        });
+      });
+    })
+    .sort((a, b) => lossWeight(b) - lossWeight(a));
+}
+
+const lossWeight = ({ before, after, named }: MovedLossView): number =>
+  (named[0] !== named[1] ? 1e6 : 0) + (before === null || after === null ? 1e5 : Math.abs(after - before));
 
 /** Lines whose standing against the rules would be another. */
 function standingsOf(figures: StudyFigures, proposed: CalibrationSet): MovesView['standings'] {
