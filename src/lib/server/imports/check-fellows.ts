@@ -43,7 +43,7 @@ export function checkFellows(
       : null
   );
   for (const ofAnalyte of byAnalyte.values()) {
-    const fractions = [...grouped(ofAnalyte, fractionOf).values()].map(resultsOf);
+    const fractions = [...grouped(ofAnalyte, fractionOf).values()].map((each) => resultsOf(each, panel));
     const largest = Math.max(...fractions.map((results) => medianOf(results.map(({ value }) => value))));
     for (const results of fractions) {
       for (const result of results) askAbout(result, results, largest * far.share, panel, problems);
@@ -56,11 +56,16 @@ function fractionOf({ place }: DraftRecord): string | null {
   return place.kind === 'extract' ? String(place.fractionId) : null;
 }
 
-function resultsOf(records: readonly DraftRecord[]): readonly Result[] {
+function resultsOf(
+  records: readonly DraftRecord[],
+  panel: ReadonlyMap<string, PanelExpectation>
+): readonly Result[] {
   const byReplicate = grouped(records, ({ place }) => (place.kind === 'extract' ? place.replicateId : null));
   return [...byReplicate.values()].flatMap((injections): readonly Result[] => {
     const [record] = injections;
-    return record ? [{ value: mean(injections.map(comparable)), record }] : [];
+    return record
+      ? [{ value: mean(injections.map((each) => comparable(each, panel.get(each.panelEntryId)))), record }]
+      : [];
   });
 }
 
@@ -69,18 +74,15 @@ function mean(values: readonly number[]): number {
 }
 
 /** Proportional to the amount in the fraction, as far as the file tells. */
-function comparable({
-  basis,
-  value,
-  internalArea,
-  dilution,
-  aliquotShare,
-  finalVolumeMl
-}: DraftRecord): number {
+function comparable(record: DraftRecord, entry: PanelExpectation | undefined): number {
+  const { basis, value, internalArea, dilution, aliquotShare, finalVolumeMl } = record;
   const reported = value ?? NaN;
   if (basis === 'ng' || basis === 'ng_per_l') return reported;
-  const content = basis === 'area' && internalArea !== null ? reported / internalArea : reported;
-  return (content * (dilution ?? 1) * (finalVolumeMl ?? 1)) / (aliquotShare ?? 1);
+  const isRatio = basis === 'area' && internalArea !== null;
+  const content = isRatio ? reported / internalArea : reported;
+  // With a standard in the whole extract, volume and dilution cancel.
+  const cancels = isRatio && entry?.internalStandard?.point !== 'vial';
+  return (content * (cancels ? 1 : (dilution ?? 1) * (finalVolumeMl ?? 1))) / (aliquotShare ?? 1);
 }
 
 function askAbout(
@@ -124,13 +126,19 @@ function checkSpikes(
   problems: Problems
 ): void {
   const replicates = new Map(
-    experiments.flatMap((each) => each.replicates.map((one) => [one.id, one] as const))
+    experiments.flatMap((experiment) =>
+      experiment.replicates.map((replicate) => [replicate.id, { experiment, replicate }] as const)
+    )
   );
   for (const record of values) {
     if (record.place.kind !== 'extract') continue;
-    const replicate = replicates.get(record.place.replicateId);
-    const spike = replicate?.spikesNg?.[record.panelEntryId];
-    if (!replicate || spike === undefined || spike <= 0) continue;
+    const found = replicates.get(record.place.replicateId);
+    if (!found) continue;
+    const { experiment, replicate } = found;
+    const spike =
+      replicate.spikesNg?.[record.panelEntryId] ??
+      experiment.spikesNg?.[replicate.kind]?.[record.panelEntryId];
+    if (spike === undefined || spike <= 0) continue;
     const amount = amountOf(record, replicate.finalVolumeMl, replicate.sampleVolumeMl ?? null);
     if (amount === null || amount < spike * far.tenfold.low) continue;
     const name = panel.get(record.panelEntryId)?.name ?? 'This analyte';

@@ -80,7 +80,7 @@ export interface ReplicateExpectation {
   /** ISO 8601, in UTC; null or left out: not on record. */
   readonly collectedAt?: string | null;
   readonly extractedAt?: string | null;
-  /** Amount (ng) added to it by panel entry id; left out: not known. */
+  /** Amounts (ng) by panel entry id that it received in place of those of its experiment. */
   readonly spikesNg?: Readonly<Record<string, number>>;
 }
 
@@ -96,6 +96,8 @@ export interface ExperimentExpectation {
   readonly calibrationSetId: string | null;
   readonly replicates: readonly ReplicateExpectation[];
   readonly fractions: readonly FractionExpectation[];
+  /** Amounts (ng) added to a replicate of each kind, by panel entry id; left out: not known. */
+  readonly spikesNg?: Readonly<Partial<Record<ReplicateKind, Readonly<Record<string, number>>>>>;
   /** How long a portion may wait, in days; null or left out: no rule. */
   readonly holdingDays?: {
     readonly collectionToExtraction: number | null;

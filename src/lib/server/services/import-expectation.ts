@@ -51,6 +51,7 @@ interface ExperimentRow {
   readonly number: number;
   readonly title: string;
   readonly final_volume_ml: number | null;
+  readonly sample_volume_ml: number | null;
   readonly calibration_set_id: string | null;
 }
 interface ReplicateRow {
@@ -58,6 +59,18 @@ interface ReplicateRow {
   readonly experiment_id: string;
   readonly label: string;
   readonly kind: ReplicateKind;
+  readonly sample_volume_ml: number | null;
+  readonly sample_mass_g: number | null;
+  readonly collected_at: Date | null;
+  readonly extracted_at: Date | null;
+}
+interface SpikeRow {
+  /** Of an experiment for one kind of replicate, or of one replicate instead. */
+  readonly experiment_id: string | null;
+  readonly replicate_id: string | null;
+  readonly kind: ReplicateKind | null;
+  readonly panel_entry_id: string;
+  readonly amount_ng: number;
 }
 interface FractionRow {
   readonly id: string;
@@ -71,7 +84,8 @@ interface PanelRow {
   readonly cas: string | null;
   readonly role: PanelRole;
   readonly internal_standard_entry_id: string | null;
-  readonly has_level: boolean;
+  readonly low_level: number | null;
+  readonly high_level: number | null;
 }
 interface LevelRow {
   readonly set_id: string;
@@ -120,18 +134,24 @@ export async function loadExpectation(
     sequelize.query<Row>(sql, { bind: [where.labId, where.studyId], type: QueryTypes.SELECT });
 
   const experiments = await select<ExperimentRow>(
-    `SELECT id, number, title, final_volume_ml, calibration_set_id FROM experiments WHERE lab_id = $1 AND study_id = $2 ORDER BY number`
+    `SELECT id, number, title, final_volume_ml, sample_volume_ml, calibration_set_id FROM experiments
+      WHERE lab_id = $1 AND study_id = $2 ORDER BY number`
   );
   const replicates = await select<ReplicateRow>(
-    `SELECT id, experiment_id, label, kind FROM replicates WHERE lab_id = $1 AND study_id = $2 ORDER BY kind, number`
+    `SELECT id, experiment_id, label, kind, sample_volume_ml, sample_mass_g, collected_at, extracted_at FROM replicates
+      WHERE lab_id = $1 AND study_id = $2 ORDER BY kind, number`
   );
   const fractions = await select<FractionRow>(
     `SELECT id, experiment_id, name FROM fractions WHERE lab_id = $1 AND study_id = $2 ORDER BY position`
   );
   const panel = await select<PanelRow>(
     `SELECT p.id, v.name, v.synonyms, v.cas, p.role, p.internal_standard_entry_id,
-        EXISTS (SELECT 1 FROM calibration_level_concentrations c WHERE c.panel_entry_id = p.id) AS has_level
+        c.low AS low_level, c.high AS high_level
       FROM panel_entries p JOIN analyte_versions v ON v.lab_id = p.lab_id AND v.id = p.analyte_version_id
+        LEFT JOIN (
+          SELECT panel_entry_id, min(concentration_ng_per_ml) AS low, max(concentration_ng_per_ml) AS high
+            FROM calibration_level_concentrations WHERE lab_id = $1 AND study_id = $2 GROUP BY panel_entry_id
+        ) c ON c.panel_entry_id = p.id
       WHERE p.lab_id = $1 AND p.study_id = $2 ORDER BY p.position`
   );
   const levels = await select<LevelRow>(
@@ -147,8 +167,25 @@ export async function loadExpectation(
     `SELECT experiment_id, panel_entry_id, point FROM internal_standard_additions WHERE lab_id = $1 AND study_id = $2`
   );
 
+  const spikes = await select<SpikeRow>(
+    `SELECT experiment_id, NULL AS replicate_id, replicate_kind AS kind, panel_entry_id, amount_ng
+        FROM experiment_spikes WHERE lab_id = $1 AND study_id = $2
+      UNION ALL
+      SELECT NULL, replicate_id, NULL, panel_entry_id, amount_ng
+        FROM replicate_spikes WHERE lab_id = $1 AND study_id = $2
+      ORDER BY 1, 2, 3, 4`
+  );
+
+  const spikesOf = new Map<string, SpikeRow[]>();
+  for (const spike of spikes) {
+    const owner = spike.experiment_id ?? spike.replicate_id ?? '';
+    const own = spikesOf.get(owner);
+    if (own) own.push(spike);
+    else spikesOf.set(owner, [spike]);
+  }
+
   return {
-    experiments: experiments.map((row) => experimentExpectation(row, replicates, fractions)),
+    experiments: experiments.map((row) => experimentExpectation(row, replicates, fractions, spikesOf)),
     panel: panel.map((row): PanelExpectation => {
       const standard = row.internal_standard_entry_id;
       return {
@@ -161,7 +198,11 @@ export async function loadExpectation(
           standard === null
             ? null
             : { panelEntryId: standard, point: additionPoint(points, standard, declared.experimentId) },
-        hasLowestLevel: row.has_level
+        hasLowestLevel: row.low_level !== null,
+        levelRange:
+          row.low_level === null || row.high_level === null
+            ? null
+            : { low: row.low_level, high: row.high_level }
       };
     }),
     calibrationSets: calibrationSetExpectations(levels, checks),
@@ -173,24 +214,42 @@ export async function loadExpectation(
 function experimentExpectation(
   row: ExperimentRow,
   replicates: readonly ReplicateRow[],
-  fractions: readonly FractionRow[]
+  fractions: readonly FractionRow[],
+  spikesOf: ReadonlyMap<string, readonly SpikeRow[]>
 ): ExperimentExpectation {
   const own = fractions.filter((fraction) => fraction.experiment_id === row.id);
   return {
     id: row.id,
     title: row.title,
     calibrationSetId: row.calibration_set_id,
+    spikesNg: spikesByKind(spikesOf.get(row.id) ?? []),
     replicates: replicates
       .filter((replicate) => replicate.experiment_id === row.id)
-      .map(({ id, label, kind }) => ({
-        id,
-        label,
-        kind,
-        takesFraction: own.length > 0 && kind !== 'solvent standard',
-        finalVolumeMl: row.final_volume_ml
+      .map((replicate) => ({
+        id: replicate.id,
+        label: replicate.label,
+        kind: replicate.kind,
+        takesFraction: own.length > 0 && replicate.kind !== 'solvent standard',
+        finalVolumeMl: row.final_volume_ml,
+        sampleVolumeMl: replicate.sample_volume_ml ?? row.sample_volume_ml,
+        sampleMassG: replicate.sample_mass_g,
+        collectedAt: replicate.collected_at?.toISOString() ?? null,
+        extractedAt: replicate.extracted_at?.toISOString() ?? null,
+        spikesNg: amounts(spikesOf.get(replicate.id) ?? [])
       })),
     fractions: own.map(({ id, name }) => ({ id, name }))
   };
+}
+
+function spikesByKind(spikes: readonly SpikeRow[]): ExperimentExpectation['spikesNg'] {
+  const kinds = new Set(spikes.flatMap(({ kind }) => (kind === null ? [] : [kind])));
+  return Object.fromEntries(
+    [...kinds].map((kind) => [kind, amounts(spikes.filter((spike) => spike.kind === kind))])
+  );
+}
+
+function amounts(spikes: readonly SpikeRow[]): Record<string, number> {
+  return Object.fromEntries(spikes.map((spike) => [spike.panel_entry_id, spike.amount_ng]));
 }
 
 function calibrationSetExpectations(
