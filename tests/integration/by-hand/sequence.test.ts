@@ -12,6 +12,7 @@ import {
 import { previewImport } from '../../../src/lib/server/services/import-preview';
 import { receiveFile, withdrawImport } from '../../../src/lib/server/services/imports';
 import { getCalibrationSet } from '../../../src/lib/server/services/calibrations';
+import { removePanelEntry } from '../../../src/lib/server/services/panels';
 import { getSequence, listSequences } from '../../../src/lib/server/services/sequences';
 import { makeLab } from '../../factories/lab';
 import { makeMember } from '../../factories/member';
@@ -281,6 +282,14 @@ describe('describing a check', () => {
     expect(await messageOf({ kind: 'continuing', label: 'C3', concentrationNgPerMl: '12,5 µg/L' })).toBe(
       'stored'
     );
+  });
+
+  it('lets an analyte that is not measured leave the panel, with what checks were to hold of it', async () => {
+    const spare = await bench.entry('Spare');
+    await describeCheck({ kind: 'continuing', label: 'C4', concentrations: { [spare.id]: '5' } });
+    await removePanelEntry(bench.actor, bench.code, spare.id);
+    const { checks } = await getCheckStandards(bench.actor, bench.code, setId);
+    expect(checks.find(({ label }) => label === 'C4')?.concentrations).toEqual([]);
   });
 
   it('is corrected with what was seen, keeps its kind once injected, and is removed only before', async () => {

@@ -1,5 +1,5 @@
 import type { CriterionRule } from '../../domain/criteria';
-import { calibrate, type Calibration } from './calibration';
+import { calibrationsOf } from './experiment-amounts';
 import { blankReading, checkReading, heldTo, ruleOf, type ReadingContext } from './check-readings';
 import { flagCollector, type FlagsByInjection } from './flag-collector';
 import { injectionNames, type InjectionNames } from './injection-names';
@@ -92,7 +92,7 @@ export function sequenceChecks(input: SequenceInput): SequenceChecks {
     const sets = input.sets.flatMap((set): RunOfSet[] => {
       const injections = run.injections.filter((injection) => setOf(injection) === set.id);
       if (injections.length === 0) return [];
-      const lines = linesOf(set, input);
+      const lines = calibrationsOf(set, input.panel, nameOfEntry);
       const context: ReadingContext = { panel: input.panel, rules: input.rules, calibrationOf: lines, set };
       const areaContext: AreaContext = { areas, set, checks, experiments, rules: input.rules };
       const known =
@@ -220,21 +220,6 @@ function byInjectionAndEntry(reported: readonly CheckReported[]): ReportedOf {
     else rows.set(row.injectionId, new Map([[row.entryId, row]]));
   }
   return (injectionId, entryId) => rows.get(injectionId)?.get(entryId) ?? null;
-}
-
-function linesOf(set: CalibrationSet, { panel }: SequenceInput): (entryId: string) => Calibration {
-  const lines = new Map<string, Calibration>();
-  const nameOf = (id: string): string => panel.get(id)?.name ?? 'an analyte no longer on the panel';
-  return (entryId) => {
-    const known = lines.get(entryId);
-    if (known) return known;
-    const entry = panel.get(entryId);
-    const made: Calibration = entry
-      ? calibrate(set, entry, nameOf)
-      : { usable: false, set, entryId, reason: 'The analyte is not on the panel.' };
-    lines.set(entryId, made);
-    return made;
-  };
 }
 
 function readingsOf(

@@ -5,6 +5,7 @@ import type { PanelEntryForm, PanelPasteForm } from '../../schemas/panel';
 import type { PanelEntryView, PanelPaste } from '../../views/panel';
 import { CalibrationFit } from '../db/models/calibration-fit';
 import { CalibrationLevelConcentration } from '../db/models/calibration-level-concentration';
+import { CheckStandardConcentration } from '../db/models/check-standard-concentration';
 import { ExperimentSpike } from '../db/models/experiment-spike';
 import { InternalStandardAddition } from '../db/models/internal-standard-addition';
 import { PanelEntry } from '../db/models/panel-entry';
@@ -226,7 +227,8 @@ export async function removePanelEntry(actor: Actor, code: string, entryId: stri
       (await ExperimentSpike.destroy({ where })) +
       (await ReplicateSpike.destroy({ where })) +
       (await InternalStandardAddition.destroy({ where })) +
-      (await CalibrationLevelConcentration.destroy({ where }));
+      (await CalibrationLevelConcentration.destroy({ where })) +
+      (await CheckStandardConcentration.destroy({ where }));
     await entry.destroy();
     const along =
       planned > 0
