@@ -1,8 +1,16 @@
 import { expect, test, type APIRequestContext, type APIResponse } from '@playwright/test';
+import type { AccessScope } from '../../src/lib/domain/access-scopes';
 import { isAllowed } from '../../src/lib/domain/permissions';
 import { roles, type Role } from '../../src/lib/domain/roles';
-import { isPermission, routeAccess, type Access } from '../../src/lib/server/auth/route-access';
+import {
+  isPermission,
+  isWriteByKey,
+  routeAccess,
+  scopeNeeded,
+  type Access
+} from '../../src/lib/server/auth/route-access';
 import { findRoutes } from '../routes/route-files';
+import { makeKey, revokeKey } from './access-keys';
 import { signInByRequest } from './access-people';
 import { nothing, queries, readExamples, type Examples } from './route-examples';
 
@@ -37,6 +45,9 @@ const allWays: readonly Way[] = findRoutes().flatMap((route): readonly Way[] => 
 });
 
 const isApi = (way: Way): boolean => way.routeId.startsWith('/api/');
+
+/** Ways for access keys alone: a session does not open them. */
+const isForKeys = (way: Way): boolean => isWriteByKey(way.routeId, way.method);
 
 function listedAccess(way: Way): Access | null {
   const rule = routeAccess[way.routeId];
@@ -154,6 +165,10 @@ for (const role of roles) {
       if (way.routeId === '/(app)/sign-out' && way.method === 'POST') continue;
       const response = await ask(request, way, examples);
       const status = await statusOf(way, response);
+      if (isForKeys(way)) {
+        if (!(await isTurnedAway(way, response))) wrong.push(`${way.title}: ${status} without a key`);
+        continue;
+      }
       const isRefused = status === 403;
       if (isRefused === mayEnter(access, role))
         wrong.push(`${way.title}: ${status}, which ${access} does not say`);
@@ -233,6 +248,88 @@ function plain(body: string, examples: Examples): string {
   for (const value of Object.values(examples)) if (value.length > 2) text = text.replaceAll(value, 'VALUE');
   return text;
 }
+
+for (const role of roles) {
+  test(`every way in answers the access key of a ${role} as the permission table says`, async ({
+    request,
+    playwright
+  }) => {
+    const chemist = await playwright.request.newContext({ baseURL: origin });
+    await signInByRequest(chemist, 'chemist', origin);
+    const examples = await readExamples(chemist);
+    await chemist.dispose();
+    await signInByRequest(request, role, origin);
+    const scopes: AccessScope[] = isAllowed(role, 'data.enter') ? ['read', 'import'] : ['read'];
+    const { key } = await makeKey(request, origin, `walk of a ${role}`, scopes);
+    const program = await playwright.request.newContext({
+      baseURL: origin,
+      extraHTTPHeaders: { authorization: `Bearer ${key}` }
+    });
+    const wrong: string[] = [];
+    for (const way of ways) {
+      const response = await ask(program, way, examples);
+      const status = await statusOf(way, response);
+      if (way.access === 'public') continue;
+      if (!isApi(way)) {
+        if (!(await isTurnedAwayOf(way, response))) wrong.push(`${way.title}: ${status} with a key`);
+        continue;
+      }
+      const scope = scopeNeeded(way.routeId, way.method);
+      const may = mayEnter(way.access, role) && scope !== null && scopes.includes(scope);
+      // What is sent is no file: turned down for that once the key was let in.
+      const expected = !may ? 403 : way.method === 'GET' ? 200 : 415;
+      if (status !== expected) wrong.push(`${way.title}: ${status}, not ${expected}`);
+    }
+    await program.dispose();
+    expect(wrong).toEqual([]);
+  });
+}
+
+test('a key that only brings data in reads nothing', async ({ request, playwright }) => {
+  await signInByRequest(request, 'chemist', origin);
+  const examples = await readExamples(request);
+  const { key } = await makeKey(request, origin, 'bringer', ['import']);
+  const program = await playwright.request.newContext({
+    baseURL: origin,
+    extraHTTPHeaders: { authorization: `Bearer ${key}` }
+  });
+  const readings = ways.filter((way) => isApi(way) && way.method === 'GET' && way.access !== 'public');
+  expect(readings.length).toBeGreaterThan(10);
+  const wrong: string[] = [];
+  for (const way of readings) {
+    const response = await ask(program, way, examples);
+    if (response.status() !== 403) wrong.push(`${way.title}: ${response.status()}`);
+  }
+  await program.dispose();
+  expect(wrong).toEqual([]);
+});
+
+test('to another lab’s key what is there and what is not answer alike', async ({ request, playwright }) => {
+  await signInByRequest(request, 'chemist', origin);
+  const examples = await readExamples(request);
+  const elsewhere = await playwright.request.newContext({ baseURL: origin });
+  await signInByRequest(elsewhere, 'elsewhere', origin);
+  const { key, id } = await makeKey(elsewhere, origin, 'from elsewhere', ['read', 'import']);
+  const program = await playwright.request.newContext({
+    baseURL: origin,
+    extraHTTPHeaders: { authorization: `Bearer ${key}` }
+  });
+  const wrong: string[] = [];
+  for (const way of ways.filter((each) => isApi(each) && /\[/.test(each.routeId))) {
+    const there = await ask(program, way, examples);
+    const absent = await ask(program, way, nothing);
+    const [left, right] = [plain(await there.text(), examples), plain(await absent.text(), nothing)];
+    if (there.status() !== absent.status() || left !== right)
+      wrong.push(`${way.title}: ${there.status()} and ${absent.status()}`);
+    else if (way.method === 'GET' && there.status() !== 404) wrong.push(`${way.title}: ${there.status()}`);
+  }
+  expect(wrong).toEqual([]);
+  // Revoked in the middle: the next request is turned away.
+  expect((await program.get('/api/v1/studies')).status()).toBe(200);
+  await revokeKey(elsewhere, origin, id);
+  expect((await program.get('/api/v1/studies')).status()).toBe(401);
+  await Promise.all([program.dispose(), elsewhere.dispose()]);
+});
 
 test('addresses of the sign-in library are closed', async ({ request }) => {
   for (const action of ['session', 'signin', 'signin/credentials', 'signout', 'csrf', 'providers', 'error']) {

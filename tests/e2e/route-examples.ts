@@ -18,6 +18,7 @@ export const nothing: Examples = {
   'experiments/[experiment]': '999',
   'variants/[variant]': 'ZZ',
   'data/[import]': nobodysId,
+  'imports/[import]': nobodysId,
   'calibration/[set]': nobodysId,
   'sequences/[sequence]': nobodysId,
   'checks/[check]': nobodysId,
@@ -41,11 +42,13 @@ export async function readExamples(request: APIRequestContext): Promise<Examples
   const idBelow = (page: string) =>
     firstMatch(request, page, new RegExp(`${page}/([0-9a-f]{8}-[0-9a-f-]{27})`));
   const set = await idBelow(`${study}/calibration`);
+  const ofImport = await idBelow(`${study}/data`);
   return {
     'studies/[study]': 'TARROW-1',
     'experiments/[experiment]': '1',
     'variants/[variant]': 'A',
-    'data/[import]': await idBelow(`${study}/data`),
+    'data/[import]': ofImport,
+    'imports/[import]': ofImport,
     'calibration/[set]': set,
     'sequences/[sequence]': await firstMatch(
       request,
