@@ -74,9 +74,19 @@ export function changedMap(
         : [...table.columns, { column, header: '', ...meaning }].sort(
             (one, other) => one.column - other.column
           );
-      return replacing(map, table, { ...table, columns });
+      return replacing(map, table, { ...table, columns, orientation: orientationOf(table, columns) });
     }
   }
+}
+
+/** Columns that name an analyte each stand side by side; a column that names the row's analyte makes a row of each. */
+function orientationOf({ orientation }: TableMap, columns: readonly MapColumn[]): Orientation {
+  if (orientation === 'analytes down') return orientation;
+  const isRead = ({ means }: MapColumn): boolean => means !== 'ignored' && means !== 'not understood';
+  if (columns.some(({ means }) => means === 'analyte' || means === 'cas')) return 'long';
+  return columns.some((column) => column.analyte !== null && isRead(column))
+    ? 'analytes across'
+    : orientation;
 }
 
 function sheetOf(workbook: Workbook, name: string): Sheet {
