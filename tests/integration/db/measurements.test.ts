@@ -155,6 +155,46 @@ test('a later import covers the places it has rows for, and withdrawing it bring
   expect(await readStudyMeasurements(where)).toHaveLength(3);
 });
 
+test('of three imports that overlap in part the last one with a number counts, place by place and analyte by analyte', async () => {
+  const { actor, study, entry, other, place, where } = await bench();
+  const third = await makePanelEntry(study);
+  const analytes = [entry.analyteId, other.analyteId, third.analyteId];
+  const store = (numbers: readonly (readonly [place: number, analyte: number, reported: number])[]) =>
+    makeStoredImport(
+      actor,
+      study,
+      numbers.map(([at, analyte, reported]) => ({ ...place(at), analyteId: analytes[analyte]!, reported }))
+    );
+  await store([
+    [0, 0, 1],
+    [0, 1, 2],
+    [0, 2, 3],
+    [1, 0, 4],
+    [1, 1, 5],
+    [2, 0, 6]
+  ]);
+  await store([
+    [0, 0, 11],
+    [0, 1, 12],
+    [1, 0, 14]
+  ]);
+  const last = await store([
+    [0, 1, 22],
+    [2, 0, 26],
+    [2, 1, 27]
+  ]);
+  const values = async () =>
+    (await readExperimentMeasurements(where)).map(({ reported }) => Number(reported)).sort((a, b) => a - b);
+  expect(await values()).toEqual([3, 5, 11, 14, 22, 26, 27]);
+  await last.update({
+    state: 'withdrawn',
+    endReason: 'wrong file',
+    endedBy: actor.userId,
+    endedAt: new Date()
+  });
+  expect(await values()).toEqual([3, 5, 6, 11, 12, 14]);
+});
+
 test('an import that is only received does not count, and another lab reads nothing', async () => {
   const { actor, study, entry, place, where } = await bench();
   const stranger = await makeMember();

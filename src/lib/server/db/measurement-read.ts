@@ -1,6 +1,16 @@
 import type { PoolClient } from 'pg';
-import type { MeasurementState, ReportedBasis } from '../../domain/vocabulary';
+import {
+  arrays,
+  counting,
+  readCountingRows,
+  selected,
+  type Cells,
+  type CountingMeasurement,
+  type MeasuredInjection
+} from './counting-rows';
 import { withReadingClient } from './reading-client';
+
+export type { CountingMeasurement };
 
 /** An import that counts: stored, in the order of storing. */
 export interface CountingImport {
@@ -18,15 +28,6 @@ export interface MeasuredExtract {
   readonly aliquotShare: number;
 }
 
-interface MeasuredInjection {
-  readonly id: string;
-  readonly importId: string;
-  /** Repeated injections of one extract or level count up from 1. */
-  readonly number: number;
-  readonly dilution: number;
-  readonly runAt: Date | null;
-}
-
 export interface ExtractInjection extends MeasuredInjection {
   readonly extract: MeasuredExtract;
 }
@@ -37,120 +38,6 @@ export interface LevelInjection extends MeasuredInjection {
 
 export interface CheckInjection extends MeasuredInjection {
   readonly checkStandardId: string;
-}
-
-/** One counting number with the cell it stood in, joined with its injection. */
-export interface CountingMeasurement<Injection> {
-  /** Within the lab. */
-  readonly id: string;
-  readonly analyteId: string;
-  readonly basis: ReportedBasis;
-  readonly state: MeasurementState;
-  /** Area, or amount or concentration in the unit of its basis. */
-  readonly reported: number | null;
-  readonly internalArea: number | null;
-  readonly internalAnalyteId: string | null;
-  readonly limitValue: number | null;
-  readonly rawText: string;
-  /** 1-based into the import's sheet names; row and column 1-based. */
-  readonly sheet: number;
-  readonly sheetRow: number;
-  readonly sheetColumn: number;
-  readonly importId: string;
-  readonly injection: Injection;
-}
-
-type Cells = [
-  id: string,
-  analyteId: string,
-  basis: ReportedBasis,
-  state: MeasurementState,
-  reported: number | null,
-  internalArea: number | null,
-  internalAnalyteId: string | null,
-  limitValue: number | null,
-  rawText: string,
-  sheet: number,
-  sheetRow: number,
-  sheetColumn: number,
-  importId: string,
-  injectionId: string
-];
-
-const selected = `SELECT id, analyte_id, basis, state, reported, internal_area, internal_analyte_id, limit_value, raw_text, sheet,
-  sheet_row, sheet_column, import_id, injection_id FROM measurements`;
-
-async function arrays<Row extends unknown[]>(
-  client: PoolClient,
-  text: string,
-  values: unknown[]
-): Promise<Row[]> {
-  return (await client.query<Row>({ text, values, rowMode: 'array' })).rows;
-}
-
-/**
- * Joins numbers with their injections and keeps those that count: of several stored imports with rows for the same place and
- * analyte, the one stored last.
- */
-function counting<Injection extends MeasuredInjection>(
-  rows: readonly Cells[],
-  injections: ReadonlyMap<string, Injection>,
-  imports: ReadonlyMap<string, number>,
-  placeOf: (injection: Injection) => string
-): CountingMeasurement<Injection>[] {
-  const joined: CountingMeasurement<Injection>[] = [];
-  for (const [
-    id,
-    analyteId,
-    basis,
-    state,
-    reported,
-    internalArea,
-    internalAnalyteId,
-    limitValue,
-    rawText,
-    sheet,
-    sheetRow,
-    sheetColumn,
-    importId,
-    injectionId
-  ] of rows) {
-    const injection = injections.get(injectionId);
-    if (!injection || !imports.has(importId)) continue;
-    joined.push({
-      id,
-      analyteId,
-      basis,
-      state,
-      reported,
-      internalArea,
-      internalAnalyteId,
-      limitValue,
-      rawText,
-      sheet,
-      sheetRow,
-      sheetColumn,
-      importId,
-      injection
-    });
-  }
-  if (imports.size < 2) return joined;
-
-  // Injections of one place share its list of analytes, so that a row costs one look-up and no text of its own.
-  const places = new Map<string, Map<string, number>>();
-  const latest = new Map<Injection, Map<string, number>>();
-  for (const injection of injections.values()) {
-    const place = placeOf(injection);
-    const known = places.get(place) ?? new Map<string, number>();
-    places.set(place, known);
-    latest.set(injection, known);
-  }
-  const orderOf = (row: CountingMeasurement<Injection>): number => imports.get(row.importId) ?? 0;
-  for (const row of joined) {
-    const known = latest.get(row.injection);
-    known?.set(row.analyteId, Math.max(known.get(row.analyteId) ?? 0, orderOf(row)));
-  }
-  return joined.filter((row) => orderOf(row) === latest.get(row.injection)?.get(row.analyteId));
 }
 
 async function storedImports(
@@ -237,20 +124,13 @@ export async function readExperimentMeasurements(
     const imports = await storedImports(client, labId, studyId);
     if (imports.size === 0) return [];
     const injections = await extractInjections(client, labId, studyId, experimentIds);
-    const [only] = experimentIds;
-    const rows =
+    const placeOf = ({ extract }: ExtractInjection): string => `${extract.replicateId} ${extract.fractionId}`;
+    const which =
       experimentIds.length === 1
-        ? await arrays<Cells>(client, `${selected} WHERE experiment_id = $2 AND lab_id = $1`, [labId, only])
-        : await arrays<Cells>(client, `${selected} WHERE experiment_id = ANY ($2::uuid[]) AND lab_id = $1`, [
-            labId,
-            experimentIds
-          ]);
-    return counting(
-      rows,
-      injections,
-      imports,
-      ({ extract }) => `${extract.replicateId} ${extract.fractionId}`
-    );
+        ? { condition: 'experiment_id = $2 AND lab_id = $1', values: [labId, experimentIds[0]] }
+        : { condition: 'experiment_id = ANY ($2::uuid[]) AND lab_id = $1', values: [labId, experimentIds] };
+    const rows = await readCountingRows(client, which, injections, imports, placeOf);
+    return counting(rows, injections, imports, placeOf);
   });
 }
 
@@ -291,11 +171,10 @@ export async function readCalibrationMeasurements(
         { id, importId, number, dilution, runAt, levelId }
       ])
     );
-    const rows = await arrays<Cells>(client, `${selected} WHERE calibration_set_id = $2 AND lab_id = $1`, [
-      labId,
-      calibrationSetId
-    ]);
-    return counting(rows, injections, imports, ({ levelId }) => levelId);
+    const placeOf = ({ levelId }: LevelInjection): string => levelId;
+    const which = { condition: 'calibration_set_id = $2 AND lab_id = $1', values: [labId, calibrationSetId] };
+    const rows = await readCountingRows(client, which, injections, imports, placeOf);
+    return counting(rows, injections, imports, placeOf);
   });
 }
 
