@@ -244,7 +244,9 @@ describe('provenance', () => {
       ['Concentration in the vial', '4'],
       ['Dilution of the vial', '1'],
       ['Final volume', '2'],
-      ['Share of the fraction in the extract', '1']
+      ['Share of the fraction in the extract', '1'],
+      // Five levels before it, two other portions after it.
+      ['Place in its sequence', '6 of 8']
     ]);
     // The factory writes row 2 and on, one number a row, into column 4: the sixth number stands in D7.
     expect(amount.cells).toEqual([

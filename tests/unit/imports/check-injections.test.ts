@@ -85,6 +85,26 @@ describe('the injections of a check', () => {
     expect(problems).toEqual(['check injections unclear']);
   });
 
+  it('with a time in some rows only are read where the times agree, and refused where they do not', async () => {
+    const head = 'Sample;Analyte;Area;Acquired at';
+    const [records, none] = await read([
+      head,
+      'CCV;Caffeine;1;2026-03-04 10:00',
+      'CCV;α-Testol;2;',
+      'CCV;Caffeine;3;2026-03-04 14:00',
+      'CCV;α-Testol;4;2026-03-04 14:00'
+    ]);
+    expect([records, none]).toEqual([['ccv 1 Ca 1', 'ccv 1 α- 2', 'ccv 2 Ca 3', 'ccv 2 α- 4'], []]);
+    const [, problems] = await read([
+      head,
+      'CCV;Caffeine;1;2026-03-04 10:00',
+      'CCV;α-Testol;2;2026-03-04 14:00',
+      'CCV;Caffeine;3;2026-03-04 14:00',
+      'CCV;α-Testol;4;'
+    ]);
+    expect(problems).toEqual(['check injections unclear']);
+  });
+
   it('with nothing in their cells were not run', async () => {
     expect(await read(['Sample;Caffeine area;α-Testol area', 'CCV;;', 'CCV;5;'])).toEqual([
       ['ccv 1 Ca 5', 'ccv 1 α- null'],

@@ -43,7 +43,14 @@ export function numberedChecks(
     for (const [draft, run] of runs) runOf.set(draft, `${key} ${run}`);
   }
   const filled = new Set<string>();
-  for (const [draft, run] of runOf) if (draft.state !== 'missing') filled.add(run);
+  const momentOf = new Map<string, string>();
+  for (const [draft, run] of runOf) {
+    if (draft.state !== 'missing') filled.add(run);
+    if (draft.acquiredAt === null) continue;
+    const known = momentOf.get(run);
+    if (known === undefined) momentOf.set(run, draft.acquiredAt);
+    else if (known !== draft.acquiredAt) reportTwoMoments(draft, known, problems);
+  }
   const numberOf = new Map<string, number>();
   const counted = new Map<string, number>();
   return drafts.flatMap((draft): readonly DraftRecord[] => {
@@ -57,7 +64,21 @@ export function numberedChecks(
       counted.set(checkStandardId, number);
       numberOf.set(run, number);
     }
-    return [{ ...draft, injection: number }];
+    // A time that one row of the injection gives is that of all.
+    return [{ ...draft, injection: number, acquiredAt: momentOf.get(run) ?? null }];
+  });
+}
+
+function reportTwoMoments(draft: DraftRecord, known: string, problems: Problems): void {
+  problems.oncePer(`moment ${draft.placeName}`, 'error', {
+    code: 'check injections unclear',
+    sheet: draft.sheet,
+    row: draft.row,
+    column: draft.column,
+    found: `${draft.acquiredAt ?? ''} and ${known}`,
+    expected: 'the acquisition time in each row of the check',
+    what: `Some rows of the check ${draft.placeName} have an acquisition time and others have none, so that ${known} and ${draft.acquiredAt ?? ''} would fall into one injection.`,
+    fix: 'Give the time in each of its rows, or in none.'
   });
 }
 

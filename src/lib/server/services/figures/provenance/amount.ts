@@ -95,7 +95,7 @@ function inputsOf(
   const { trace } = item;
   const nameOf = (id: string): string => figures.entries.get(id)?.name ?? 'internal standard';
   const { reported, practice } = trace;
-  const inputs: ProvenanceInput[] = [...injectionInput(figures, reported)];
+  const inputs: ProvenanceInput[] = [];
   const add = (...given: Parameters<typeof input>): void => void inputs.push(input(...given));
   if (several)
     add('Injection', String(reported.injection), '', {
@@ -127,7 +127,7 @@ function inputsOf(
     else add('As reported', trace.x, unit);
   }
   factorsOf(trace).forEach((given) => add(...given));
-  return inputs;
+  return [...inputs, ...injectionInput(figures, reported)];
 }
 
 function factorsOf(trace: AmountTrace): Parameters<typeof input>[] {
