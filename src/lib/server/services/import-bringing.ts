@@ -68,22 +68,34 @@ export async function bringFile(
   });
   if (received.storedBefore) return knownAlready(actor, study, received.importId);
   const kept = await importOfStudy(actor, study, received.importId);
-  if (!parameters.store) return answerUnstored(actor, study, kept);
+  if (!parameters.store) return answerUnstored(actor, study, kept, parameters);
+  const first = await store(actor, study, kept, parameters);
+  if (!(first instanceof Invalid)) return first;
+  const answer = await answerUnstored(actor, study, kept, parameters);
+  if (answer.questions.length > 0) return answer;
+  // What stood against it is gone at a second look, such as a reading that was ended from outside.
+  const second = await store(actor, study, kept, parameters);
+  if (second instanceof Invalid) throw second;
+  return second;
+}
+
+/** @returns what came of it, or what kept the file from being stored */
+async function store(
+  actor: Actor,
+  study: Study,
+  kept: Import,
+  { confirm, reason }: ImportParameters
+): Promise<BroughtFileView | Invalid> {
   try {
-    await storeImport(actor, studyCode, kept.id, {
-      questionsConfirmed: (code) => parameters.confirm.includes(codeForPrograms(code)),
-      reason: parameters.reason
+    await storeImport(actor, study.code, kept.id, {
+      questionsConfirmed: (code) => confirm.includes(codeForPrograms(code)),
+      reason
     });
   } catch (refusal) {
-    if (refusal instanceof Invalid) {
-      const answer = await answerUnstored(actor, study, kept, parameters.confirm);
-      if (answer.questions.length > 0) return answer;
-      // What stood against it is gone by now, or is nothing that the file could be mended for.
-      throw refusal;
-    }
+    if (refusal instanceof Invalid) return refusal;
     if (!(refusal instanceof Conflict)) throw refusal;
     // Sent twice at the same moment: the other one stored it.
-    const now = await sameBytes(actor, study, sha256);
+    const now = await sameBytes(actor, study, kept.sha256);
     if (now?.state === 'stored') return knownAlready(actor, study, now.id);
     throw refusal;
   }
@@ -152,7 +164,7 @@ async function answerUnstored(
   actor: Actor,
   study: Study,
   kept: Import,
-  confirmed: readonly string[] = []
+  { confirm, reason }: ImportParameters
 ): Promise<BroughtFileView> {
   const standing = await standingOfFile(study, kept);
   const of = (severity: FileProblemView['severity']): readonly FileProblemView[] =>
@@ -168,7 +180,11 @@ async function answerUnstored(
   return {
     outcome: 'received',
     import: factsOf(await listedImport(actor, study, kept.id)),
-    questions: of('question').filter(({ code, answer }) => answer !== 'confirm' || !confirmed.includes(code)),
+    questions: of('question').filter(
+      ({ code, answer }) =>
+        !(answer === 'confirm' && confirm.includes(code)) &&
+        !(answer === 'reason' && reason.trim().length >= 3)
+    ),
     notes: of('note')
   };
 }
