@@ -4,7 +4,7 @@ import type { MovedFigureView, MovedLossView, MovesView, RangeMoveView } from '.
 import { calibrate } from '../amounts/calibration';
 import { checkCalibration } from '../amounts/calibration-check';
 import type { CalibrationSet } from '../amounts/types';
-import { injectionsRead, type ReadInjection } from './calibration-readings';
+import { rangeMoves } from './calibration-range-moves';
 import { fittedEntries, namesIn, setOf } from './calibration-fits';
 import { counted, listed } from './changes';
 import { addressText, type FigureAddress } from './figures/addresses';
@@ -169,62 +169,6 @@ function bySize(a: MovedFigureView, b: MovedFigureView): number {
   return weight(b) - weight(a);
 }
 
-const sideTexts: readonly {
-  readonly from: (side: ReadInjection['side'] | undefined) => boolean;
-  readonly to: ReadInjection['side'];
-  readonly text: (count: number) => string;
-  readonly worse: boolean;
-}[] = [
-  {
-    from: (side) => side !== 'above',
-    to: 'above',
-    text: (count) => `${counted(count, 'reading')} would lie above the highest level and give no amount`,
-    worse: true
-  },
-  {
-    from: (side) => side !== 'unreadable',
-    to: 'unreadable',
-    text: (count) => `${counted(count, 'reading')} would give no amount`,
-    worse: true
-  },
-  {
-    from: (side) => side === 'inside',
-    to: 'below',
-    text: (count) => `${counted(count, 'reading')} would lie below the lowest level`,
-    worse: true
-  },
-  {
-    from: (side) => side !== 'inside',
-    to: 'inside',
-    text: (count) => `${counted(count, 'reading')} would come into the range`,
-    worse: false
-  },
-  {
-    from: (side) => side === 'above' || side === 'unreadable',
-    to: 'below',
-    text: (count) => `${counted(count, 'reading')} would give an amount, below the lowest level`,
-    worse: false
-  }
-];
-
-function rangeMoves(before: StudyFigures, after: StudyFigures, experiment: StudyExperiment): RangeMoveView[] {
-  const held = new Set(experiment.reported.map(({ entryId }) => entryId));
-  return before.data.panel
-    .filter(({ id }) => held.has(id))
-    .flatMap((entry) => {
-      const sides = new Map(
-        injectionsRead(before.amounts(experiment.id), entry.id).map(({ id, side }) => [id, side])
-      );
-      const now = injectionsRead(after.amounts(experiment.id), entry.id);
-      return sideTexts.flatMap(({ from, to, text, worse }) => {
-        const count = now.filter(({ id, side }) => side === to && from(sides.get(id))).length;
-        return count === 0
-          ? []
-          : [{ experiment: experiment.number, name: entry.name, text: text(count), worse }];
-      });
-    });
-}
-
 /** What the stages of each variant take, where that moves: it follows from the recoveries, and is named by rules of its own. */
 function movedLosses(before: StudyFigures, after: StudyFigures): MovedLossView[] {
   return before.data.variants
@@ -283,17 +227,20 @@ function sentenceOf(
 ): string {
   if (users === 0) return 'No experiment uses this set yet, so no figure moves.';
   if (compared === 0) return 'No figure rests on this set yet, so none moves.';
-  const worse = range.filter((item) => item.worse).length;
+  const worse = new Set(range.flatMap((item) => (item.worse ? [item.name] : []))).size;
   const outside = worse === 0 ? '' : ` Readings of ${counted(worse, 'analyte')} would leave the range.`;
   if (moved.length === 0) {
     return `None of the ${counted(compared, 'figure')} that rest on this set moves.${outside}`;
   }
   const sizes = moved.flatMap(({ points }) => (points === null ? [] : [Math.abs(points)]));
   const largest = Math.max(0, ...sizes);
-  const by =
-    sizes.length === 0
-      ? ''
-      : `, by ${largest < 0.05 ? 'less than 0.1 points' : `up to ${percentText(largest)} points`}`;
+  const by = largest < 0.05 ? 'by less than 0.1 points' : `by up to ${percentText(largest)} points`;
+  const gone = moved.filter(({ before, after }) => before !== null && after === null).length;
+  const of = `${moved.length} of ${counted(compared, 'figure')}`;
+  const start =
+    gone === 0
+      ? `${of} move${moved.length === 1 ? 's' : ''}${sizes.length === 0 ? '' : `, ${by}`}.`
+      : `Of ${counted(compared, 'figure')} ${gone} would be lost${sizes.length === 0 ? '' : `, and ${sizes.length} move${sizes.length === 1 ? 's' : ''} ${by}`}.`;
   const verdicts = moved.filter(({ verdicts: [before, after] }) => before !== after);
   const changed =
     verdicts.length === 0
@@ -305,7 +252,5 @@ function sentenceOf(
           ),
           4
         )}.`;
-  const gone = moved.filter(({ before, after }) => before !== null && after === null).length;
-  const lost = gone === 0 ? '' : ` ${counted(gone, 'figure')} would be lost.`;
-  return `${moved.length} of ${counted(compared, 'figure')} move${moved.length === 1 ? 's' : ''}${by}. ${changed}${lost}${outside}`;
+  return `${start} ${changed}${outside}`;
 }
