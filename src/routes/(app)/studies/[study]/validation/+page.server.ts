@@ -1,4 +1,4 @@
-import { redirect } from '@sveltejs/kit';
+import { fail, redirect } from '@sveltejs/kit';
 import {
   duplicatePairForm,
   pairRemovalForm,
@@ -43,12 +43,20 @@ function backTo(study: string, url: URL, part: string): never {
 }
 
 export const actions: Actions = {
-  choose: ({ request, locals, params: { study }, url }) =>
-    answerForm(request, async (fields, form) => {
-      const sent = checked(validationChoiceForm, { ...fields, experiments: form.getAll('experiment') });
+  choose: async ({ request, locals, params: { study }, url }) => {
+    let ticked: readonly FormDataEntryValue[] = [];
+    const answer = await answerForm(request, async (fields, form) => {
+      ticked = form.getAll('experiment');
+      const sent = checked(validationChoiceForm, { ...fields, experiments: ticked });
       await chooseValidationEvidence(memberIn(locals), study, sent);
       backTo(study, url, sent.part);
-    }),
+    });
+    // What was ticked comes back as one field, as all that was typed does.
+    return fail(answer.status, {
+      ...answer.data,
+      values: { ...answer.data.values, experiment: ticked.join(',') }
+    });
+  },
 
   pair: ({ request, locals, params: { study }, url }) =>
     answerForm(request, async (fields) => {
