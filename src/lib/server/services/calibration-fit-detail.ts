@@ -25,7 +25,9 @@ function curveOf({ fit, points }: UsableLine): readonly CurvePointView[] {
   const [low, high] = fit.range;
   const even = Array.from({ length: steps + 1 }, (_, step) => low + ((high - low) * step) / steps);
   const logarithmic = low > 0 ? even.map((_, step) => low * (high / low) ** (step / steps)) : [];
-  const xs = [...new Set([...even, ...logarithmic, ...points.map(({ x }) => x)])].filter((x) => x >= low && x <= high).sort((a, b) => a - b);
+  const xs = [...new Set([...even, ...logarithmic, ...points.map(({ x }) => x)])]
+    .filter((x) => x >= low && x <= high)
+    .sort((a, b) => a - b);
   return curveBand(fit, xs).map(({ x, height, confidence, prediction }) => ({
     x,
     y: height,
