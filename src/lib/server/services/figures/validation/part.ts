@@ -29,6 +29,7 @@ export function partOf(context: ValidationContext, key: ValidationPartKey, own: 
     pairs: [],
     pairChoices: [],
     ...own,
+    rests: empty ? [] : (own.rests ?? []),
     tables: empty ? [] : (own.tables ?? []),
     counts: countsOf(empty ? [] : (own.tables ?? []))
   };
