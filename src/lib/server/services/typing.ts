@@ -1,7 +1,7 @@
 import { QueryTypes, Transaction } from 'sequelize';
 import type { Actor } from '../../domain/actor';
 import { reportedBasisLabels, type ReportedBasis } from '../../domain/vocabulary';
-import type { TypedCells, TypingCheck, TypingColumn, TypingRow, TypingView } from '../../views/typing';
+import type { TypedCells, TypingCheck, TypingRow, TypingView } from '../../views/typing';
 import { Draft } from '../db/models/draft';
 import { Experiment } from '../db/models/experiment';
 import { Import } from '../db/models/import';
@@ -11,11 +11,12 @@ import { inTransaction } from '../db/transaction';
 import { Invalid, NotFound } from '../errors';
 import { mapInChild } from '../imports/read-in-child';
 import { typedFile, type TypedFile } from '../imports/typed-file';
-import type { Expectation, Problem } from '../imports/types';
+import type { Problem } from '../imports/types';
 import { loadExpectation, nothingDeclared, type Declared } from './import-expectation';
 import { declareAboutImport, receiveFile } from './imports';
 import { require } from './permissions';
 import { studyKeys, studyOf } from './study-of';
+import { gridColumns, gridRows, placed } from './typing-grid';
 
 const draftSize = { cells: 60_000 } as const;
 
@@ -49,69 +50,6 @@ const declaredOf = (experiment: Experiment, basis: ReportedBasis): Declared => (
   experimentId: experiment.id,
   basis
 });
-
-function gridRows(expectation: Expectation, experiment: Experiment, injections: number): TypingRow[] {
-  const own = expectation.experiments.find(({ id }) => id === experiment.id);
-  const numbers = Array.from({ length: injections }, (_, index) => index + 1);
-  const row = (id: string, sample: string, fraction: { id: string; name: string } | null, isLevel = false) =>
-    numbers.map((injection): TypingRow => ({
-      key: `${id}_${fraction?.id ?? ''}_${injection}`,
-      sample,
-      fraction: fraction?.name ?? null,
-      injection,
-      isLevel
-    }));
-  const portions = (own?.replicates ?? []).flatMap(({ id, label, takesFraction }) =>
-    takesFraction
-      ? (own?.fractions ?? []).flatMap((fraction) => row(id, label, fraction))
-      : row(id, label, null)
-  );
-  const set = expectation.calibrationSets.find(({ id }) => id === experiment.calibrationSetId);
-  return [...portions, ...(set?.levels ?? []).flatMap(({ id, name }) => row(id, name, null, true))];
-}
-
-function gridColumns(expectation: Expectation, basis: ReportedBasis): TypingColumn[] {
-  const preparation = (key: string, label: string, unit: string | null = null): TypingColumn => ({
-    key,
-    label,
-    unit,
-    kind: 'preparation'
-  });
-  const vial =
-    basis === 'area' || basis === 'vial'
-      ? [
-          preparation('final-volume', 'Final volume', 'mL'),
-          preparation('dilution', 'Dilution'),
-          preparation('share', 'Aliquot share')
-        ]
-      : [];
-  const entries = expectation.panel.flatMap(({ id, name, role }): TypingColumn[] => {
-    const isStandard = role === 'injection internal standard';
-    if (isStandard && basis !== 'area') return [];
-    const unit = basis === 'area' ? null : basis === 'ng' ? 'ng' : basis === 'vial' ? 'ng/mL' : 'ng/L';
-    return [{ key: id, label: name, unit, kind: isStandard ? 'internal standard' : 'value' }];
-  });
-  return [...vial, ...entries];
-}
-
-/** Cells that have a place in the grid now, and how many have none. */
-function placed(
-  cells: TypedCells,
-  rows: readonly TypingRow[],
-  columns: readonly TypingColumn[]
-): { readonly cells: TypedCells; readonly without: number } {
-  const columnKeys = new Set(columns.map(({ key }) => key));
-  const rowKeys = new Set(rows.map(({ key }) => key));
-  const kept: Record<string, Record<string, string>> = {};
-  let without = 0;
-  for (const [row, own] of Object.entries(cells)) {
-    for (const [column, text] of Object.entries(own)) {
-      if (rowKeys.has(row) && columnKeys.has(column)) (kept[row] ??= {})[column] = text;
-      else without += 1;
-    }
-  }
-  return { cells: kept, without };
-}
 
 async function storedValues(experiment: Experiment): Promise<TypingView['stored']> {
   const [row] = await sequelize.query<{ values: number; by: string; at: Date }>(
