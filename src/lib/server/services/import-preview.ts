@@ -144,8 +144,6 @@ function sheetWindow(
   const sheet = workbook.sheets[window.sheet ?? Math.max(0, firstRead)];
   if (!sheet) return null;
   const read = mapped.reading.sheets.find((reading) => reading.sheet === sheet.name) ?? null;
-  // With the analytes down it is the rows that have meanings.
-  const columns = read?.orientation === 'analytes down' ? [] : (read?.columns ?? []);
   const columnCount = Math.min(sheet.columnCount, previewLimits.columns);
   const first = Math.max(1, Math.min(window.fromRow, Math.max(1, sheet.rowCount)));
   const last = Math.min(sheet.rowCount, first + previewLimits.rows - 1);
