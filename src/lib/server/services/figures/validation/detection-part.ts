@@ -76,10 +76,10 @@ export function detectionPart(context: ValidationContext, link: Link): Validatio
     tables: [
       {
         key: 'detection',
-        caption: `Method detection limits, ${perLitre ? 'ng/L of sample' : 'ng in the preparation'}`,
+        caption: `Method detection limits, ${perLitre ? 'ng/L of sample' : 'ng in the preparation'}; n spiked + blanks`,
         judged: true,
         columns: [
-          textColumn('n', 'Spiked + blanks'),
+          textColumn('n', 'n'),
           column('spike', 'Spike', unit),
           column('mdls', 'MDLs', unit),
           column('mdlb', 'MDLb', unit),
