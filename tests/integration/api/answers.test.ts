@@ -1,4 +1,4 @@
-import { beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { z } from 'zod';
 import { demoAccounts } from '../../../seeders/demo-accounts';
 import { apiSchemas } from '../../../src/lib/schemas/api/describe';
@@ -10,7 +10,6 @@ import { User } from '../../../src/lib/server/db/models/user';
 import { memberOf } from '../../../src/lib/server/services/sessions';
 import { makeAccessKey } from '../../../src/lib/server/services/access-keys';
 import { useOwnDatabase } from '../database';
-import { afterAll } from 'vitest';
 import { call, read } from './program';
 
 /*
