@@ -20,7 +20,6 @@ export function partOf(context: ValidationContext, key: ValidationPartKey, own: 
     key,
     title: validationPartTitles[key],
     evidence,
-    rests: [],
     rules: [],
     beside: [],
     missing: [],
