@@ -237,6 +237,16 @@ describe('what a file lacks or says otherwise than the record is asked about', (
     expect(nowhere).toMatchObject({ code: 'surrogate missing', found: 'none in this file' });
   });
 
+  it('no surrogate of portions that did not receive it', () => {
+    const panel = [panelExpectation('Caffeine'), panelExpectation('Surrogol', { role: 'surrogate' })];
+    const withSpikes = (spiked: Readonly<Record<string, number>>) =>
+      offered({ panel, experiments: [experimentExpectation({ spikesNg: { spiked } })] });
+    expect(codes(amounts('ng', [5, 5]), withSpikes({ 'entry Caffeine': 5 }))).toEqual([]);
+    expect(codes(amounts('ng', [5, 5]), withSpikes({ 'entry Caffeine': 5, 'entry Surrogol': 4 }))).toEqual([
+      'question surrogate missing D2'
+    ]);
+  });
+
   it('a sample volume that is another on record', () => {
     const text =
       'Sample|Fraction|Analyte|ng|Sample volume (mL)\nS1|Elution 1|Caffeine|5|500\nS2|Elution 1|Caffeine|5|500.5';

@@ -66,35 +66,43 @@ function askAboutFractions(portions: readonly Portion[], problems: Problems): vo
   }
 }
 
-/** Surrogates are judged in every portion: one without a value beside results of targets is asked about. */
+/** True unless the record says what the portion received, and this was not among it. */
+function received({ experiment, replicate }: Portion, entryId: string): boolean {
+  if (!experiment.spikesNg) return true;
+  const ofKind = experiment.spikesNg[replicate.kind] ?? {};
+  return entryId in ofKind || entryId in (replicate.spikesNg ?? {});
+}
+
+/** Surrogates are judged in every portion that received them: one without a value beside results of targets is asked about. */
 function askAboutSurrogates(portions: readonly Portion[], { panel }: Expectation, problems: Problems): void {
   const targets = new Set(panel.filter(({ role }) => role === 'target').map(({ id }) => id));
-  const places = portions.flatMap(({ replicate, records }) =>
+  const everywhere = portions.flatMap((portion) =>
     [
       ...grouped(
-        records.filter(({ state }) => state !== 'missing'),
+        portion.records.filter(({ state }) => state !== 'missing'),
         (record) => String(fractionOf(record))
       ).values()
     ]
       .filter((own) => own.some(({ panelEntryId }) => targets.has(panelEntryId)))
-      .map((own) => ({ replicate, own, entries: new Set(own.map(({ panelEntryId }) => panelEntryId)) }))
+      .map((own) => ({ portion, own, entries: new Set(own.map(({ panelEntryId }) => panelEntryId)) }))
   );
   for (const surrogate of panel) {
     if (surrogate.role !== 'surrogate') continue;
+    const places = everywhere.filter(({ portion }) => received(portion, surrogate.id));
     const without = places.filter(({ entries }) => !entries.has(surrogate.id));
     // In half of the places or fewer it was perhaps not meant to be measured.
     if (without.length * 2 >= places.length && without.length < places.length) continue;
     const [first] = without[0]?.own ?? [];
     if (!first) continue;
     const isNowhere = without.length === places.length;
-    const labels = [...new Set(without.map(({ replicate }) => replicate.label))];
+    const labels = [...new Set(without.map(({ portion }) => portion.replicate.label))];
     problems.question({
       code: 'surrogate missing',
       sheet: first.sheet,
       row: first.row,
       column: first.column,
       found: isNowhere ? 'none in this file' : `none in ${labels.slice(0, 6).join(', ')}`,
-      expected: `${surrogate.name} in every portion`,
+      expected: `${surrogate.name} in every portion that received it`,
       what: isNowhere
         ? `The surrogate ${surrogate.name} is nowhere in this file.`
         : `The surrogate ${surrogate.name} has no result in ${first.placeName}${without.length > 1 ? ` and ${without.length - 1} more ${without.length === 2 ? 'place' : 'places'}` : ''}, though targets have.`,
