@@ -76,7 +76,7 @@ it('above range at first and not detected when diluted is no zero', async () => 
       ['S2', 'Contradictin', 20000, 1, ''],
       ['S2', 'Contradictin', 'ND', 2, 5]
     ],
-    { experiment }
+    { experiment, confirmed: true }
   );
   // S1 alone: 9 of 10 ng.
   const row = await bench.result(experiment, 'Contradictin');
