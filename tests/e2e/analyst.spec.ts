@@ -85,7 +85,7 @@ test('a wrong cell is named by sheet and cell, and the file is stored whole or n
     await expect(problem).toContainText(what);
     await expect(analyst.getByText('Mend the cells named above here, or in the file')).toBeVisible();
     await expect(analyst.getByRole('button', { name: /^Store / })).toHaveCount(0);
-    await problem.getByRole('link').click();
+    await problem.getByRole('link', { name: place, exact: true }).click();
     await expect(analyst.locator(`#cell-${place.split(', ')[1] ?? ''}`)).toBeInViewport();
   }
 });
