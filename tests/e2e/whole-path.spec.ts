@@ -278,7 +278,7 @@ test('four people take a study from its first line to the summary', async ({ bro
       ).toBeVisible();
       await expect(
         analyst.getByRole('region', { name: 'Sheet Results' }).getByRole('columnheader', { name: /^D/ })
-      ).toContainText('value');
+      ).toContainText('area');
       const record = analyst
         .getByRole('region', { name: 'Records' })
         .getByRole('row')
