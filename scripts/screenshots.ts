@@ -61,6 +61,9 @@ try {
     await signIn(page);
     await open(page);
     await page.waitForLoadState('networkidle');
+    // Nothing is pointed at in a picture.
+    await page.mouse.move(0, 0);
+    await page.waitForTimeout(300);
     await page.screenshot({ path: resolve(folder, `${name}.png`) });
     console.log(`scripts/screenshots/${name}.png`);
     await context.close();
