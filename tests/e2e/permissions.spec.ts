@@ -1,4 +1,10 @@
-import { expect, test, type APIRequestContext, type APIResponse } from '@playwright/test';
+import {
+  expect,
+  test,
+  type APIRequestContext,
+  type APIResponse,
+  type PlaywrightWorkerArgs
+} from '@playwright/test';
 import type { AccessScope } from '../../src/lib/domain/access-scopes';
 import { isAllowed } from '../../src/lib/domain/permissions';
 import { roles, type Role } from '../../src/lib/domain/roles';
@@ -122,6 +128,15 @@ async function ask(
   });
 }
 
+/** The examples as the chemist reads them: some links are shown to those alone who may change what they lead to. */
+async function examplesOf(playwright: PlaywrightWorkerArgs['playwright']): Promise<Examples> {
+  const chemist = await playwright.request.newContext({ baseURL: origin });
+  await signInByRequest(chemist, 'chemist', origin);
+  const examples = await readExamples(chemist);
+  await chemist.dispose();
+  return examples;
+}
+
 /** What refuses a stranger: the way to the sign-in page, or 401 for a program. */
 async function isTurnedAway(way: Way, response: APIResponse): Promise<boolean> {
   if (isApi(way)) {
@@ -156,11 +171,7 @@ test('every way in can be walked', () => {
 
 for (const role of roles) {
   test(`every way in answers a ${role} as the permission table says`, async ({ request, playwright }) => {
-    // Some links are shown to those alone who may change what they lead to.
-    const chemist = await playwright.request.newContext({ baseURL: origin });
-    await signInByRequest(chemist, 'chemist', origin);
-    const examples = await readExamples(chemist);
-    await chemist.dispose();
+    const examples = await examplesOf(playwright);
     await signInByRequest(request, role, origin);
     const wrong: string[] = [];
     for (const way of ways) {
@@ -199,10 +210,7 @@ test('a stranger gets into the public pages and is turned away everywhere else',
   request,
   playwright
 }) => {
-  const chemist = await playwright.request.newContext({ baseURL: origin });
-  await signInByRequest(chemist, 'chemist', origin);
-  const examples = await readExamples(chemist);
-  await chemist.dispose();
+  const examples = await examplesOf(playwright);
   const wrong: string[] = [];
   for (const way of ways) {
     const response = await ask(request, way, examples);
@@ -258,10 +266,7 @@ for (const role of roles) {
     request,
     playwright
   }) => {
-    const chemist = await playwright.request.newContext({ baseURL: origin });
-    await signInByRequest(chemist, 'chemist', origin);
-    const examples = await readExamples(chemist);
-    await chemist.dispose();
+    const examples = await examplesOf(playwright);
     await signInByRequest(request, role, origin);
     const scopes: AccessScope[] = isAllowed(role, 'data.enter') ? ['read', 'import'] : ['read'];
     const { key } = await makeKey(request, origin, `walk of a ${role}`, scopes);

@@ -38,10 +38,8 @@ export const columnMeanings = [
 ] as const;
 export type ColumnMeaning = (typeof columnMeanings)[number];
 
-/** Meanings of which one column can be given for each analyte, beside the area or amount. */
-export const perAnalyteMeanings = [
-  'area',
-  'amount',
+/** What an instrument says of one result beside its area or amount. */
+export const besideMeanings = [
   'internal standard area',
   'limit',
   'retention time',
@@ -49,6 +47,13 @@ export const perAnalyteMeanings = [
   'signal to noise',
   'manual integration',
   'manual integration cause'
+] as const satisfies readonly ColumnMeaning[];
+
+/** Meanings of which one column can be given for each analyte. */
+export const perAnalyteMeanings = [
+  'area',
+  'amount',
+  ...besideMeanings
 ] as const satisfies readonly ColumnMeaning[];
 
 /**

@@ -70,11 +70,15 @@ export interface TableMapView {
 /** What one sample label of the file was found to mean. */
 export interface LabelView {
   readonly label: string;
+  /** The first row that has it; cell null: it stands in the sheet's name. */
   readonly sheet: string;
   readonly cell: string | null;
+  /** Rows. */
   readonly count: number;
   readonly how: 'name' | 'pattern' | 'run order' | 'assigned' | 'left out' | 'ambiguous' | 'not found';
+  /** In words; null: none. */
   readonly place: string | null;
+  /** Of one that was not found the nearest names, of an ambiguous one what it can mean. */
   readonly nearest: readonly string[];
 }
 

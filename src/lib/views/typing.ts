@@ -1,3 +1,4 @@
+import type { TypedCells } from '../domain/typed-cells';
 import type { ReportedBasis } from '../domain/vocabulary';
 
 /** One row of the grid for typing: an injection of an extract, of a standard or of a calibration level. */
@@ -16,9 +17,6 @@ export interface TypingColumn {
   readonly unit: string | null;
   readonly kind: 'preparation' | 'value' | 'internal standard';
 }
-
-/** Text as typed, by row key and column key. */
-export type TypedCells = Readonly<Record<string, Readonly<Record<string, string>>>>;
 
 export interface TypingView {
   readonly experiment: { readonly number: number; readonly title: string };

@@ -12,7 +12,8 @@ import {
   planTyping,
   typingGrid
 } from '../../../src/lib/server/services/typing';
-import type { TypedCells, TypingView } from '../../../src/lib/views/typing';
+import type { TypedCells } from '../../../src/lib/domain/typed-cells';
+import type { TypingView } from '../../../src/lib/views/typing';
 import { makeMember } from '../../factories/member';
 import { openBench, portions, type Bench } from '../by-hand/bench';
 

@@ -1,11 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { columnWindows } from '../../../src/routes/(app)/studies/[study]/experiments/[experiment]/type/column-windows';
-import {
-  changedCells,
-  laidOver
-} from '../../../src/routes/(app)/studies/[study]/experiments/[experiment]/type/typed-cells';
-import type { TypedCells, TypingColumn } from '../../../src/lib/views/typing';
+import { changedCells, filledCells, laidOver, type TypedCells } from '../../../src/lib/domain/typed-cells';
+import type { TypingColumn } from '../../../src/lib/views/typing';
 
 const keys = fc.constantFrom('a', 'b', 'c');
 const cells: fc.Arbitrary<TypedCells> = fc.dictionary(
@@ -35,6 +32,14 @@ describe('cells that are sent', () => {
         expect(changedCells(grid, { ...grid })).toEqual({});
       })
     );
+  });
+
+  it('that were taken back leave neither an empty cell nor an empty row', () => {
+    expect(
+      filledCells(laidOver({ a: { b: '1' }, c: { b: '2', d: '3' } }, { a: { b: '' }, c: { d: '' } }))
+    ).toEqual({
+      c: { b: '2' }
+    });
   });
 
   it('leave the grids they come from as they are', () => {

@@ -9,7 +9,8 @@ import {
   withPartsLacking
 } from '../../domain/sample-pattern';
 import type { PatternToken, SplitLabel } from '../../domain/sample-pattern';
-import type { Assignment, ExperimentExpectation, LabelReading } from './types';
+import type { LabelView } from '../../views/imports';
+import type { Assignment, ExperimentExpectation } from './types';
 
 /** A label that means one place; what it says besides is null where it says nothing. */
 export interface FoundLabel {
@@ -89,8 +90,8 @@ export class LabelReader {
   }
 
   /** Every label that was read, in the order of the file. */
-  readings(): readonly LabelReading[] {
-    return [...this.#known.values()].map(({ read, label, sheet, cell, count }): LabelReading => {
+  readings(): readonly LabelView[] {
+    return [...this.#known.values()].map(({ read, label, sheet, cell, count }): LabelView => {
       const base = { label, sheet, cell, count, place: null, nearest: [] };
       switch (read.kind) {
         case 'found':

@@ -1,5 +1,5 @@
 import type { ReportedBasis } from '../../domain/vocabulary';
-import type { ColumnMeaning } from '../../schemas/column-map';
+import { besideMeanings } from '../../schemas/column-map';
 import { linesInWords } from './cell-address';
 import type {
   NumberColumn,
@@ -168,15 +168,6 @@ function reportSeveral(
   }
 }
 
-const besideMeanings = [
-  'internal standard area',
-  'limit',
-  'retention time',
-  'ion ratio',
-  'signal to noise',
-  'manual integration',
-  'manual integration cause'
-] as const satisfies readonly ColumnMeaning[];
 type BesideMeaning = (typeof besideMeanings)[number];
 type Beside = Partial<Record<BesideMeaning, PlannedColumn>>;
 

@@ -1,5 +1,6 @@
 import type { ReportedBasis } from '../../domain/vocabulary';
-import type { TypedCells, TypingColumn, TypingRow } from '../../views/typing';
+import type { TypedCells } from '../../domain/typed-cells';
+import type { TypingColumn, TypingRow } from '../../views/typing';
 import { columnLetters } from './cell-address';
 
 /** What was typed, as the bytes that are kept of it, and the way back from a cell of these bytes to the grid. */

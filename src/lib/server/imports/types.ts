@@ -1,4 +1,5 @@
 import type { ColumnMap, Orientation } from '../../schemas/column-map';
+import type { LabelView } from '../../views/imports';
 import type {
   AdditionPoint,
   CheckStandardKind,
@@ -381,21 +382,6 @@ export interface ValueMeaning {
   readonly cell: string;
 }
 
-/** What a sample label was found to mean. */
-export interface LabelReading {
-  readonly label: string;
-  /** The first row that has it; cell null: it stands in the sheet's name. */
-  readonly sheet: string;
-  readonly cell: string | null;
-  /** Rows. */
-  readonly count: number;
-  readonly how: 'name' | 'pattern' | 'run order' | 'assigned' | 'left out' | 'ambiguous' | 'not found';
-  /** In words; null: none. */
-  readonly place: string | null;
-  /** Of one that was not found the nearest names, of an ambiguous one what it can mean. */
-  readonly nearest: readonly string[];
-}
-
 export interface MappedImport {
   /** What the file was read by. */
   readonly map: ColumnMap;
@@ -405,5 +391,5 @@ export interface MappedImport {
   readonly records: readonly MappedRecord[];
   readonly problems: readonly Problem[];
   readonly valueMeanings: readonly ValueMeaning[];
-  readonly labels: readonly LabelReading[];
+  readonly labels: readonly LabelView[];
 }

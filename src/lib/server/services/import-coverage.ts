@@ -87,7 +87,8 @@ export async function coveredPlaces(
   };
 }
 
-function placeKey({ place, acquiredAt }: MappedRecord): string | null {
+/** Where a record belongs, as values of later files cover those of earlier ones; null: it covers nothing. */
+export function placeKey({ place, acquiredAt }: MappedRecord): string | null {
   switch (place.kind) {
     case 'extract':
       return `${place.replicateId} ${place.fractionId ?? ''}`;

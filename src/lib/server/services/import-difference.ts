@@ -10,6 +10,7 @@ import { PanelEntry } from '../db/models/panel-entry';
 import type { Study } from '../db/models/study';
 import { cellAddress } from '../imports/cell-address';
 import type { Expectation, MappedRecord } from '../imports/types';
+import { placeKey } from './import-coverage';
 
 /** How many changed, gone and added values one page shows. */
 const shown = 200;
@@ -77,11 +78,9 @@ const inFile = (record: MappedRecord): Value => ({
   cell: `${record.sheet}, ${record.cell}`
 });
 
-function placeOf({ place }: MappedRecord): string | null {
-  if (place.kind === 'extract') return `${place.replicateId} ${place.fractionId ?? ''}`;
-  // A check is run many times under one label: each run is a value of its own.
-  return place.kind === 'level' ? place.levelId : null;
-}
+/** A check is run many times under one label: each run is a value of its own. */
+const placeOf = (record: MappedRecord): string | null =>
+  record.place.kind === 'check' ? null : placeKey(record);
 
 /**
  * What a file would change of the values that count now: changed, added, and gone, the last being values of the files that it covers

@@ -1,14 +1,14 @@
 import type { Carried, ColumnMap } from '../../schemas/column-map';
 import type { FileMapView, LabelView, PlaceGroup, TableMapView } from '../../views/imports';
 import { cellAddress, columnLetters } from '../imports/cell-address';
-import type { Expectation, LabelReading } from '../imports/types';
+import type { Expectation } from '../imports/types';
 import type { Declared } from './import-expectation';
 import type { FileRead } from './import-reading';
 
 /** How much of a long list one page shows. */
 const shown = { labels: 300, texts: 40 } as const;
 
-const needsLook: ReadonlySet<LabelReading['how']> = new Set(['not found', 'ambiguous']);
+const needsLook: ReadonlySet<LabelView['how']> = new Set(['not found', 'ambiguous']);
 
 /** What lies over one sheet: which lines mean what. */
 export function tableMapView(map: ColumnMap, sheet: string): TableMapView | null {

@@ -1,5 +1,6 @@
 import type { ReportedBasis } from '../../domain/vocabulary';
-import type { TypedCells, TypingColumn, TypingRow } from '../../views/typing';
+import type { TypedCells } from '../../domain/typed-cells';
+import type { TypingColumn, TypingRow } from '../../views/typing';
 import type { Experiment } from '../db/models/experiment';
 import type { Expectation } from '../imports/types';
 

@@ -1,7 +1,8 @@
 import { QueryTypes, Transaction } from 'sequelize';
 import type { Actor } from '../../domain/actor';
+import { filledCells, laidOver, type TypedCells } from '../../domain/typed-cells';
 import { reportedBasisLabels, type ReportedBasis } from '../../domain/vocabulary';
-import type { TypedCells, TypingCheck, TypingRow, TypingView } from '../../views/typing';
+import type { TypingCheck, TypingRow, TypingView } from '../../views/typing';
 import { Draft } from '../db/models/draft';
 import { Experiment } from '../db/models/experiment';
 import { Import } from '../db/models/import';
@@ -12,7 +13,7 @@ import { Invalid, NotFound } from '../errors';
 import { mapInChild } from '../imports/read-in-child';
 import { typedFile, type TypedFile } from '../imports/typed-file';
 import type { Problem } from '../imports/types';
-import { loadExpectation, nothingDeclared, type Declared } from './import-expectation';
+import { loadExpectation, nothingDeclared } from './import-expectation';
 import { declareAboutImport, receiveFile } from './imports';
 import { require } from './permissions';
 import { studyKeys, studyOf } from './study-of';
@@ -45,11 +46,19 @@ async function draftOf(
   return { draft: done ? null : draft, waiting: handedOn?.state === 'received' };
 }
 
-const declaredOf = (experiment: Experiment, basis: ReportedBasis): Declared => ({
-  ...nothingDeclared,
-  experimentId: experiment.id,
-  basis
-});
+/** The grid as it is laid out now, with those cells of a draft that have a place in it. */
+async function gridOf(study: Study, experiment: Experiment, draft: Draft | null) {
+  const basis: ReportedBasis = draft?.basis ?? 'area';
+  const injections = draft?.injections ?? 1;
+  const expectation = await loadExpectation(studyKeys(study), {
+    ...nothingDeclared,
+    experimentId: experiment.id,
+    basis
+  });
+  const rows = gridRows(expectation, experiment, injections);
+  const columns = gridColumns(expectation, basis);
+  return { basis, injections, expectation, rows, columns, ...placed(draft?.cells ?? {}, rows, columns) };
+}
 
 async function storedValues(experiment: Experiment): Promise<TypingView['stored']> {
   const [row] = await sequelize.query<{ values: number; by: string; at: Date }>(
@@ -70,12 +79,7 @@ export async function typingGrid(actor: Actor, code: string, number: number): Pr
   const study = await studyOf(actor, code);
   const experiment = await experimentOf(study, number);
   const { draft, waiting } = await draftOf(actor, experiment);
-  const basis = draft?.basis ?? 'area';
-  const injections = draft?.injections ?? 1;
-  const expectation = await loadExpectation(studyKeys(study), declaredOf(experiment, basis));
-  const rows = gridRows(expectation, experiment, injections);
-  const columns = gridColumns(expectation, basis);
-  const { cells, without } = placed(draft?.cells ?? {}, rows, columns);
+  const { basis, injections, rows, columns, cells, without } = await gridOf(study, experiment, draft);
   return {
     experiment: { number: experiment.number, title: experiment.title },
     basis,
@@ -114,19 +118,6 @@ async function changeDraft(
   });
 }
 
-function merged(before: TypedCells, changed: TypedCells): TypedCells {
-  const next: Record<string, Record<string, string>> = {};
-  for (const [row, own] of Object.entries(before)) next[row] = { ...own };
-  for (const [row, own] of Object.entries(changed)) {
-    for (const [column, text] of Object.entries(own)) {
-      if (text === '') delete next[row]?.[column];
-      else (next[row] ??= {})[column] = text;
-    }
-    if (next[row] && Object.keys(next[row]).length === 0) delete next[row];
-  }
-  return next;
-}
-
 /**
  * Keeps cells as they were typed, beside those kept before; an empty text takes one back.
  * @returns when it was kept, ISO 8601 @throws NotFound, Forbidden, Invalid for more than a grid can hold
@@ -138,7 +129,7 @@ export async function keepTyped(
   cells: TypedCells
 ): Promise<string> {
   const kept = await changeDraft(actor, code, number, (draft) => {
-    const next = merged(draft.cells, cells);
+    const next = filledCells(laidOver(draft.cells, cells));
     const count = Object.values(next).reduce((sum, row) => sum + Object.keys(row).length, 0);
     if (count > draftSize.cells) {
       throw Invalid.at(
@@ -208,11 +199,7 @@ export async function handOnTyped(actor: Actor, code: string, number: number): P
   const study = await studyOf(actor, code);
   const experiment = await experimentOf(study, number);
   const { draft } = await draftOf(actor, experiment);
-  const basis: ReportedBasis = draft?.basis ?? 'area';
-  const expectation = await loadExpectation(studyKeys(study), declaredOf(experiment, basis));
-  const rows = gridRows(expectation, experiment, draft?.injections ?? 1);
-  const columns = gridColumns(expectation, basis);
-  const { cells } = placed(draft?.cells ?? {}, rows, columns);
+  const { basis, expectation, rows, columns, cells } = await gridOf(study, experiment, draft);
   const file = typedFile(rows, columns, cells, basis);
   if (!draft || !file) {
     throw Invalid.at('cells', 'Nothing is typed yet: type or paste the values first.', {

@@ -1,6 +1,5 @@
 import { deserialize } from '$app/forms';
-import type { TypedCells } from '$lib/views/typing';
-import { changedCells, laidOver } from './typed-cells';
+import { changedCells, laidOver, type TypedCells } from '$lib/domain/typed-cells';
 
 /** kept: the server has it; keeping: on its way; here only: this browser alone has it so far. */
 export type KeptState = 'kept' | 'keeping' | 'here only';
