@@ -1,6 +1,6 @@
 import { expect, test, type Page } from '@playwright/test';
 import { openAs } from './sessions';
-import { makeSmallStudy, type SmallStudy } from './small-study';
+import { freshCode, makeSmallStudy, type SmallStudy } from './small-study';
 import { csvUpload } from './spreadsheets';
 
 /** A sheet of an instrument that nobody has seen yet: its columns get their meaning once, and the next file is read by itself. */
@@ -14,7 +14,10 @@ test.beforeAll(async ({ browser }) => {
   analyst = await openAs(browser, 'analyst');
 });
 
-const head = ['Vessel', 'Peak 1', 'Peak 2', 'Remark'];
+// Of this run alone: a layout that an earlier run kept would be read by itself.
+const run = freshCode('RUN');
+const layout = `Vessel sheet ${run}`;
+const head = [`Vessel ${run}`, 'Peak 1', 'Peak 2', 'Remark'];
 const faulty = [
   head,
   ['E1-S1', '95', '82', ''],
@@ -79,7 +82,7 @@ test('one cell is mended on the page, the layout is kept, and a copy to mend has
   await expect(analyst.getByText(/2 problems keep it from being stored/)).toBeVisible();
   await expect(analyst.getByRole('heading', { name: 'Mended cells' })).toBeVisible();
 
-  await analyst.getByLabel('Name of the layout').fill('Vessel sheet');
+  await analyst.getByLabel('Name of the layout').fill(layout);
   await analyst.getByRole('button', { name: 'Keep it' }).click();
   await expect(analyst.getByText(/version 1|Read as it was changed/).first()).toBeVisible();
 
@@ -94,7 +97,7 @@ test('the corrected file is read by the kept layout, mended and stored, and the 
   browser
 }) => {
   await bring('vessels again.csv', corrected);
-  await expect(analyst.getByText('Vessel sheet', { exact: true }).first()).toBeVisible();
+  await expect(analyst.getByText(layout, { exact: true }).first()).toBeVisible();
   await analyst.getByRole('link', { name: 'mend this cell' }).first().click();
   await analyst.getByLabel(/C3 as/).fill('84');
   await analyst.getByRole('button', { name: 'Mend the cell' }).click();
@@ -111,5 +114,5 @@ test('the corrected file is read by the kept layout, mended and stored, and the 
     .getByRole('row', { name: /Carbamazepine/ });
   await expect(row.getByRole('cell').nth(1)).toHaveText('84.0');
   await chemist.goto('/lab/layouts');
-  await expect(chemist.getByRole('row', { name: /Vessel sheet/ })).toBeVisible();
+  await expect(chemist.getByRole('row', { name: layout })).toBeVisible();
 });
